@@ -1,0 +1,3 @@
+//! The `lissom` command.
+
+fn main() {}
