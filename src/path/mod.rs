@@ -1,0 +1,20 @@
+//! Curves of yarns and rods, and their curvature.
+//!
+//! | file | what is in it |
+//! | --- | --- |
+//! | `taut` | a tight, flexible thread from the crest of one section to the trough under the next |
+//! | `rod` | the peak curvature of a stiff thread under pull: over an edge, over a pin, at a crown |
+//! | `helix` | curvature of a filament in a twisted, bent yarn |
+//! | `guide` | tension along a row of guides |
+
+mod guide;
+mod helix;
+mod rod;
+mod taut;
+
+pub use guide::tension_after;
+pub use helix::{
+    bent_helix_curvature_per_mm, bent_helix_peak_per_mm, helix_angle_rad, helix_curvature_per_mm,
+};
+pub use rod::{Flanks, crown_peak_per_mm, edge_peak_per_mm};
+pub use taut::{Crest, Passing, Rest};

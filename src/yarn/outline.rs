@@ -1,0 +1,501 @@
+//! The outline of a yarn's cross section, and where a tight thread leaves it.
+//!
+//! Four outlines, all `width_mm` wide and `thickness_mm` thick, symmetric about both axes:
+//! round (width = thickness), ellipse, lens (two equal circular arcs) and racetrack (a rectangle with half
+//! rounds at its ends).
+//!
+//! A line that touches a convex outline is known by its slope angle a alone. With the outline's centre as
+//! origin and the normal (sin a, cos a) pointing away from it, the line is
+//!
+//! ```text
+//! x sin a + z cos a = H(a),        H: support function
+//! ```
+//!
+//! the point of contact lies H'(a) along the line, and the length of outline between the crest (a = 0) and
+//! that point is the integral of the radius of curvature, H + H''. For a circular arc of radius r about
+//! (cx, cz): H = cx sin a + cz cos a + r. Round, lens and racetrack are made of such arcs; a tip is an arc
+//! of radius zero. The ellipse has H = sqrt(A² sin² a + B² cos² a) with half axes A, B, and its arc length is
+//! the incomplete elliptic integral of the second kind.
+//!
+//! Sources: support functions: any text on convex geometry (Bonnesen and Fenchel 1934, from memory).
+//! Lens in cloth: Hearle and Shanahan 1978; racetrack: Kemp 1958.
+
+use crate::root::rising_root;
+use geo::{LineString, Polygon};
+use std::f64::consts::{FRAC_PI_2, FRAC_PI_4, PI};
+
+/// The kind of outline.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
+pub enum Shape {
+    /// A circle.
+    Round,
+    /// An ellipse.
+    Ellipse,
+    /// Two equal circular arcs that meet in tips.
+    Lens,
+    /// A rectangle with half rounds at both ends.
+    Racetrack,
+}
+
+impl Shape {
+    /// Every shape, by the word a spec uses.
+    pub const ALL: [(&'static str, Self); 4] = [
+        ("round", Self::Round),
+        ("ellipse", Self::Ellipse),
+        ("lens", Self::Lens),
+        ("racetrack", Self::Racetrack),
+    ];
+
+    /// The word a spec uses.
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::Round => "round",
+            Self::Ellipse => "ellipse",
+            Self::Lens => "lens",
+            Self::Racetrack => "racetrack",
+        }
+    }
+}
+
+/// An outline with its size; width is never below thickness, and both are above zero.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Outline {
+    shape: Shape,
+    width_mm: f64,
+    thickness_mm: f64,
+}
+
+/// How a tangent of given slope touches an outline; lengths in mm.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Touch {
+    /// Distance of the line from the outline's centre, H(a).
+    pub distance_mm: f64,
+    /// Distance of the contact point from the foot of that normal, along the line, H'(a).
+    pub along_mm: f64,
+    /// Length of outline from the crest to the contact point.
+    pub arc_mm: f64,
+    /// Radius of curvature there; zero at a tip.
+    pub radius_mm: f64,
+}
+
+/// A circular arc of an outline: `until_rad` is the slope at which it ends.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Arc {
+    /// Slope at the arc's end, rad.
+    pub until_rad: f64,
+    /// Centre, across, mm.
+    pub centre_x_mm: f64,
+    /// Centre, up, mm.
+    pub centre_z_mm: f64,
+    /// Radius, mm; zero for a tip.
+    pub radius_mm: f64,
+}
+
+impl Outline {
+    /// An outline of this width and thickness, or `None` where no such outline exists: sizes not above zero
+    /// or not finite, a yarn taller than wide, a round one with two sizes.
+    pub fn new(shape: Shape, width_mm: f64, thickness_mm: f64) -> Option<Self> {
+        let sound = width_mm.is_finite() && thickness_mm > 0.0 && thickness_mm <= width_mm;
+        let round = shape != Shape::Round || width_mm == thickness_mm;
+        (sound && round).then_some(Self {
+            shape,
+            width_mm,
+            thickness_mm,
+        })
+    }
+
+    /// A circle.
+    pub fn round(diameter_mm: f64) -> Option<Self> {
+        Self::new(Shape::Round, diameter_mm, diameter_mm)
+    }
+
+    /// The outline of this area whose width is given, or `None` where it would be taller than wide.
+    pub fn with_width(shape: Shape, width_mm: f64, area_mm2: f64) -> Option<Self> {
+        // The tallest outline of any shape is the circle over its width; rounding may pass it by a hair.
+        if area_mm2 > PI / 4.0 * width_mm * width_mm * (1.0 + 1e-12) {
+            return None;
+        }
+        let thickness_mm = match shape {
+            Shape::Round => return Self::round((4.0 * area_mm2 / PI).sqrt()),
+            Shape::Ellipse => 4.0 * area_mm2 / (PI * width_mm),
+            Shape::Racetrack => {
+                // (w - t) t + pi t²/4 = A, the smaller root in the form that does not cancel.
+                let corner = 1.0 - FRAC_PI_4;
+                let root = (width_mm * width_mm - 4.0 * corner * area_mm2)
+                    .max(0.0)
+                    .sqrt();
+                2.0 * area_mm2 / (width_mm + root)
+            }
+            Shape::Lens => rising_root(
+                |t| lens_area(width_mm, t) - area_mm2,
+                0.0,
+                width_mm,
+                1e-15 * width_mm,
+            ),
+        };
+        Self::new(shape, width_mm, thickness_mm.min(width_mm))
+    }
+
+    /// The outline of this area whose thickness is given, or `None` where it would be taller than wide.
+    pub fn with_thickness(shape: Shape, thickness_mm: f64, area_mm2: f64) -> Option<Self> {
+        if area_mm2 * (1.0 + 1e-12) < PI / 4.0 * thickness_mm * thickness_mm {
+            return None;
+        }
+        let t = thickness_mm;
+        let width_mm = match shape {
+            Shape::Round => return Self::round((4.0 * area_mm2 / PI).sqrt()),
+            Shape::Ellipse => 4.0 * area_mm2 / (PI * t),
+            Shape::Racetrack => area_mm2 / t + t * (1.0 - FRAC_PI_4),
+            // A lens fills at least 2/3 of its rectangle, so 1.5 A / t is wide enough.
+            Shape::Lens => rising_root(
+                |w| lens_area(w, t) - area_mm2,
+                t,
+                1.6 * area_mm2 / t + t,
+                1e-15 * t,
+            ),
+        };
+        Self::new(shape, width_mm.max(t), t)
+    }
+
+    /// The outline of this area and this flatness (width over thickness, at least 1).
+    pub fn with_flatness(shape: Shape, flatness: f64, area_mm2: f64) -> Option<Self> {
+        if flatness < 1.0 {
+            return None;
+        }
+        let unit = Self::new(
+            shape,
+            if shape == Shape::Round { 1.0 } else { flatness },
+            1.0,
+        )?;
+        let scale = (area_mm2 / unit.area_mm2()).sqrt();
+        Self::new(shape, unit.width_mm * scale, scale)
+    }
+
+    /// The kind of outline.
+    pub fn shape(&self) -> Shape {
+        self.shape
+    }
+
+    /// Width in the cloth's plane, mm.
+    pub fn width_mm(&self) -> f64 {
+        self.width_mm
+    }
+
+    /// Thickness across the cloth's plane, mm.
+    pub fn thickness_mm(&self) -> f64 {
+        self.thickness_mm
+    }
+
+    /// Width over thickness.
+    pub fn flatness(&self) -> f64 {
+        self.width_mm / self.thickness_mm
+    }
+
+    /// Enclosed area, mm2.
+    pub fn area_mm2(&self) -> f64 {
+        let (w, t) = (self.width_mm, self.thickness_mm);
+        match self.shape {
+            Shape::Round | Shape::Ellipse => FRAC_PI_4 * w * t,
+            Shape::Racetrack => (w - t) * t + FRAC_PI_4 * t * t,
+            Shape::Lens => lens_area(w, t),
+        }
+    }
+
+    /// Second moment of the enclosed area about the axis along its width, mm4: the one that resists bending
+    /// out of the cloth's plane.
+    ///
+    /// Ellipse pi w t³/64; racetrack: rectangle and two half rounds; lens: two circular segments, each by the
+    /// closed integral of z² under its arc.
+    pub fn second_moment_mm4(&self) -> f64 {
+        let (w, t) = (self.width_mm, self.thickness_mm);
+        match self.shape {
+            Shape::Round | Shape::Ellipse => PI * w * t.powi(3) / 64.0,
+            Shape::Racetrack => (w - t) * t.powi(3) / 12.0 + PI * t.powi(4) / 64.0,
+            Shape::Lens => {
+                // 4/3 * integral over 0..alpha of (r (cos u - cos alpha))³ r cos u du, r the arc's radius.
+                let (radius, alpha) = lens_arc(w, t);
+                let (sine, cosine) = alpha.sin_cos();
+                let cos4 = 0.375 * alpha + 0.25 * (2.0 * alpha).sin() + (4.0 * alpha).sin() / 32.0;
+                let cos3 = sine - sine.powi(3) / 3.0;
+                let cos2 = 0.5 * (alpha + sine * cosine);
+                let integral = cos4 - 3.0 * cosine * cos3 + 3.0 * cosine.powi(2) * cos2
+                    - cosine.powi(3) * sine;
+                4.0 / 3.0 * radius.powi(4) * integral
+            }
+        }
+    }
+
+    /// The outline as a polygon about the origin with at least `points` corners.
+    pub fn polygon(&self, points: usize) -> Polygon<f64> {
+        let quarter = (points / 4).max(2);
+        let right_top: Vec<(f64, f64)> = (0..=quarter)
+            .map(|step| {
+                let share = step as f64 / quarter as f64;
+                self.point(share)
+            })
+            .collect();
+        let mirrored = |sx: f64, sz: f64| move |&(x, z): &(f64, f64)| (sx * x, sz * z);
+        let ring: Vec<(f64, f64)> = right_top
+            .iter()
+            .map(mirrored(1.0, 1.0))
+            .chain(right_top.iter().rev().map(mirrored(1.0, -1.0)))
+            .chain(right_top.iter().map(mirrored(-1.0, -1.0)))
+            .chain(right_top.iter().rev().map(mirrored(-1.0, 1.0)))
+            .collect();
+        Polygon::new(LineString::from(ring), vec![])
+    }
+
+    /// A point of the quarter from the crest (share 0) to the tip (share 1).
+    fn point(&self, share: f64) -> (f64, f64) {
+        let (half_width, half_thickness) = (self.width_mm / 2.0, self.thickness_mm / 2.0);
+        match self.shape {
+            Shape::Round | Shape::Ellipse => {
+                let (sine, cosine) = (share * FRAC_PI_2).sin_cos();
+                (half_width * sine, half_thickness * cosine)
+            }
+            Shape::Racetrack => {
+                if share == 0.0 {
+                    return (0.0, half_thickness);
+                }
+                let (sine, cosine) = (share * FRAC_PI_2).sin_cos();
+                (
+                    half_width - half_thickness + half_thickness * sine,
+                    half_thickness * cosine,
+                )
+            }
+            Shape::Lens => {
+                let (radius, alpha) = lens_arc(self.width_mm, self.thickness_mm);
+                let (sine, cosine) = (share * alpha).sin_cos();
+                (radius * sine, radius * (cosine - alpha.cos()))
+            }
+        }
+    }
+
+    /// The circular arcs from the crest to the tip, or `None` for an ellipse that is not round.
+    pub fn arcs(&self) -> Option<[Arc; 2]> {
+        let (w, t) = (self.width_mm, self.thickness_mm);
+        let whole = |centre_x_mm: f64, radius_mm: f64| {
+            let arc = Arc {
+                until_rad: FRAC_PI_2,
+                centre_x_mm,
+                centre_z_mm: 0.0,
+                radius_mm,
+            };
+            [arc, arc]
+        };
+        match self.shape {
+            Shape::Ellipse if w > t => None,
+            Shape::Round | Shape::Ellipse => Some(whole(0.0, t / 2.0)),
+            Shape::Racetrack => Some(whole((w - t) / 2.0, t / 2.0)),
+            Shape::Lens => {
+                let (radius_mm, alpha) = lens_arc(w, t);
+                Some([
+                    Arc {
+                        until_rad: alpha,
+                        centre_x_mm: 0.0,
+                        centre_z_mm: t / 2.0 - radius_mm,
+                        radius_mm,
+                    },
+                    Arc {
+                        until_rad: FRAC_PI_2,
+                        centre_x_mm: w / 2.0,
+                        centre_z_mm: 0.0,
+                        radius_mm: 0.0,
+                    },
+                ])
+            }
+        }
+    }
+
+    /// How a tangent of slope `slope_rad` (0 at the crest, pi/2 at the tip) touches the outline.
+    pub fn touch(&self, slope_rad: f64) -> Touch {
+        let (sine, cosine) = slope_rad.sin_cos();
+        match self.arcs() {
+            Some(arcs) => {
+                let tip = slope_rad > arcs[0].until_rad;
+                let arc = arcs[usize::from(tip)];
+                let flat_mm = if self.shape == Shape::Racetrack {
+                    arc.centre_x_mm
+                } else {
+                    0.0
+                };
+                let arc_mm = if tip {
+                    arcs[0].radius_mm * arcs[0].until_rad
+                } else {
+                    flat_mm + arc.radius_mm * slope_rad
+                };
+                Touch {
+                    distance_mm: arc.centre_x_mm * sine + arc.centre_z_mm * cosine + arc.radius_mm,
+                    along_mm: arc.centre_x_mm * cosine - arc.centre_z_mm * sine,
+                    arc_mm,
+                    radius_mm: arc.radius_mm,
+                }
+            }
+            None => {
+                let (a, b) = (self.width_mm / 2.0, self.thickness_mm / 2.0);
+                let distance_mm = (a * a * sine * sine + b * b * cosine * cosine).sqrt();
+                // Eccentric angle of the contact point, counted from the crest: tan u = (A/B) tan a.
+                let eccentric = (a * sine).atan2(b * cosine);
+                let modulus = 1.0 - (b / a) * (b / a);
+                // In range for every ellipse, so the checked form only guards against nothing.
+                let arc_mm = a * ellip::ellipeinc(eccentric, modulus).unwrap_or(eccentric);
+                Touch {
+                    distance_mm,
+                    along_mm: (a * a - b * b) * sine * cosine / distance_mm,
+                    arc_mm,
+                    radius_mm: (a * b).powi(2) / distance_mm.powi(3),
+                }
+            }
+        }
+    }
+}
+
+/// Radius and half angle of a lens's arc.
+fn lens_arc(width_mm: f64, thickness_mm: f64) -> (f64, f64) {
+    let (w, t) = (width_mm, thickness_mm);
+    ((w * w + t * t) / (4.0 * t), 2.0 * (t / w).atan())
+}
+
+/// Two circular segments: r² (2 alpha - sin 2 alpha).
+fn lens_area(width_mm: f64, thickness_mm: f64) -> f64 {
+    if thickness_mm <= 0.0 {
+        return 0.0;
+    }
+    let (radius, alpha) = lens_arc(width_mm, thickness_mm);
+    // 2 alpha - sin 2 alpha loses digits in a flat lens; its series does not.
+    let twice = 2.0 * alpha;
+    let segment = if twice < 0.2 {
+        let square = twice * twice;
+        twice * square / 6.0 * (1.0 - square / 20.0 * (1.0 - square / 42.0 * (1.0 - square / 72.0)))
+    } else {
+        twice - twice.sin()
+    };
+    radius * radius * segment
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use geo::Area;
+
+    const FLAT: [Shape; 3] = [Shape::Ellipse, Shape::Lens, Shape::Racetrack];
+
+    /// The area of a polygon with many corners: an independent computation (geo, shoelace).
+    #[test]
+    fn areas_equal_those_of_their_polygons() {
+        let mut outlines = vec![Outline::round(0.3).unwrap()];
+        for shape in FLAT {
+            for (w, t) in [(1.0, 0.9), (1.2, 0.3), (2.0, 0.05)] {
+                outlines.push(Outline::new(shape, w, t).unwrap());
+            }
+        }
+        for outline in outlines {
+            let polygon = outline.polygon(8000).unsigned_area();
+            assert!(
+                (polygon / outline.area_mm2() - 1.0).abs() < 2e-6,
+                "{outline:?} {polygon} {}",
+                outline.area_mm2()
+            );
+        }
+    }
+
+    /// Second moments by strips of the polygon's own width function: independent of the closed forms.
+    #[test]
+    fn second_moments_equal_the_sum_of_strips() {
+        for shape in FLAT {
+            let outline = Outline::new(shape, 1.2, 0.4).unwrap();
+            let corners = outline.polygon(40_000);
+            // Green: I = 1/12 sum (x_i z_j - x_j z_i)(z_i² + z_i z_j + z_j²).
+            let sum: f64 = corners
+                .exterior()
+                .lines()
+                .map(|line| {
+                    let (a, b) = (line.start, line.end);
+                    (a.x * b.y - b.x * a.y) * (a.y * a.y + a.y * b.y + b.y * b.y) / 12.0
+                })
+                .sum();
+            let closed = outline.second_moment_mm4();
+            assert!(
+                (sum.abs() / closed - 1.0).abs() < 1e-6,
+                "{shape:?} {sum} {closed}"
+            );
+        }
+    }
+
+    #[test]
+    fn the_given_size_and_the_area_fix_the_outline() {
+        for shape in FLAT {
+            for flatness in [1.0, 1.3, 4.0, 60.0] {
+                let outline = Outline::with_flatness(shape, flatness, 0.04).unwrap();
+                assert!((outline.area_mm2() / 0.04 - 1.0).abs() < 1e-12);
+                let by_width = Outline::with_width(shape, outline.width_mm, 0.04).unwrap();
+                let by_thickness =
+                    Outline::with_thickness(shape, outline.thickness_mm, 0.04).unwrap();
+                for other in [by_width, by_thickness] {
+                    assert!(
+                        (other.flatness() / flatness - 1.0).abs() < 1e-6,
+                        "{shape:?} {other:?}"
+                    );
+                }
+            }
+            assert!(
+                Outline::with_width(shape, 0.2, 0.04).is_none(),
+                "taller than wide"
+            );
+        }
+        assert!(Outline::new(Shape::Lens, 1.0, f64::NAN).is_none());
+        assert!(Outline::new(Shape::Lens, 1.0, 0.0).is_none());
+        assert!(Outline::new(Shape::Round, 1.0, 0.5).is_none());
+    }
+
+    /// H'(a) by central difference and the arc length by adding up chords: the definitions, not the forms.
+    #[test]
+    fn touching_follows_from_the_support_function() {
+        for outline in [
+            Outline::round(0.3).unwrap(),
+            Outline::new(Shape::Ellipse, 1.2, 0.4).unwrap(),
+            Outline::new(Shape::Lens, 1.2, 0.3).unwrap(),
+            Outline::new(Shape::Racetrack, 1.2, 0.3).unwrap(),
+        ] {
+            for slope in [0.05, 0.3, 0.8, 1.4] {
+                let (touch, step) = (outline.touch(slope), 1e-6);
+                let slope_of_distance = (outline.touch(slope + step).distance_mm
+                    - outline.touch(slope - step).distance_mm)
+                    / (2.0 * step);
+                assert!(
+                    (slope_of_distance - touch.along_mm).abs() < 1e-8,
+                    "{outline:?} {slope}"
+                );
+                // Contact point from distance and length along the line, as seen from the crest.
+                let point = |a: f64| {
+                    let touch = outline.touch(a);
+                    let (s, c) = a.sin_cos();
+                    (
+                        touch.distance_mm * s + touch.along_mm * c,
+                        touch.distance_mm * c - touch.along_mm * s,
+                    )
+                };
+                let mut length = outline.touch(0.0).arc_mm;
+                let steps = 20_000;
+                for index in 0..steps {
+                    let (from, to) = (
+                        point(slope * f64::from(index) / f64::from(steps)),
+                        point(slope * f64::from(index + 1) / f64::from(steps)),
+                    );
+                    if index > 0 || outline.shape != Shape::Racetrack {
+                        length += (to.0 - from.0).hypot(to.1 - from.1);
+                    }
+                }
+                let missing = if outline.shape == Shape::Racetrack {
+                    outline.touch(0.0).radius_mm * slope / f64::from(steps)
+                } else {
+                    0.0
+                };
+                assert!(
+                    (length + missing - touch.arc_mm).abs() < 1e-7,
+                    "{outline:?} {slope}"
+                );
+            }
+        }
+    }
+}
