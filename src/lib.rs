@@ -1,10 +1,16 @@
 #![forbid(unsafe_code)]
 //! Bends of technical cloth, held against what its fibres stand.
 
+pub mod bend;
+pub mod drape;
 pub mod fibre;
+pub mod judge;
+pub mod passage;
 pub mod path;
 pub mod pattern;
 pub mod quantity;
 pub mod root;
 pub mod span;
+pub mod spec;
+pub mod weave;
 pub mod yarn;

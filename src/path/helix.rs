@@ -17,11 +17,6 @@
 
 use std::f64::consts::{PI, TAU};
 
-/// Angle between a filament at radius `radius_mm` and the yarn's axis, rad.
-pub fn helix_angle_rad(radius_mm: f64, twist_per_mm: f64) -> f64 {
-    (TAU * radius_mm * twist_per_mm).atan()
-}
-
 /// Curvature of the filament in the straight yarn, 1/mm.
 pub fn helix_curvature_per_mm(radius_mm: f64, twist_per_mm: f64) -> f64 {
     let w = TAU * twist_per_mm;
@@ -69,6 +64,7 @@ pub fn bent_helix_peak_per_mm(radius_mm: f64, twist_per_mm: f64, bend_radius_mm:
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::yarn::helix_angle_rad;
     use proptest::prelude::*;
 
     /// Independent solutions (derivatives of the space curve at 40 digits): straight helix.

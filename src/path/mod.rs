@@ -13,8 +13,6 @@ mod rod;
 mod taut;
 
 pub use guide::tension_after;
-pub use helix::{
-    bent_helix_curvature_per_mm, bent_helix_peak_per_mm, helix_angle_rad, helix_curvature_per_mm,
-};
-pub use rod::{Flanks, crown_peak_per_mm, edge_peak_per_mm};
+pub use helix::{bent_helix_curvature_per_mm, bent_helix_peak_per_mm, helix_curvature_per_mm};
+pub use rod::{crown_peak_per_mm, edge_peak_per_mm};
 pub use taut::{Crest, Passing, Rest};

@@ -27,14 +27,7 @@
 //!
 //! Left out: friction, the pressure of other filaments, plastic set.
 
-/// Which sides of a contact fall away to the other face.
-#[derive(Debug, Clone, Copy, PartialEq, Eq)]
-pub enum Flanks {
-    /// Both: the yarn passes to the other face on either side.
-    Both,
-    /// One: on the other side the yarn floats on.
-    One,
-}
+use crate::bend::Flanks;
 
 /// Peak curvature over an edge, 1/mm. Zero pull gives zero: an unloaded rod need not follow the edge.
 pub fn edge_peak_per_mm(pull_over_rigidity_per_mm2: f64, turn_rad: f64) -> f64 {

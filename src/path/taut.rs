@@ -26,7 +26,7 @@ use crate::yarn::Outline;
 use std::f64::consts::FRAC_PI_2;
 
 /// A thread of half thickness `half_thickness_mm` that crosses sections `section`, `spacing_mm` apart.
-#[derive(Debug, Clone, Copy)]
+#[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Crest {
     /// The outline crossed.
     pub section: Outline,

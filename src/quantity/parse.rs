@@ -134,7 +134,7 @@ fn nearest(text: &str, wanted: &[Dimension]) -> Option<&'static str> {
             UNITS
                 .iter()
                 .filter(|unit| wanted.contains(&unit.dimension))
-                .filter(|unit| text.len() > 2)
+                .filter(|_| text.len() > 2)
                 .find(|unit| strsim::damerau_levenshtein(unit.symbol, text) == 1)
         })
         .map(|unit| unit.symbol)

@@ -1,0 +1,141 @@
+//! The one currency of the program: a length of yarn held at some curvature, under some pull.
+//!
+//! The rooms that know geometry make [`Bend`]s and know no strength; the room that judges sees only these.
+//! A new source of bends is one new room that makes them.
+//!
+//! Sign: curvature is positive where the bend's inside is the side the yarn lies on. All bends of a cloth and
+//! of a corner lie in the plane of the yarn's own path; `plane` tells crowns on the face from crowns on the
+//! back, so that two bends of opposite sign can load opposite sides of a filament.
+
+use crate::span::Span;
+use std::borrow::Cow;
+
+/// Which yarns of the cloth.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
+pub enum SystemName {
+    /// The ends.
+    Warp,
+    /// The picks.
+    Weft,
+}
+
+impl SystemName {
+    /// The word in spec and report.
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::Warp => "warp",
+            Self::Weft => "weft",
+        }
+    }
+}
+
+/// Where on its way the yarn meets the bend.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum Stage {
+    /// From package to package.
+    Winding,
+    /// Creel, warping, beam.
+    Warping,
+    /// From beam or package to the fell.
+    Weaving,
+    /// In the cloth, at the peak of the loom's pull.
+    Loom,
+    /// In the cloth off the loom.
+    Rest,
+    /// Washing, heat, coating.
+    Finishing,
+    /// Laid over a tool.
+    Draping,
+}
+
+impl Stage {
+    /// The word in spec and report.
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::Winding => "winding",
+            Self::Warping => "warping",
+            Self::Weaving => "weaving",
+            Self::Loom => "loom",
+            Self::Rest => "rest",
+            Self::Finishing => "finishing",
+            Self::Draping => "draping",
+        }
+    }
+}
+
+/// Which sides of a contact fall away to the other face.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Flanks {
+    /// Both: the yarn passes to the other face on either side.
+    Both,
+    /// One: on the other side the yarn floats on.
+    One,
+}
+
+/// How a stiff yarn or filament may stay away from what it is bent over; without it, it lies on.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Easing {
+    /// It is held: it follows whatever it lies on.
+    Held,
+    /// Straight arms on either side, much longer than the bend: the edge law with this turn, rad.
+    LongArms {
+        /// Turn at the contact, rad.
+        turn_rad: f64,
+    },
+    /// A crown of a wave: the inflection lies this far below and along.
+    Crown {
+        /// Drop from the crest to the inflection, mm.
+        drop_mm: f64,
+        /// Distance along the cloth, mm.
+        arm_mm: f64,
+        /// Which sides fall away.
+        flanks: Flanks,
+    },
+}
+
+/// A stretch of yarn of one curvature.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Stretch {
+    /// Length on the yarn's centreline, mm.
+    pub length_mm: f64,
+    /// Radius of what the yarn's inner side lies on, mm; zero is an edge, `None` a straight stretch.
+    pub lies_on_mm: Option<f64>,
+}
+
+/// One bend a yarn meets.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Bend {
+    /// What a person calls the place.
+    pub place: Cow<'static, str>,
+    /// Where on the way.
+    pub stage: Stage,
+    /// Which yarns.
+    pub system: SystemName,
+    /// The stretches of the yarn, in order.
+    pub profile: Vec<Stretch>,
+    /// How it may ease away.
+    pub easing: Easing,
+    /// Curvature of a larger bend that comes on top in the same plane and sense, 1/mm.
+    pub added_per_mm: f64,
+    /// Whether the crest points to the face (+1) or to the back (-1).
+    pub plane: i8,
+    /// Pull on the yarn, N, at its peak.
+    pub pull_n: f64,
+    /// Temperature of the yarn there, degrees C, where known.
+    pub temperature_c: Option<f64>,
+    /// How much yarn meets it.
+    pub meets: Meets,
+    /// The line of the spec that governs it.
+    pub governed_by: Span,
+    /// The line that governs its temperature.
+    pub heated_by: Option<Span>,
+}
+
+/// How much of the yarn meets a bend.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Meets {
+    /// So many times per metre of yarn, over the profile's length.
+    TimesPerMetre(f64),
+    /// All of it travels over the bend.
+    All,
+}

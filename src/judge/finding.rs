@@ -1,0 +1,318 @@
+//! What a judgement says: state, limit, code, and the numbers behind them.
+
+use super::filament::Filament;
+use super::limits::Check;
+use crate::bend::{Bend, Stage, SystemName};
+use crate::span::Span;
+use crate::yarn::Yarn;
+use std::borrow::Cow;
+use std::sync::Arc;
+
+/// What becomes of the fibre, from best to worst.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash)]
+pub enum State {
+    /// The reserve is at least the one required.
+    Holds,
+    /// The reserve is at least 1 and below the one required.
+    Close,
+    /// Kink bands form; damaged, not broken.
+    Kinks,
+    /// The bend stays.
+    Yields,
+    /// The yarn is hotter than its fibre stands.
+    Overheats,
+    /// It breaks.
+    Breaks,
+}
+
+impl State {
+    /// The word in reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::Holds => "holds",
+            Self::Close => "close",
+            Self::Kinks => "kinks",
+            Self::Yields => "yields",
+            Self::Overheats => "overheats",
+            Self::Breaks => "breaks",
+        }
+    }
+}
+
+/// What limits a bend.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
+pub enum Limit {
+    /// Fracture on the tension side.
+    Fracture,
+    /// Fracture on the compressed side.
+    Compression,
+    /// Onset of kink bands.
+    Kink,
+    /// Compressive strain of a kinked fibre.
+    KinkStrain,
+    /// Yield.
+    Yield,
+    /// Strain at break.
+    Strain,
+    /// Temperature in air.
+    Temperature,
+}
+
+impl Limit {
+    /// The word in reports.
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::Fracture => "fracture",
+            Self::Compression => "compression",
+            Self::Kink | Self::KinkStrain => "kink",
+            Self::Yield => "yield",
+            Self::Strain => "strain",
+            Self::Temperature => "temperature",
+        }
+    }
+
+    /// Whether its figures are strains rather than stresses.
+    pub fn is_strain(self) -> bool {
+        matches!(self, Self::Strain | Self::KinkStrain)
+    }
+
+    /// The state below a reserve of 1.
+    fn failed(self) -> State {
+        match self {
+            Self::Fracture | Self::Compression | Self::Strain => State::Breaks,
+            Self::Kink | Self::KinkStrain => State::Kinks,
+            Self::Yield => State::Yields,
+            Self::Temperature => State::Overheats,
+        }
+    }
+
+    /// The stable code of the method.
+    fn code(self) -> Code {
+        match self {
+            Self::Fracture => Code::TensionFracture,
+            Self::Compression => Code::CompressionFracture,
+            Self::Kink => Code::KinkOnset,
+            Self::KinkStrain => Code::KinkStrain,
+            Self::Yield => Code::YieldOnset,
+            Self::Strain => Code::StrainAtBreak,
+            Self::Temperature => Code::OverTemperature,
+        }
+    }
+}
+
+/// The stable name of the method behind a finding; `lissom explain CODE` tells it.
+#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
+pub enum Code {
+    /// No limit applies: neither bent nor pulled.
+    NoLimit,
+    /// Fracture on the tension side.
+    TensionFracture,
+    /// Fracture on the compressed side.
+    CompressionFracture,
+    /// Onset of kink bands.
+    KinkOnset,
+    /// Compressive strain of a kinked fibre over 3 %.
+    KinkStrain,
+    /// Onset of yield.
+    YieldOnset,
+    /// Strain at break of a ductile fibre.
+    StrainAtBreak,
+    /// Hotter than the fibre stands.
+    OverTemperature,
+    /// Yarns that cannot interlace.
+    Jammed,
+}
+
+impl Code {
+    /// Every code, in the order of the documents.
+    pub const ALL: [Self; 9] = [
+        Self::TensionFracture,
+        Self::CompressionFracture,
+        Self::KinkOnset,
+        Self::KinkStrain,
+        Self::YieldOnset,
+        Self::StrainAtBreak,
+        Self::OverTemperature,
+        Self::NoLimit,
+        Self::Jammed,
+    ];
+
+    /// The code as printed.
+    pub fn word(self) -> &'static str {
+        match self {
+            Self::NoLimit => "no-limit",
+            Self::TensionFracture => "tension-fracture",
+            Self::CompressionFracture => "compression-fracture",
+            Self::KinkOnset => "kink-onset",
+            Self::KinkStrain => "kink-strain",
+            Self::YieldOnset => "yield-onset",
+            Self::StrainAtBreak => "strain-at-break",
+            Self::OverTemperature => "over-temperature",
+            Self::Jammed => "jammed",
+        }
+    }
+}
+
+/// All limits of one filament, and the one that governs.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Judged {
+    /// Every limit that applies, the governing one first.
+    pub checks: [Option<Check>; 3],
+    /// The worst state of them.
+    pub state: State,
+}
+
+impl Judged {
+    /// Ranks the limits: worst state first, then smallest reserve.
+    pub fn of(mut checks: [Option<Check>; 3], required: f64) -> Self {
+        let state_of = |check: &Check| match check.reserve() {
+            reserve if reserve < 1.0 => check.limit.failed(),
+            // The strain of a kinked fibre counts only once it is passed; its onset has been judged already.
+            _ if check.limit == Limit::KinkStrain => State::Holds,
+            reserve if reserve < required => State::Close,
+            _ => State::Holds,
+        };
+        checks.sort_by(|a, b| match (a, b) {
+            (Some(a), Some(b)) => state_of(b)
+                .cmp(&state_of(a))
+                // Both kink limits broken: the one that fails the spec leads.
+                .then((b.limit == Limit::KinkStrain && b.reserve() < 1.0)
+                    .cmp(&(a.limit == Limit::KinkStrain && a.reserve() < 1.0)))
+                .then(a.reserve().total_cmp(&b.reserve())),
+            (a, b) => b.is_some().cmp(&a.is_some()),
+        });
+        let state = checks[0].as_ref().map_or(State::Holds, state_of);
+        Self { checks, state }
+    }
+
+    /// Sorts judgements from best to worst.
+    pub(super) fn rank(&self) -> (State, std::cmp::Reverse<Ordered>) {
+        let reserve = self.checks[0].map_or(f64::INFINITY, |check| check.reserve());
+        (self.state, std::cmp::Reverse(Ordered(reserve)))
+    }
+}
+
+/// A number that sorts.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) struct Ordered(f64);
+
+impl Eq for Ordered {}
+
+impl PartialOrd for Ordered {
+    fn partial_cmp(&self, other: &Self) -> Option<std::cmp::Ordering> {
+        Some(self.cmp(other))
+    }
+}
+
+impl Ord for Ordered {
+    fn cmp(&self, other: &Self) -> std::cmp::Ordering {
+        self.0.total_cmp(&other.0)
+    }
+}
+
+/// One bend, judged.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Finding {
+    /// What a person calls the place.
+    pub place: Cow<'static, str>,
+    /// Where on the way.
+    pub stage: Stage,
+    /// Which yarns.
+    pub system: SystemName,
+    /// The yarn.
+    pub yarn: Arc<Yarn>,
+    /// The filament that governs.
+    pub filament: Filament,
+    /// Pull on the yarn, N.
+    pub tension_n: f64,
+    /// The limits, the governing one first.
+    pub judged: Judged,
+    /// What governs.
+    pub limit: Option<Limit>,
+    /// What becomes of the fibre.
+    pub state: State,
+    /// The method's stable code.
+    pub code: Code,
+    /// Temperature here and the fibre's limit, degrees C, where the finding is about heat.
+    pub heat_c: Option<(f64, f64)>,
+    /// The line of the spec that governs.
+    pub governed_by: Span,
+}
+
+impl Finding {
+    pub(super) fn new(bend: &Bend, yarn: Arc<Yarn>, filament: Filament, judged: Judged) -> Self {
+        let limit = judged.checks[0].map(|check| check.limit);
+        Self {
+            place: bend.place.clone(),
+            stage: bend.stage,
+            system: bend.system,
+            yarn,
+            filament,
+            tension_n: bend.pull_n,
+            judged,
+            limit,
+            state: judged.state,
+            code: limit.map_or(Code::NoLimit, Limit::code),
+            heat_c: None,
+            governed_by: bend.governed_by.clone(),
+        }
+    }
+
+    /// The finding of its own for a temperature above the fibre's limit.
+    pub(super) fn overheated(&self, bend: &Bend, here_c: f64, limit_c: f64) -> Self {
+        let mut heat = self.clone();
+        heat.limit = Some(Limit::Temperature);
+        heat.state = State::Overheats;
+        heat.code = Code::OverTemperature;
+        heat.judged.checks = [None; 3];
+        heat.heat_c = Some((here_c, limit_c));
+        if let Some(span) = &bend.heated_by {
+            heat.governed_by = span.clone();
+        }
+        heat
+    }
+
+    /// The handbook reserve: limit over applied; absent where no limit applies.
+    pub fn reserve(&self) -> Option<f64> {
+        self.judged.checks[0].map(|check| check.reserve())
+    }
+
+    /// Radius of the filament's axis, mm; absent where it is straight.
+    pub fn radius_mm(&self) -> Option<f64> {
+        (self.filament.curvature_per_mm > 0.0).then(|| 1.0 / self.filament.curvature_per_mm)
+    }
+
+    /// Bending stress of the filament by the elastic formula, MPa.
+    pub fn bending_stress_mpa(&self) -> f64 {
+        self.yarn.fibre.modulus_mpa
+            * self.yarn.count.filament_diameter_mm
+            * self.filament.curvature_per_mm
+            / 2.0
+    }
+
+    /// Whether the finding fails a check: `refuse_kinks` as the spec says, `strict` as the command does.
+    pub fn fails(&self, refuse_kinks: bool, strict: bool) -> bool {
+        match self.state {
+            State::Breaks | State::Overheats => true,
+            State::Kinks => refuse_kinks || strict || self.code == Code::KinkStrain,
+            State::Yields | State::Close => strict,
+            State::Holds => false,
+        }
+    }
+
+    /// Radius of the filament's axis at which the governing limit would be met with a reserve of 1 at this axial
+    /// stress, mm; absent where bending is not what governs.
+    pub fn limit_radius_mm(&self) -> Option<f64> {
+        let check = self.judged.checks[0]?;
+        let fibre = &self.yarn.fibre;
+        let half = fibre.modulus_mpa * self.yarn.count.filament_diameter_mm / 2.0;
+        let axial = self.filament.axial_stress_mpa;
+        let allowed = match check.limit {
+            Limit::Fracture | Limit::Yield => check.allowed - axial,
+            Limit::Compression | Limit::Kink => check.allowed + axial,
+            Limit::Strain => check.allowed * fibre.modulus_mpa - axial,
+            Limit::KinkStrain | Limit::Temperature => return None,
+        };
+        (allowed > 0.0).then_some(half / allowed)
+    }
+}

@@ -1,0 +1,87 @@
+//! The limits of a filament under pull and bending, by kind of fibre.
+//!
+//! s_a axial stress, s_b = E d k/2 bending stress; E, d, k as in `fibre`.
+//!
+//! - brittle: fracture at s_a + s_b = s_t; where the compressive strength is known, s_b - s_a = s_c;
+//! - fibrillar: kink bands at s_b - s_a = s_c; past them the kinked section (`kinked`) until its tension side
+//!   reaches s_t; compressive strain over 3 % counts as failed;
+//! - ductile: yield at E (d k/2 + s_a/E) = s_y, break at a strain d k/2 + s_a/E equal to that at break.
+//!
+//! s_c is the figure that holds in bending (a uniaxial one counts twice, see `fibre`). Where nothing is
+//! compressed (s_b <= s_a) there is no compression limit.
+
+use super::filament::Filament;
+use super::finding::Limit;
+use super::kinked::kinked_section;
+use crate::fibre::Mechanism;
+use crate::yarn::Yarn;
+
+/// Compressive strain beyond which a kinked fibre is no longer known to hold most of its strength: a
+/// high-modulus para-aramid lost 10 % after 3 % (DeTeresa et al. 1984, J. Mater. Sci. 19, 57-72, abstract read).
+pub const KINK_STRAIN_LIMIT: f64 = 0.03;
+
+/// One limit held against what is applied.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Check {
+    /// Which limit.
+    pub limit: Limit,
+    /// Applied: MPa, or a strain for `Limit::Strain`.
+    pub applied: f64,
+    /// Allowed: MPa, or a strain.
+    pub allowed: f64,
+}
+
+impl Check {
+    fn new(limit: Limit, applied: f64, allowed: f64) -> Option<Self> {
+        (applied > 0.0).then_some(Self {
+            limit,
+            applied,
+            allowed,
+        })
+    }
+
+    /// Allowed over applied.
+    pub fn reserve(&self) -> f64 {
+        self.allowed / self.applied
+    }
+}
+
+/// Every limit that applies to the filament.
+pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 3] {
+    let fibre = &yarn.fibre;
+    let modulus = fibre.modulus_mpa;
+    let axial = filament.axial_stress_mpa;
+    let bending = modulus * yarn.count.filament_diameter_mm * filament.curvature_per_mm / 2.0;
+    let fracture = Check::new(Limit::Fracture, axial + bending, fibre.strength_mpa);
+    match fibre.mechanism {
+        Mechanism::Brittle { compression } => {
+            let compressed = compression.and_then(|compression| {
+                Check::new(Limit::Compression, bending - axial, compression.in_bending_mpa())
+            });
+            [fracture, compressed, None]
+        }
+        Mechanism::Fibrillar { compression, .. } => {
+            let onset = compression.in_bending_mpa();
+            // A bonded inner filament may be pressed as a whole beyond the onset; -1 is all of it yielded.
+            let section = kinked_section(bending / onset, (axial / onset).max(-1.0));
+            let tension = Check::new(Limit::Fracture, section.outer * onset, fibre.strength_mpa);
+            let kink = Check::new(Limit::Kink, bending - axial, onset);
+            let strain = section.kinked.then(|| {
+                Check::new(
+                    Limit::KinkStrain,
+                    section.inner_strain * onset / modulus,
+                    KINK_STRAIN_LIMIT,
+                )
+            });
+            [tension, kink, strain.flatten()]
+        }
+        Mechanism::Ductile {
+            yield_mpa,
+            strain_at_break,
+        } => {
+            let strain = (bending + axial) / modulus;
+            let yields = Check::new(Limit::Yield, modulus * strain, yield_mpa);
+            [Check::new(Limit::Strain, strain, strain_at_break), yields, None]
+        }
+    }
+}

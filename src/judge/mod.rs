@@ -1,0 +1,58 @@
+//! The one room that judges: a bend, a yarn and its fibre in, a finding out.
+//!
+//! It knows no geometry of cloth or machine: it sees radii, turns, pulls and temperatures in a
+//! [`Bend`](crate::bend::Bend).
+//!
+//! | file | what is in it |
+//! | --- | --- |
+//! | `filament` | how each filament through the yarn's thickness is bent and pulled at a bend |
+//! | `limits` | the limits of brittle, fibrillar and ductile fibres under pull and bending |
+//! | `kinked` | the kinked section: elastic in tension, yielding in compression |
+//! | `finding` | states, limits, codes and the finding itself |
+//! | `explain` | the method behind every code |
+
+mod explain;
+mod filament;
+mod finding;
+mod kinked;
+mod limits;
+
+pub use explain::{Explanation, explain};
+pub use filament::{Filament, Position, filaments};
+pub use finding::{Code, Finding, Judged, Limit, State};
+pub use kinked::{Section, break_bend, kinked_section};
+pub use limits::{Check, KINK_STRAIN_LIMIT, checks};
+
+use crate::bend::Bend;
+use crate::yarn::{Laid, Yarn};
+use std::sync::Arc;
+
+/// Judges one bend of a yarn: the worst limit over all filaments and stretches, and a finding of its own for a
+/// temperature above the fibre's limit.
+pub fn judge(bend: &Bend, yarn: &Arc<Yarn>, laid: &Laid, reserve: f64) -> (Finding, Option<Finding>) {
+    let mut worst: Option<(Judged, Filament)> = None;
+    for filament in filaments(bend, yarn, laid) {
+        let judged = Judged::of(checks(yarn, &filament), reserve);
+        let worse = match &worst {
+            None => true,
+            Some((so_far, at)) => judged
+                .rank()
+                .cmp(&so_far.rank())
+                .then(filament.curvature_per_mm.total_cmp(&at.curvature_per_mm))
+                .is_gt(),
+        };
+        if worse {
+            worst = Some((judged, filament));
+        }
+    }
+    let (judged, filament) = worst.unwrap_or_else(|| {
+        let straight = Filament::straight(yarn.axial_stress_mpa(bend.pull_n));
+        (Judged::of(checks(yarn, &straight), reserve), straight)
+    });
+    let finding = Finding::new(bend, Arc::clone(yarn), filament, judged);
+    let heat = match (bend.temperature_c, yarn.fibre.max_temp_c) {
+        (Some(here), Some(limit)) if here > limit => Some(finding.overheated(bend, here, limit)),
+        _ => None,
+    };
+    (finding, heat)
+}

@@ -1,0 +1,92 @@
+//! The way from package to cloth: every station a yarn runs over is a bend under a pull.
+//!
+//! The pull grows along the route by friction (see `path::guide`). The tension given for the weave is the
+//! mean at the fell, so the stations before it in the same stage see less; a station with its own tension
+//! restarts the chain there (creel, beam, spool). Each station is judged behind its wrap, where the pull is
+//! largest, at the peak. Over a small turn a stiff strand does not close up to the guide: the edge law of
+//! `path::rod` caps the curvature, the judge takes the smaller.
+//!
+//! Left out: bending of the strand as a whole taking up some pull; guides that roll; speed.
+
+use crate::bend::{Bend, Easing, Meets, Stage, Stretch, SystemName};
+use crate::path::tension_after;
+use crate::spec::{Passage, Spec, Weave};
+use crate::weave::Cloth;
+
+/// Mean pull behind each of the stations of one yarn, N, in order: they share a stage.
+///
+/// Without a restart the last station ends at `fell_n`; from a restart on the chain runs forward.
+pub fn chain(stations: &[&Passage], fell_n: f64) -> Vec<f64> {
+    let mut behind = vec![0.0; stations.len()];
+    let first_restart = stations.iter().position(|station| station.tension_n.is_some());
+    // Backwards from the fell, over the stations before any restart.
+    let mut pull = fell_n;
+    for index in (0..first_restart.unwrap_or(stations.len())).rev() {
+        behind[index] = pull;
+        pull = tension_after(pull, -stations[index].friction, stations[index].turn_rad);
+    }
+    for index in first_restart.unwrap_or(stations.len())..stations.len() {
+        let station = stations[index];
+        let before = station.tension_n.unwrap_or_else(|| behind[index - 1]);
+        behind[index] = tension_after(before, station.friction, station.turn_rad);
+    }
+    behind
+}
+
+/// One bend for each station of the spec, in its order.
+pub fn stations(spec: &Spec, cloth: &Cloth) -> Vec<Bend> {
+    let weave = &spec.weave;
+    let mut bends: Vec<(usize, Bend)> = Vec::with_capacity(spec.passages.len());
+    for system in [SystemName::Warp, SystemName::Weft] {
+        for stage in [Stage::Winding, Stage::Warping, Stage::Weaving, Stage::Finishing] {
+            let here: Vec<(usize, &Passage)> = spec
+                .passages
+                .iter()
+                .enumerate()
+                .filter(|(_, passage)| passage.system == system && passage.stage == stage)
+                .collect();
+            let route: Vec<&Passage> = here.iter().map(|(_, passage)| *passage).collect();
+            let pulls = chain(&route, mean_tension_n(weave, system));
+            for ((index, passage), pull_n) in here.into_iter().zip(pulls) {
+                bends.push((index, station(passage, weave, cloth, weave.peak * pull_n)));
+            }
+        }
+    }
+    bends.sort_by_key(|(index, _)| *index);
+    bends.into_iter().map(|(_, bend)| bend).collect()
+}
+
+fn mean_tension_n(weave: &Weave, system: SystemName) -> f64 {
+    match system {
+        SystemName::Warp => weave.warp.tension_n,
+        SystemName::Weft => weave.weft.tension_n,
+    }
+}
+
+fn station(passage: &Passage, weave: &Weave, cloth: &Cloth, pull_n: f64) -> Bend {
+    let laid = match passage.system {
+        SystemName::Warp => &cloth.warp.laid,
+        SystemName::Weft => &cloth.weft.laid,
+    };
+    let centre_mm = passage.radius_mm + 0.5 * laid.outline.thickness_mm();
+    debug_assert!(weave.peak >= 1.0);
+    Bend {
+        place: passage.name.clone().into(),
+        stage: passage.stage,
+        system: passage.system,
+        profile: vec![Stretch {
+            length_mm: centre_mm * passage.turn_rad,
+            lies_on_mm: Some(passage.radius_mm),
+        }],
+        easing: Easing::LongArms {
+            turn_rad: passage.turn_rad,
+        },
+        added_per_mm: 0.0,
+        plane: 1,
+        pull_n,
+        temperature_c: passage.temperature_c,
+        meets: Meets::All,
+        governed_by: passage.radius_span.clone(),
+        heated_by: passage.temperature_span.clone(),
+    }
+}

@@ -1,0 +1,519 @@
+//! Reading one table of the spec: values with their places, every problem kept, none fatal.
+//!
+//! A [`Table`] refuses unknown keys at once; its getters return [`Field`]s, so that a value that is there
+//! but wrong (already reported) is told apart from one that is absent (which may be another problem).
+
+use super::keys::Key;
+use super::problem::{Problem, nearest_of};
+use crate::quantity::{Dimension, Quantity, QuantityError, parse};
+use crate::span::Span;
+use std::cell::RefCell;
+use toml::Spanned;
+use toml::de::{DeTable, DeValue};
+
+/// A value and the place it stood.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Placed<T> {
+    /// The value.
+    pub value: T,
+    /// Its place in the spec's text.
+    pub span: Span,
+}
+
+/// What a key held.
+#[derive(Debug, Clone, PartialEq)]
+pub enum Field<T> {
+    /// The key is not there.
+    Absent,
+    /// It is there, wrong, and reported.
+    Wrong,
+    /// It is there and right.
+    Given(Placed<T>),
+}
+
+impl<T> Field<T> {
+    /// The value where it is there and right.
+    pub fn given(self) -> Option<Placed<T>> {
+        match self {
+            Self::Given(placed) => Some(placed),
+            Self::Absent | Self::Wrong => None,
+        }
+    }
+
+    /// The bare value where it is there and right.
+    pub fn value(self) -> Option<T> {
+        self.given().map(|placed| placed.value)
+    }
+
+    /// Another value from this one.
+    pub fn map<U>(self, change: impl FnOnce(T) -> U) -> Field<U> {
+        match self {
+            Self::Given(placed) => Field::Given(Placed {
+                value: change(placed.value),
+                span: placed.span,
+            }),
+            Self::Absent => Field::Absent,
+            Self::Wrong => Field::Wrong,
+        }
+    }
+}
+
+/// Collects the problems of one file.
+#[derive(Debug, Default)]
+pub struct Problems(RefCell<Vec<Problem>>);
+
+impl Problems {
+    /// Keeps a problem.
+    pub fn push(&self, problem: Problem) {
+        self.0.borrow_mut().push(problem);
+    }
+
+    /// Whether none was found so far.
+    pub fn is_empty(&self) -> bool {
+        self.0.borrow().is_empty()
+    }
+
+    /// All of them, in the order of the text.
+    pub fn into_sorted(self) -> Vec<Problem> {
+        let mut all = self.0.into_inner();
+        all.sort_by_key(|problem| (problem.span.start, problem.span.end));
+        all
+    }
+}
+
+/// One table being read.
+#[derive(Debug, Clone)]
+pub struct Table<'a> {
+    problems: &'a Problems,
+    table: &'a DeTable<'a>,
+    span: Span,
+    what: String,
+}
+
+/// What a number must be.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Bound {
+    /// Above zero.
+    Positive,
+    /// Zero or above.
+    NotNegative,
+    /// Any finite value.
+    Any,
+    /// From the first to the second, both included.
+    Within(f64, f64),
+}
+
+impl Bound {
+    fn broken_by(self, value: f64) -> Option<String> {
+        match self {
+            Self::Positive if value <= 0.0 => Some("must be above zero".into()),
+            Self::NotNegative if value < 0.0 => Some("must not be negative".into()),
+            Self::Within(low, high) if !(low..=high).contains(&value) => {
+                Some(if high == f64::MAX {
+                    format!("must be {low} or more")
+                } else {
+                    format!("must lie between {low} and {high}")
+                })
+            }
+            _ => None,
+        }
+    }
+}
+
+impl<'a> Table<'a> {
+    /// A table whose keys are checked against the known ones; `what` is its word in messages.
+    pub fn new(
+        problems: &'a Problems,
+        table: &'a DeTable<'a>,
+        span: Span,
+        what: impl Into<String>,
+        keys: &'static [Key],
+    ) -> Self {
+        let this = Self {
+            problems,
+            table,
+            span,
+            what: what.into(),
+        };
+        for key in table.keys() {
+            let name: &str = key.get_ref();
+            if !keys.iter().any(|known| known.name == name) {
+                let known = keys.iter().map(|key| key.name);
+                let all: Vec<String> = known.clone().map(|name| format!("`{name}`")).collect();
+                problems.push(
+                    Problem::at(
+                        key.span(),
+                        format!("unknown key `{name}` in {}", this.what),
+                        "not a key here",
+                    )
+                    .nearest(nearest_of(name, known))
+                    .help(format!("known here: {}", all.join(", "))),
+                );
+            }
+        }
+        this
+    }
+
+    /// Where the table stands.
+    pub fn span(&self) -> Span {
+        self.span.clone()
+    }
+
+    /// Where the value of a key stands, if it is there.
+    pub fn place_of(&self, key: &str) -> Option<Span> {
+        self.raw(key).map(Spanned::span)
+    }
+
+    /// Whether a value of this table has been reported.
+    pub fn has_problems_inside(&self) -> bool {
+        let values: Vec<Span> = self.table.values().map(Spanned::span).collect();
+        self.problems
+            .0
+            .borrow()
+            .iter()
+            .any(|problem| values.contains(&problem.span))
+    }
+
+    /// Keeps a problem.
+    pub fn push(&self, problem: Problem) {
+        self.problems.push(problem);
+    }
+
+    /// Reports a missing key; `takes` says what would do.
+    pub fn missing(&self, key: &str, takes: &str) {
+        self.push(
+            Problem::at(
+                self.span(),
+                format!("{} has no `{key}`", self.what),
+                format!("`{key}` is missing"),
+            )
+            .help(format!("add `{key} = {takes}`")),
+        );
+    }
+
+    /// The field's value, or `None` with a problem kept where it is absent.
+    pub fn required<T>(&self, field: Field<T>, key: &str, takes: &str) -> Option<Placed<T>> {
+        if matches!(field, Field::Absent) {
+            self.missing(key, takes);
+        }
+        field.given()
+    }
+
+    fn raw(&self, key: &str) -> Option<&'a Spanned<DeValue<'a>>> {
+        self.table.get(key)
+    }
+
+    fn wrong_type<T>(&self, key: &str, found: &Spanned<DeValue<'_>>, wanted: &str) -> Field<T> {
+        self.push(Problem::at(
+            found.span(),
+            format!("`{key}` takes {wanted}, not {}", type_word(found.get_ref())),
+            format!("{wanted} needed"),
+        ));
+        Field::Wrong
+    }
+
+    /// A text that is not empty.
+    pub fn text(&self, key: &str) -> Field<String> {
+        let Some(found) = self.raw(key) else {
+            return Field::Absent;
+        };
+        match found.get_ref() {
+            DeValue::String(text) if text.trim().is_empty() => {
+                self.push(Problem::at(
+                    found.span(),
+                    format!("`{key}` is empty"),
+                    "empty",
+                ));
+                Field::Wrong
+            }
+            DeValue::String(text) => Field::Given(Placed {
+                value: text.to_string(),
+                span: found.span(),
+            }),
+            _ => self.wrong_type(key, found, "a text"),
+        }
+    }
+
+    /// One of some words.
+    pub fn word<T: Copy>(&self, key: &str, words: &[(&'static str, T)]) -> Field<T> {
+        let Field::Given(text) = self.text(key) else {
+            return if self.raw(key).is_some() {
+                Field::Wrong
+            } else {
+                Field::Absent
+            };
+        };
+        match words.iter().find(|(word, _)| *word == text.value) {
+            Some((_, value)) => Field::Given(Placed {
+                value: *value,
+                span: text.span,
+            }),
+            None => {
+                let all: Vec<String> = words
+                    .iter()
+                    .map(|(word, _)| format!("\"{word}\""))
+                    .collect();
+                self.push(
+                    Problem::at(
+                        text.span,
+                        format!("`{}` is no `{key}`", text.value),
+                        "unknown word",
+                    )
+                    .nearest(nearest_of(&text.value, words.iter().map(|(word, _)| *word)))
+                    .help(format!("would do: {}", all.join(", "))),
+                );
+                Field::Wrong
+            }
+        }
+    }
+
+    /// A quantity with its unit, inside its bound.
+    pub fn quantity(&self, key: &str, wanted: &[Dimension], bound: Bound) -> Field<Quantity> {
+        let Some(found) = self.raw(key) else {
+            return Field::Absent;
+        };
+        let span = found.span();
+        let units = || {
+            let symbols: Vec<&str> = wanted.iter().flat_map(|kind| kind.symbols()).collect();
+            format!("units that would do: {}", symbols.join(", "))
+        };
+        let text = match found.get_ref() {
+            DeValue::String(text) => text,
+            number @ (DeValue::Integer(_) | DeValue::Float(_)) => {
+                let symbol = wanted
+                    .first()
+                    .and_then(|kind| kind.symbols().next())
+                    .unwrap_or("mm");
+                self.push(
+                    Problem::at(span, format!("`{key}` is a bare number"), "no unit")
+                        .help(format!(
+                            "write a text with its unit, `\"{} {symbol}\"`",
+                            digits(number)
+                        ))
+                        .help(units()),
+                );
+                return Field::Wrong;
+            }
+            _ => return self.wrong_type(key, found, "a text with a unit"),
+        };
+        match parse(text, wanted) {
+            Ok(quantity) => match bound.broken_by(quantity.value) {
+                None => Field::Given(Placed {
+                    value: quantity,
+                    span,
+                }),
+                Some(broken) => {
+                    self.push(Problem::at(
+                        span,
+                        format!("`{key}` {broken}"),
+                        format!("{text}"),
+                    ));
+                    Field::Wrong
+                }
+            },
+            Err(error) => {
+                self.push(quantity_problem(key, span, &error, units()));
+                Field::Wrong
+            }
+        }
+    }
+
+    /// A quantity of one dimension, as its internal value.
+    pub fn measure(&self, key: &str, wanted: Dimension, bound: Bound) -> Field<f64> {
+        self.quantity(key, &[wanted], bound)
+            .map(|quantity| quantity.value)
+    }
+
+    /// A number without a unit, finite and inside its bound.
+    pub fn number(&self, key: &str, bound: Bound) -> Field<f64> {
+        let Some(found) = self.raw(key) else {
+            return Field::Absent;
+        };
+        let value = match found.get_ref() {
+            number @ (DeValue::Integer(_) | DeValue::Float(_)) => {
+                digits(number).parse::<f64>().ok()
+            }
+            _ => return self.wrong_type(key, found, "a number"),
+        };
+        let span = found.span();
+        let broken = match value {
+            Some(value) if value.is_finite() => bound.broken_by(value),
+            _ => Some("must be a finite number".into()),
+        };
+        match (value, broken) {
+            (Some(value), None) => Field::Given(Placed { value, span }),
+            (_, broken) => {
+                let broken = broken.unwrap_or_default();
+                self.push(Problem::at(
+                    span,
+                    format!("`{key}` {broken}"),
+                    digits(found.get_ref()),
+                ));
+                Field::Wrong
+            }
+        }
+    }
+
+    /// A whole number from 1 up.
+    pub fn count(&self, key: &str) -> Field<u32> {
+        let Some(found) = self.raw(key) else {
+            return Field::Absent;
+        };
+        let DeValue::Integer(number) = found.get_ref() else {
+            return self.wrong_type(key, found, "a whole number");
+        };
+        match u32::from_str_radix(number.as_str(), number.radix()) {
+            Ok(value) if value > 0 => Field::Given(Placed {
+                value,
+                span: found.span(),
+            }),
+            _ => {
+                self.push(Problem::at(
+                    found.span(),
+                    format!("`{key}` must be a whole number from 1 to {}", u32::MAX),
+                    number.as_str().to_owned(),
+                ));
+                Field::Wrong
+            }
+        }
+    }
+
+    /// A list of texts with the place of each.
+    pub fn texts(&self, key: &str) -> Field<Vec<Placed<String>>> {
+        let Some(found) = self.raw(key) else {
+            return Field::Absent;
+        };
+        let DeValue::Array(items) = found.get_ref() else {
+            return self.wrong_type(key, found, "a list of texts");
+        };
+        let mut texts = Vec::new();
+        for item in items.iter() {
+            match item.get_ref() {
+                DeValue::String(text) => texts.push(Placed {
+                    value: text.to_string(),
+                    span: item.span(),
+                }),
+                _ => return self.wrong_type(key, item, "texts only"),
+            }
+        }
+        Field::Given(Placed {
+            value: texts,
+            span: found.span(),
+        })
+    }
+
+    /// A table under a key.
+    pub fn table(&self, key: &str, what: &str, keys: &'static [Key]) -> Field<Table<'a>> {
+        let Some(found) = self.raw(key) else {
+            return Field::Absent;
+        };
+        let DeValue::Table(table) = found.get_ref() else {
+            return self.wrong_type(key, found, "a table");
+        };
+        Field::Given(Placed {
+            value: Table::new(self.problems, table, found.span(), what, keys),
+            span: found.span(),
+        })
+    }
+
+    /// The tables under the keys of a table, `[yarn.NAME]`: name, its place, table.
+    pub fn named_tables(
+        &self,
+        key: &str,
+        keys: &'static [Key],
+    ) -> Vec<(Placed<String>, Table<'a>)> {
+        let Some(found) = self.raw(key) else {
+            return Vec::new();
+        };
+        let DeValue::Table(outer) = found.get_ref() else {
+            self.wrong_type::<()>(key, found, &format!("tables, `[{key}.NAME]`"));
+            return Vec::new();
+        };
+        let mut tables = Vec::new();
+        for (name, value) in outer.iter() {
+            let text = name.get_ref().to_string();
+            match value.get_ref() {
+                DeValue::Table(table) => {
+                    let what = format!("[{key}.{text}]");
+                    tables.push((
+                        Placed {
+                            value: text,
+                            span: name.span(),
+                        },
+                        Table::new(self.problems, table, value.span(), what, keys),
+                    ));
+                }
+                _ => {
+                    self.wrong_type::<()>(&text, value, &format!("a table, `[{key}.NAME]`"));
+                }
+            }
+        }
+        tables
+    }
+
+    /// The tables of a list, `[[passage]]`.
+    pub fn tables(&self, key: &str, keys: &'static [Key]) -> Vec<Table<'a>> {
+        let Some(found) = self.raw(key) else {
+            return Vec::new();
+        };
+        let DeValue::Array(items) = found.get_ref() else {
+            self.wrong_type::<()>(key, found, &format!("a list of tables, `[[{key}]]`"));
+            return Vec::new();
+        };
+        let mut tables = Vec::new();
+        for (index, item) in items.iter().enumerate() {
+            match item.get_ref() {
+                DeValue::Table(table) => {
+                    let what = format!("[[{key}]] number {}", index + 1);
+                    tables.push(Table::new(self.problems, table, item.span(), what, keys));
+                }
+                _ => {
+                    self.wrong_type::<()>(key, item, &format!("tables, `[[{key}]]`"));
+                }
+            }
+        }
+        tables
+    }
+}
+
+/// The digits of a number as written, without underscores.
+fn digits(value: &DeValue<'_>) -> String {
+    match value {
+        DeValue::Integer(number) if number.radix() == 10 => number.as_str().to_owned(),
+        DeValue::Integer(number) => i64::from_str_radix(number.as_str(), number.radix())
+            .map_or_else(|_| number.as_str().to_owned(), |value| value.to_string()),
+        DeValue::Float(number) => number.as_str().to_owned(),
+        _ => String::new(),
+    }
+}
+
+fn type_word(value: &DeValue<'_>) -> &'static str {
+    match value {
+        DeValue::String(_) => "a text",
+        DeValue::Integer(_) | DeValue::Float(_) => "a number",
+        DeValue::Boolean(_) => "true or false",
+        DeValue::Datetime(_) => "a date",
+        DeValue::Array(_) => "a list",
+        DeValue::Table(_) => "a table",
+    }
+}
+
+/// The problem of a text that is no quantity.
+pub fn quantity_problem(key: &str, span: Span, error: &QuantityError, units: String) -> Problem {
+    let label = match error {
+        QuantityError::NoNumber { .. } => "a number and a unit needed",
+        QuantityError::Comma { .. } => "a point, not a comma",
+        QuantityError::NotFinite { .. } => "not finite",
+        QuantityError::NoUnit { .. } => "no unit",
+        QuantityError::UnknownUnit { .. } => "unknown unit",
+        QuantityError::WrongDimension { .. } => "unit of something else",
+        QuantityError::NoDirection { .. } => "S or Z needed",
+    };
+    let nearest = match error {
+        QuantityError::UnknownUnit { nearest, .. } => *nearest,
+        _ => None,
+    };
+    Problem::at(span, format!("`{key}`: {error}"), label)
+        .nearest(nearest)
+        .help(units)
+}

@@ -1,0 +1,138 @@
+//! `[[passage]]` and `[[tool]]`: what a yarn runs over, and what the cloth is laid over.
+
+use super::keys::{PASSAGE, TOOL};
+use super::problem::Problem;
+use super::reader::{Bound, Table};
+use super::weave::{Weave, read_tension};
+use crate::bend::{Stage, SystemName};
+use crate::quantity::Dimension;
+use crate::span::Span;
+
+/// Friction where neither spec nor fibre has one (common practice, no source).
+pub const DEFAULT_FRICTION: f64 = 0.25;
+
+/// One station on a yarn's way.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Passage {
+    /// What the spec calls it.
+    pub name: String,
+    /// Which yarn runs over it.
+    pub system: SystemName,
+    /// Where on the way.
+    pub stage: Stage,
+    /// Radius of the edge, mm; zero is a knife edge.
+    pub radius_mm: f64,
+    /// Wrap angle, rad.
+    pub turn_rad: f64,
+    /// Coefficient of friction.
+    pub friction: f64,
+    /// Whether the spec gave that coefficient.
+    pub friction_given: bool,
+    /// Mean pull in front of it, N, where the chain restarts here.
+    pub tension_n: Option<f64>,
+    /// Temperature of the yarn there, degrees C.
+    pub temperature_c: Option<f64>,
+    /// The line that governs: its radius.
+    pub radius_span: Span,
+    /// The temperature's place, where given.
+    pub temperature_span: Option<Span>,
+}
+
+/// One corner the cloth is laid over.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Tool {
+    /// What the spec calls it.
+    pub name: String,
+    /// Radius of the corner, mm.
+    pub radius_mm: f64,
+    /// Direction of the corner's edge from the warp, rad; `None` where it is not known.
+    pub bend_axis_rad: Option<f64>,
+    /// The line that governs: its radius.
+    pub radius_span: Span,
+}
+
+/// Reads every `[[passage]]`.
+pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
+    let mut passages = Vec::new();
+    for table in spec.tables("passage", PASSAGE) {
+        passages.extend(read_passage(&table, weave));
+    }
+    passages
+}
+
+fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
+    let systems = [("warp", SystemName::Warp), ("weft", SystemName::Weft)];
+    let stages = [
+        ("winding", Stage::Winding),
+        ("warping", Stage::Warping),
+        ("weaving", Stage::Weaving),
+        ("finishing", Stage::Finishing),
+    ];
+    let system = table.required(table.word("yarn", &systems), "yarn", "\"warp\"");
+    let name = table.required(table.text("name"), "name", "\"heald eye\"");
+    let stage = table.word("stage", &stages).value();
+    let radius = table.measure("radius", Dimension::Length, Bound::NotNegative);
+    let radius = table.required(radius, "radius", "\"1.5 mm\"");
+    let turn = table.measure("turn", Dimension::Angle, Bound::Positive);
+    let turn = table.required(turn, "turn", "\"12 deg\"");
+    let friction = table.number("friction", Bound::NotNegative).value();
+    let temperature = table
+        .measure(
+            "temperature",
+            Dimension::Temperature,
+            Bound::Within(-273.15, f64::MAX),
+        )
+        .given();
+    let yarn = weave
+        .zip(system.as_ref())
+        .map(|(weave, system)| match system.value {
+            SystemName::Weft => &weave.weft.yarn,
+            _ => &weave.warp.yarn,
+        });
+    let tension_n = read_tension(table, yarn.map(|yarn| Some(&**yarn)));
+    let (system, name, radius, turn) = (system?, name?, radius?, turn?);
+    // More than a few full wraps is a slip of the unit: e to the power of friction times turn explodes.
+    if turn.value > 20.0 * std::f64::consts::PI {
+        table.push(
+            Problem::at(turn.span, "`turn` is more than ten full wraps", "too much")
+                .help("a wrap angle, \"12 deg\""),
+        );
+        return None;
+    }
+    let default_friction = yarn.and_then(|yarn| yarn.fibre.friction_on_guide);
+    Some(Passage {
+        name: name.value,
+        system: system.value,
+        stage: stage.unwrap_or(Stage::Weaving),
+        radius_mm: radius.value,
+        turn_rad: turn.value,
+        friction: friction.or(default_friction).unwrap_or(DEFAULT_FRICTION),
+        friction_given: friction.is_some(),
+        tension_n,
+        temperature_span: temperature.as_ref().map(|placed| placed.span.clone()),
+        temperature_c: temperature.map(|placed| placed.value),
+        radius_span: radius.span,
+    })
+}
+
+/// Reads every `[[tool]]`.
+pub fn read_tools(spec: &Table<'_>) -> Vec<Tool> {
+    let mut tools = Vec::new();
+    for table in spec.tables("tool", TOOL) {
+        let name = table.required(table.text("name"), "name", "\"frame corner\"");
+        let radius = table.measure("radius", Dimension::Length, Bound::NotNegative);
+        let radius = table.required(radius, "radius", "\"6 mm\"");
+        let axis = table
+            .measure("bend_axis", Dimension::Angle, Bound::Any)
+            .value();
+        if let (Some(name), Some(radius)) = (name, radius) {
+            tools.push(Tool {
+                name: name.value,
+                radius_mm: radius.value,
+                bend_axis_rad: axis,
+                radius_span: radius.span,
+            });
+        }
+    }
+    tools
+}

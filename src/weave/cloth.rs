@@ -1,0 +1,290 @@
+//! The cloth: both systems laid, their height shared, and the numbers that follow.
+//!
+//! ```text
+//! thickness   = max(h1 + t1, h2 + t2)
+//! areal mass  = n1 tex1 (1 + c1) + n2 tex2 (1 + c2)           n: threads per length
+//! cover       = 1 - (1 - w1/p1)(1 - w2/p2)                    straight yarns
+//! fibre share = fibre volume per area / thickness
+//! ```
+//!
+//! A measured cloth thickness scales the thicknesses of both yarns by one factor until the larger of wave
+//! height + thickness meets it. Left out: nesting, hairiness, flattening by a gauge's pressure.
+
+use super::share::{Closed, Closure, share};
+use super::wave::Wave;
+use crate::pattern::{FloatLength, Side, SystemInterlacing};
+use crate::root::rising_root;
+use crate::spec::{System, Weave};
+use crate::yarn::{Laid, LayError, Vary};
+use thiserror::Error;
+
+/// One system in the cloth.
+#[derive(Debug, Clone, PartialEq)]
+pub struct ClothYarn {
+    /// Straightened over cloth length, less 1; mean of the system.
+    pub crimp: f64,
+    /// Height of the wave from crest to trough of the centreline, mm.
+    pub wave_height_mm: f64,
+    /// Slope of the straight piece, rad: the wrap angle on one side of a crest.
+    pub slope_rad: f64,
+    /// Smallest radius of the centreline, mm; absent where the yarn runs straight.
+    pub min_radius_mm: Option<f64>,
+    /// Length of centreline that lies on the crossed yarn on one side of a crest, mm.
+    pub contact_mm: f64,
+    /// Longest float on the face, crossings.
+    pub float_face: usize,
+    /// Longest float on the back, crossings.
+    pub float_back: usize,
+    /// Distance between neighbouring yarns of this system, mm.
+    pub spacing_mm: f64,
+    /// The yarn in its outline.
+    pub laid: Laid,
+    /// The wave: its path and how its crowns may ease.
+    pub wave: Wave,
+    /// The way from a crest to the next trough.
+    pub passing: crate::path::Passing,
+}
+
+impl ClothYarn {
+    /// The longest float on either side, crossings.
+    pub fn float_max(&self) -> usize {
+        self.float_face.max(self.float_back)
+    }
+}
+
+/// A woven cloth.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Cloth {
+    /// The ends.
+    pub warp: ClothYarn,
+    /// The picks.
+    pub weft: ClothYarn,
+    /// How the height is shared.
+    pub closed: Closed,
+    /// Thickness, mm.
+    pub thickness_mm: f64,
+    /// Mass per area with crimp, g/m2.
+    pub areal_mass_g_m2: f64,
+    /// Share of the area covered by yarn.
+    pub cover: f64,
+    /// Share of fibre in the cloth's volume.
+    pub fibre_volume_fraction: f64,
+    /// Factor by which a measured cloth thickness scaled the yarns' thicknesses.
+    pub thickness_factor: Option<f64>,
+}
+
+/// Why there is no cloth.
+#[derive(Debug, Clone, PartialEq, Error)]
+pub enum ClothError {
+    /// The yarns cannot interlace at this sett.
+    #[error("the yarns are too close to interlace")]
+    Jammed,
+    /// A yarn does not fit beside its neighbours.
+    #[error("{system} yarn: {error}")]
+    Lay {
+        /// Which system.
+        system: &'static str,
+        /// What does not fit.
+        error: LayError,
+    },
+    /// No scaling of the yarns meets the measured thickness.
+    #[error("no thickness of these yarns makes a cloth {asked_mm} mm thick: they give {least_mm:.4} to {most_mm:.4} mm")]
+    Thickness {
+        /// Thickness asked for, mm.
+        asked_mm: f64,
+        /// The thinnest cloth that can be.
+        least_mm: f64,
+        /// The thickest cloth that can be.
+        most_mm: f64,
+    },
+}
+
+/// Mass per area of two systems, g/m2: threads per mm, tex, crimp of each.
+pub fn areal_mass_g_m2(warp: (f64, f64, f64), weft: (f64, f64, f64)) -> f64 {
+    let one = |(sett_per_mm, tex, crimp): (f64, f64, f64)| sett_per_mm * tex * (1.0 + crimp);
+    one(warp) + one(weft)
+}
+
+/// Share of the area covered by two systems of straight yarns: width and spacing of each.
+pub fn cover(warp: (f64, f64), weft: (f64, f64)) -> f64 {
+    let open = |(width, spacing): (f64, f64)| 1.0 - (width / spacing).min(1.0);
+    1.0 - open(warp) * open(weft)
+}
+
+impl Cloth {
+    /// The cloth of a weave, its assumed outlines varied by `flatness` (1 for the spec as it stands).
+    ///
+    /// # Errors
+    /// Where the yarns do not fit, or no scaling meets the measured thickness.
+    pub fn build(weave: &Weave, flatness: f64) -> Result<Self, ClothError> {
+        let vary = |thickness: f64| Vary { flatness, thickness };
+        let Some(asked_mm) = weave.thickness_mm else {
+            return Self::build_varied(weave, vary(1.0));
+        };
+        // Thicker yarns make a thicker cloth, up to the first that jams or stands on edge; thinner ones are
+        // packed closer, down to the closest packing.
+        let thickness_at = |factor: f64| Self::build_varied(weave, vary(factor));
+        let (low, high) = factor_range(|factor| thickness_at(factor).is_ok())
+            .ok_or_else(|| thickness_at(1.0).err().unwrap_or(ClothError::Jammed))?;
+        let excess = |factor: f64| thickness_at(factor).map_or(0.0, |c| c.thickness_mm) - asked_mm;
+        let factor = rising_root(excess, low, high, 1e-12);
+        let cloth = thickness_at(factor)?;
+        if (cloth.thickness_mm / asked_mm - 1.0).abs() > 1e-6 {
+            return Err(ClothError::Thickness {
+                asked_mm,
+                least_mm: thickness_at(low)?.thickness_mm,
+                most_mm: thickness_at(high)?.thickness_mm,
+            });
+        }
+        Ok(Self {
+            thickness_factor: Some(factor),
+            ..cloth
+        })
+    }
+
+    fn build_varied(weave: &Weave, vary: Vary) -> Result<Self, ClothError> {
+        let lay = |system: &System, name: &'static str| {
+            system
+                .yarn
+                .laid_at(system.spacing_mm(), vary)
+                .map_err(|error| ClothError::Lay { system: name, error })
+        };
+        let (warp, weft) = (lay(&weave.warp, "warp")?, lay(&weave.weft, "weft")?);
+        let wave = |own: &Laid, crossed: &Laid, spacing: f64, system: &SystemInterlacing| {
+            Wave::new(&own.outline, &crossed.outline, spacing, system)
+        };
+        let floats = &weave.interlacing;
+        let warp_wave = wave(&warp, &weft, weave.weft.spacing_mm(), &floats.warp);
+        let weft_wave = wave(&weft, &warp, weave.warp.spacing_mm(), &floats.weft);
+        let whole_mm = warp.outline.thickness_mm() + weft.outline.thickness_mm();
+        let shared = share(&warp_wave, &weft_wave, whole_mm, closure(weave))
+            .ok_or(ClothError::Jammed)?;
+        let yarn = |system: &System, laid: Laid, wave: Wave, height_mm: f64, woven| {
+            ClothYarn::new(system, laid, wave, height_mm, woven).ok_or(ClothError::Jammed)
+        };
+        let warp = yarn(&weave.warp, warp, warp_wave, shared.warp_mm, &floats.warp)?;
+        let weft = yarn(&weave.weft, weft, weft_wave, shared.weft_mm, &floats.weft)?;
+        Ok(Self::from_systems(weave, warp, weft, shared.closed))
+    }
+
+    fn from_systems(weave: &Weave, warp: ClothYarn, weft: ClothYarn, closed: Closed) -> Self {
+        let height = |yarn: &ClothYarn| yarn.wave_height_mm + yarn.laid.outline.thickness_mm();
+        let thickness_mm = height(&warp).max(height(&weft));
+        let mass = |system: &System, yarn: &ClothYarn| {
+            (system.sett_per_mm, system.yarn.count.linear_density_tex, yarn.crimp)
+        };
+        // Per mm2 of cloth: length of yarn times its area of fibre.
+        let fibre_mm = |system: &System, yarn: &ClothYarn| {
+            system.sett_per_mm * (1.0 + yarn.crimp) * system.yarn.fibre_area_mm2()
+        };
+        let width = |yarn: &ClothYarn| (yarn.laid.outline.width_mm(), yarn.spacing_mm);
+        Self {
+            thickness_mm,
+            areal_mass_g_m2: areal_mass_g_m2(mass(&weave.warp, &warp), mass(&weave.weft, &weft)),
+            cover: cover(width(&warp), width(&weft)),
+            fibre_volume_fraction: (fibre_mm(&weave.warp, &warp) + fibre_mm(&weave.weft, &weft))
+                / thickness_mm,
+            closed,
+            warp,
+            weft,
+            thickness_factor: None,
+        }
+    }
+}
+
+impl ClothYarn {
+    fn new(
+        system: &System,
+        laid: Laid,
+        wave: Wave,
+        height_mm: f64,
+        woven: &SystemInterlacing,
+    ) -> Option<Self> {
+        let passing = wave.crest().pass(height_mm)?;
+        let float = |side: Side| {
+            woven.longest_float(side).and_then(FloatLength::crossings).unwrap_or(0)
+        };
+        Some(Self {
+            crimp: wave.crimp_of(&passing),
+            wave_height_mm: height_mm,
+            slope_rad: passing.slope_rad,
+            min_radius_mm: wave.min_radius_mm(&passing),
+            contact_mm: passing.rests.iter().map(|rest| rest.length_mm).sum(),
+            float_face: float(Side::Face),
+            float_back: float(Side::Back),
+            spacing_mm: system.spacing_mm(),
+            laid,
+            wave,
+            passing,
+        })
+    }
+}
+
+/// What closes the height of this weave.
+fn closure(weave: &Weave) -> Closure {
+    match (weave.warp.crimp, weave.weft.crimp) {
+        (Some(warp), Some(weft)) => Closure::BothCrimps(warp, weft),
+        (Some(warp), None) => Closure::WarpCrimp(warp),
+        (None, Some(weft)) => Closure::WeftCrimp(weft),
+        (None, None) if weave.warp.tension_given && weave.weft.tension_given => {
+            Closure::Tensions(weave.warp.tension_n, weave.weft.tension_n)
+        }
+        (None, None) => Closure::EqualHeights,
+    }
+}
+
+/// The range of thickness factors around a good one in which a cloth exists, each end within 1e-9.
+fn factor_range(exists: impl Fn(f64) -> bool) -> Option<(f64, f64)> {
+    // A good factor near 1 to start from: yarns as they lie, else thinner ones.
+    let good = (0..40).map(|step| 0.97f64.powi(step)).find(|factor| exists(*factor))?;
+    let edge = |mut inside: f64, mut outside: f64| {
+        while (inside - outside).abs() > 1e-9 {
+            let middle = 0.5 * (inside + outside);
+            if exists(middle) { inside = middle } else { outside = middle }
+        }
+        inside
+    };
+    let above = (1..20).map(|step| good * 1.5f64.powi(step)).find(|factor| !exists(*factor));
+    Some((edge(good, 0.0), edge(good, above.unwrap_or(good))))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use geo::{Area, BooleanOps, MultiPolygon, Rect};
+
+    /// Counted independently over one square metre: areal mass (g/m2), cover (point sampling of the plan view).
+    #[test]
+    fn mass_and_cover_match_the_independent_count() {
+        // ends, picks per cm, widths mm, tex, crimps, mass, cover
+        let cases = [
+            ((5.0, 5.0), (1.7, 1.7), (200.0, 200.0), (0.004, 0.004), 200.8, 0.9775),
+            ((10.0, 9.0), (0.8, 0.9), (68.0, 68.0), (0.01, 0.012), 130.6144, 0.962),
+            ((22.0, 20.0), (0.3, 0.32), (34.0, 34.0), (0.05, 0.07), 151.3, 0.8776),
+            ((7.0, 6.0), (1.4, 1.2), (300.0, 136.0), (0.006, 0.02), 294.492, 0.9944),
+            ((30.0, 25.0), (0.28, 0.3), (20.0, 25.0), (0.09, 0.04), 130.4, 0.96),
+        ];
+        for (sett, width, tex, crimp, mass, covered) in cases {
+            let (n1, n2) = (sett.0 / 10.0, sett.1 / 10.0);
+            let ours = areal_mass_g_m2((n1, tex.0, crimp.0), (n2, tex.1, crimp.1));
+            assert!((ours - mass).abs() < 1e-9, "{ours} {mass}");
+            let share = cover((width.0, 1.0 / n1), (width.1, 1.0 / n2));
+            assert!((share - covered).abs() < 1e-12, "{share} {covered}");
+        }
+    }
+
+    /// Cover by the union of rectangles over four repeats (geo): the formula's own definition, drawn.
+    #[test]
+    fn cover_equals_the_union_of_the_yarns() {
+        let (w1, p1, w2, p2) = (0.3, 0.45, 0.32, 0.5);
+        let mut union = MultiPolygon::new(vec![]);
+        for index in 0..4 {
+            let at = f64::from(index);
+            let end = Rect::new((at * p1, 0.0), (at * p1 + w1, 4.0 * p2)).to_polygon();
+            let pick = Rect::new((0.0, at * p2), (4.0 * p1, at * p2 + w2)).to_polygon();
+            union = union.union(&end).union(&pick);
+        }
+        let drawn = union.unsigned_area() / (16.0 * p1 * p2);
+        assert!((drawn - cover((w1, p1), (w2, p2))).abs() < 1e-9, "{drawn}");
+    }
+}

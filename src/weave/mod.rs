@@ -1,0 +1,21 @@
+//! Woven cloth with the taut path model: how both systems share the height, the cloth's numbers, its bends.
+//!
+//! | file | what is in it |
+//! | --- | --- |
+//! | `wave` | one system's wave: crimp and slope for a given height, from the pattern and the taut path |
+//! | `share` | how warp and weft share the height: measured crimp, tensions, or equal heights |
+//! | `cloth` | the cloth and its numbers: crimp, thickness, mass, cover, fibre volume |
+//! | `jam` | the largest sett that fits where the yarns asked for cannot interlace |
+//! | `crowns` | the bends of the cloth's yarns |
+
+mod cloth;
+mod crowns;
+mod jam;
+mod share;
+mod wave;
+
+pub use cloth::{Cloth, ClothYarn, areal_mass_g_m2, cover};
+pub use crowns::crowns;
+pub use jam::{Fits, Jammed};
+pub use share::{Closed, Closure, Share};
+pub use wave::{Piece, Wave};

@@ -1,0 +1,269 @@
+//! A yarn laid at its spacing: which outline it takes, and how densely it is packed.
+//!
+//! The area of fibre is tex / density; the outline's area is that over the packing. Of width, thickness and
+//! flatness two fix the outline (and with it the packing), one fixes it together with the packing, none
+//! leaves the trade's default: a lens as wide as 0.9 of the spacing, packing 0.65. A single filament is a
+//! solid circle; a yarn whose surface fibres lie over 15 degrees to its axis is round. Where a width comes
+//! out above the spacing the yarn is squeezed to the spacing.
+//!
+//! The defaults 0.9, 0.65 and 15 degrees are common practice without a source. 0.9069 (pi/sqrt 12) is the
+//! closest packing of circles, so more than 0.91 is refused.
+
+use super::outline::{Outline, Shape};
+use super::{Yarn, YarnForm, helix_angle_rad};
+use std::f64::consts::PI;
+use thiserror::Error;
+
+/// Fibre area over outline area where nothing else is given.
+pub const DEFAULT_PACKING: f64 = 0.65;
+/// No circles can be packed closer (0.9069, rounded up as a spec is).
+pub const CLOSEST_PACKING: f64 = 0.91;
+/// Width over spacing where nothing else is given.
+pub const DEFAULT_WIDTH_SHARE: f64 = 0.9;
+/// Surface helix angle above which a yarn holds itself round.
+pub const ROUND_HELIX_DEG: f64 = 15.0;
+
+/// How far an assumed outline is varied: both 1 for the spec as it stands.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Vary {
+    /// Flatness over the assumed flatness, at constant area; a measured outline does not change.
+    pub flatness: f64,
+    /// Thickness over the laid thickness, at constant width.
+    pub thickness: f64,
+}
+
+impl Default for Vary {
+    fn default() -> Self {
+        Self {
+            flatness: 1.0,
+            thickness: 1.0,
+        }
+    }
+}
+
+/// How the outline came about.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Basis {
+    /// A single filament: solid and round.
+    Solid,
+    /// Round, by the spec's shape or by high twist; size from area and packing.
+    Round,
+    /// Two sizes given: measured outline, packing follows.
+    Measured,
+    /// One size given, the other from area and packing.
+    OneSize,
+    /// Nothing given: the default share of the spacing.
+    Assumed,
+}
+
+/// A yarn in its outline.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Laid {
+    /// The outline.
+    pub outline: Outline,
+    /// Fibre area over outline area.
+    pub packing: f64,
+    /// How the outline came about.
+    pub basis: Basis,
+    /// Whether the yarn was squeezed to its spacing.
+    pub squeezed: bool,
+}
+
+/// Why a yarn cannot lie at its spacing.
+#[derive(Debug, Clone, PartialEq, Error)]
+pub enum LayError {
+    /// A solid filament is thicker than the spacing.
+    #[error("a filament of {diameter_mm:.4} mm does not fit a spacing of {spacing_mm:.4} mm")]
+    SolidTooWide {
+        /// Filament diameter.
+        diameter_mm: f64,
+        /// Spacing of the yarns.
+        spacing_mm: f64,
+    },
+    /// The yarn would stand on edge.
+    #[error(
+        "an outline of {area_mm2:.4} mm2 (packing {packing:.2}) does not fit a spacing of {spacing_mm:.4} mm: \
+         it would stand on edge"
+    )]
+    OnEdge {
+        /// Area of the outline.
+        area_mm2: f64,
+        /// Packing used.
+        packing: f64,
+        /// Spacing of the yarns.
+        spacing_mm: f64,
+    },
+    /// More fibre than the outline holds.
+    #[error(
+        "{fibre_mm2:.4} mm2 of fibre in an outline of {area_mm2:.4} mm2 is a packing of {packing:.2}, over 0.91"
+    )]
+    TooDense {
+        /// Area of fibre.
+        fibre_mm2: f64,
+        /// Area of the outline.
+        area_mm2: f64,
+        /// Resulting packing.
+        packing: f64,
+    },
+    /// The sizes given make no outline of this shape.
+    #[error("a {shape} cannot be {width_mm} mm wide and {thickness_mm} mm thick")]
+    NoOutline {
+        /// Shape given.
+        shape: &'static str,
+        /// Width given.
+        width_mm: f64,
+        /// Thickness given.
+        thickness_mm: f64,
+    },
+}
+
+impl Yarn {
+    /// The shape given, or the default for the yarn's twist.
+    pub fn shape(&self) -> Shape {
+        self.form.shape.unwrap_or_else(|| {
+            let round_radius = (self.fibre_area_mm2() / (PI * self.assumed_packing())).sqrt();
+            let surface = helix_angle_rad(round_radius, self.twist_per_mm);
+            if self.is_monofilament() || surface.to_degrees() > ROUND_HELIX_DEG {
+                Shape::Round
+            } else {
+                Shape::Lens
+            }
+        })
+    }
+
+    /// Packing given, or assumed.
+    pub fn assumed_packing(&self) -> f64 {
+        self.form.packing.unwrap_or(DEFAULT_PACKING)
+    }
+
+    /// Lays the yarn beside its neighbours, `spacing_mm` apart.
+    ///
+    /// # Errors
+    /// Where no outline fits: see [`LayError`].
+    pub fn laid_at(&self, spacing_mm: f64, vary: Vary) -> Result<Laid, LayError> {
+        if self.is_monofilament() {
+            return self.laid_solid(spacing_mm);
+        }
+        let (outline, basis) = self.free_outline(spacing_mm)?;
+        let area_mm2 = outline.area_mm2();
+        let varied = match basis {
+            Basis::OneSize | Basis::Assumed if vary.flatness != 1.0 => {
+                let flatness = (outline.flatness() * vary.flatness).max(1.0);
+                Outline::with_flatness(outline.shape(), flatness, area_mm2).unwrap_or(outline)
+            }
+            _ => outline,
+        };
+        let squeezed = varied.width_mm() > spacing_mm * (1.0 + 1e-12);
+        let at_spacing = if squeezed {
+            let shape = if varied.shape() == Shape::Round {
+                Shape::Ellipse
+            } else {
+                varied.shape()
+            };
+            Outline::with_width(shape, spacing_mm, area_mm2).ok_or(LayError::OnEdge {
+                area_mm2,
+                packing: self.fibre_area_mm2() / area_mm2,
+                spacing_mm,
+            })?
+        } else {
+            varied
+        };
+        let outline = scaled_thickness(at_spacing, vary.thickness).ok_or(LayError::OnEdge {
+            area_mm2: vary.thickness * at_spacing.area_mm2(),
+            packing: self.fibre_area_mm2() / (vary.thickness * at_spacing.area_mm2()),
+            spacing_mm,
+        })?;
+        let packing = self.fibre_area_mm2() / outline.area_mm2();
+        if packing > CLOSEST_PACKING {
+            return Err(LayError::TooDense {
+                fibre_mm2: self.fibre_area_mm2(),
+                area_mm2: outline.area_mm2(),
+                packing,
+            });
+        }
+        Ok(Laid {
+            outline,
+            packing,
+            basis,
+            squeezed,
+        })
+    }
+
+    fn laid_solid(&self, spacing_mm: f64) -> Result<Laid, LayError> {
+        let diameter_mm = self.count.filament_diameter_mm;
+        let too_wide = LayError::SolidTooWide {
+            diameter_mm,
+            spacing_mm,
+        };
+        if diameter_mm > spacing_mm {
+            return Err(too_wide);
+        }
+        Ok(Laid {
+            outline: Outline::round(diameter_mm).ok_or(too_wide)?,
+            packing: 1.0,
+            basis: Basis::Solid,
+            squeezed: false,
+        })
+    }
+
+    /// The outline before any squeeze: from the sizes given, the packing and the spacing.
+    fn free_outline(&self, spacing_mm: f64) -> Result<(Outline, Basis), LayError> {
+        let shape = self.shape();
+        let packing = self.assumed_packing();
+        let area_mm2 = self.fibre_area_mm2() / packing;
+        let on_edge = || LayError::OnEdge {
+            area_mm2,
+            packing,
+            spacing_mm,
+        };
+        let YarnForm {
+            width_mm,
+            thickness_mm,
+            flatness,
+            ..
+        } = self.form;
+        let sizes = match (width_mm, thickness_mm, flatness) {
+            (Some(w), Some(t), _) => Some((w, t)),
+            (Some(w), None, Some(f)) => Some((w, w / f)),
+            (None, Some(t), Some(f)) => Some((t * f, t)),
+            _ => None,
+        };
+        if let Some((width_mm, thickness_mm)) = sizes {
+            let outline =
+                Outline::new(shape, width_mm, thickness_mm).ok_or(LayError::NoOutline {
+                    shape: shape.word(),
+                    width_mm,
+                    thickness_mm,
+                })?;
+            return Ok((outline, Basis::Measured));
+        }
+        let (outline, basis) = match (width_mm, thickness_mm, flatness) {
+            (Some(w), ..) => (Outline::with_width(shape, w, area_mm2), Basis::OneSize),
+            (_, Some(t), _) => (Outline::with_thickness(shape, t, area_mm2), Basis::OneSize),
+            (.., Some(f)) => (Outline::with_flatness(shape, f, area_mm2), Basis::OneSize),
+            _ if shape == Shape::Round => {
+                (Outline::round((4.0 * area_mm2 / PI).sqrt()), Basis::Round)
+            }
+            _ => (
+                Outline::with_width(shape, DEFAULT_WIDTH_SHARE * spacing_mm, area_mm2)
+                    // Too much fibre for 0.9 of the spacing: let it take the whole spacing.
+                    .or_else(|| Outline::with_width(shape, spacing_mm, area_mm2)),
+                Basis::Assumed,
+            ),
+        };
+        Ok((outline.ok_or_else(on_edge)?, basis))
+    }
+}
+
+/// The same outline thicker or thinner; a circle becomes an ellipse.
+fn scaled_thickness(outline: Outline, by: f64) -> Option<Outline> {
+    if by == 1.0 {
+        return Some(outline);
+    }
+    let shape = if outline.shape() == Shape::Round {
+        Shape::Ellipse
+    } else {
+        outline.shape()
+    };
+    Outline::new(shape, outline.width_mm(), by * outline.thickness_mm())
+}
