@@ -270,7 +270,7 @@ mod tests {
         let z = twill(&[2, 2], TwillLine::Z).unwrap();
         assert_eq!(z.rows(), ["..##", ".##.", "##..", "#..#"]);
         let s = twill(&[2, 2], TwillLine::S).unwrap();
-        assert_eq!(s.rows(), ["##..", ".##.", "..##", "#..#"]);
+        assert_eq!(s.rows(), [".##.", "..##", "#..#", "##.."]);
         let start_of_float = |pattern: &Pattern, end: usize| {
             (0..4)
                 .find(|p| pattern.warp_up(end, *p) && !pattern.warp_up(end, p + 3))

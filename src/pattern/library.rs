@@ -228,7 +228,7 @@ mod tests {
             .iter()
             .filter_map(|w| Some((words::parse(&w.name).ok()?, w)))
             .collect();
-        assert!(both.len() >= 24);
+        assert!(both.len() >= 23, "all regular weaves of the library");
         for (spoken, weave) in both {
             assert_eq!(spoken.rows(), weave.pattern.rows(), "{}", weave.name);
         }

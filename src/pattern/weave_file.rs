@@ -149,7 +149,7 @@ mod tests {
     #[test]
     fn the_four_keys_make_a_weave() {
         let weave = read(
-            &format!("{HEAD}rows = [\"#.\", \".#\"]"),
+            &format!("{HEAD}rows = [\".#\", \"#.\"]"),
             Path::new("x"),
             "my-twill",
         )
