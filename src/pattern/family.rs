@@ -58,7 +58,7 @@ pub fn plain() -> Pattern {
     Pattern::reduced(2, 2, vec![true, false, false, true])
 }
 
-/// A twill with these counts, over and under in turn; three pairs make a compound twill.
+/// A twill with these counts, over and under in turn; more than one pair makes a compound twill.
 ///
 /// # Errors
 /// Counts not in pairs, 0, or a repeat that is too large.

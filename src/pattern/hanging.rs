@@ -300,7 +300,34 @@ mod tests {
             .unwrap()
             .falls_apart()
             .unwrap();
-        assert!(loose.to_string().contains("ends 2, "), "{loose}");
+        assert_eq!(
+            loose.to_string(),
+            "from the top: ends 2, 3, 4, 5, 6, 7, 8, 9 and 11 more (loose); picks 2, 3 (loose); end 1 (loose); pick 1 (loose)"
+        );
+    }
+
+    /// The criterion as a graph: from the first end, every yarn is reached going down and going up.
+    fn is_strongly_connected(pattern: &Pattern) -> bool {
+        let (ends, yarns) = (pattern.ends(), pattern.ends() + pattern.picks());
+        let over = |a: usize, b: usize| match (a < ends, b < ends) {
+            (true, false) => pattern.warp_up(a, b - ends),
+            (false, true) => !pattern.warp_up(b, a - ends),
+            _ => false,
+        };
+        let reaches_all = |arrow: &dyn Fn(usize, usize) -> bool| {
+            let (mut seen, mut waiting) = (vec![false; yarns], vec![0]);
+            seen[0] = true;
+            while let Some(from) = waiting.pop() {
+                for to in 0..yarns {
+                    if !seen[to] && arrow(from, to) {
+                        seen[to] = true;
+                        waiting.push(to);
+                    }
+                }
+            }
+            seen.into_iter().all(|seen| seen)
+        };
+        reaches_all(&over) && reaches_all(&|a, b| over(b, a))
     }
 
     proptest! {
@@ -319,6 +346,17 @@ mod tests {
                 _ => up[p * 6 + e],
             }).unwrap();
             prop_assert_eq!(agrees_with_trial(&pattern), Ok(()));
+        }
+
+        /// Larger than trial can go: up to 40 x 40, a random number of loose or stacked yarns, few or many marks.
+        #[test]
+        fn large_patterns_against_the_graph(seed in proptest::collection::vec(0..100u32, 1600), ends in 1..41usize, picks in 1..41usize, share in 0..101u32, top in 0..4usize) {
+            let pattern = Pattern::from_fn(ends, picks, |e, p| match (e < top, p < top) {
+                (true, false) => true,
+                (false, true) => false,
+                _ => seed[p * 40 + e] < share,
+            }).unwrap();
+            prop_assert_eq!(pattern.falls_apart().is_none(), is_strongly_connected(&pattern));
         }
     }
 }

@@ -34,7 +34,7 @@ pub enum WeaveFileError {
         bytes: u64,
     },
     /// Not the four keys in TOML.
-    #[error("{}: {source}", .path.display())]
+    #[error("{}: {}", .path.display(), .source.to_string().trim_end())]
     Toml {
         /// The file.
         path: PathBuf,
