@@ -318,9 +318,9 @@ mod tests {
             let (mut seen, mut waiting) = (vec![false; yarns], vec![0]);
             seen[0] = true;
             while let Some(from) = waiting.pop() {
-                for to in 0..yarns {
-                    if !seen[to] && arrow(from, to) {
-                        seen[to] = true;
+                for (to, seen) in seen.iter_mut().enumerate() {
+                    if !*seen && arrow(from, to) {
+                        *seen = true;
                         waiting.push(to);
                     }
                 }
