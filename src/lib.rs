@@ -4,13 +4,16 @@
 pub mod bend;
 pub mod drape;
 pub mod fibre;
+pub mod flow;
 pub mod judge;
 pub mod passage;
 pub mod path;
 pub mod pattern;
 pub mod quantity;
+pub mod report;
 pub mod root;
 pub mod span;
 pub mod spec;
+pub mod study;
 pub mod weave;
 pub mod yarn;

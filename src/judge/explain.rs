@@ -79,7 +79,11 @@ mod tests {
     fn every_code_has_its_own_words() {
         for (index, code) in Code::ALL.iter().enumerate() {
             let told = explain(*code);
-            assert!(!told.title.is_empty() && told.text.len() > 80, "{}", code.word());
+            assert!(
+                !told.title.is_empty() && told.text.len() > 80,
+                "{}",
+                code.word()
+            );
             for other in &Code::ALL[index + 1..] {
                 assert_ne!(code.word(), other.word());
                 assert_ne!(told.title, explain(*other).title);

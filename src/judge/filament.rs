@@ -18,7 +18,9 @@
 //! filaments on the lower, migration, and in flat twisted yarns the helix's change over the width.
 
 use crate::bend::{Bend, Easing, Stretch};
-use crate::path::{bent_helix_peak_per_mm, crown_peak_per_mm, edge_peak_per_mm, helix_curvature_per_mm};
+use crate::path::{
+    bent_helix_peak_per_mm, crown_peak_per_mm, edge_peak_per_mm, helix_curvature_per_mm,
+};
 use crate::yarn::{Laid, Yarn};
 
 /// Which filament of the yarn.
@@ -136,7 +138,10 @@ fn on_stretch(
             axial_stress_mpa: pull_stress + modulus * binding * y * curvature_per_mm,
         }
     };
-    let (inside, outside) = (0.5 * diameter, (thickness - 0.5 * diameter).max(0.5 * diameter));
+    let (inside, outside) = (
+        0.5 * diameter,
+        (thickness - 0.5 * diameter).max(0.5 * diameter),
+    );
     let mut found: [Option<Filament>; 4] = [None; 4];
     if yarn.is_monofilament() {
         found[0] = Some(at(Position::Single, inside));

@@ -87,7 +87,7 @@ impl Limit {
     }
 
     /// The stable code of the method.
-    fn code(self) -> Code {
+    pub fn code(self) -> Code {
         match self {
             Self::Fracture => Code::TensionFracture,
             Self::Compression => Code::CompressionFracture,
@@ -176,8 +176,10 @@ impl Judged {
             (Some(a), Some(b)) => state_of(b)
                 .cmp(&state_of(a))
                 // Both kink limits broken: the one that fails the spec leads.
-                .then((b.limit == Limit::KinkStrain && b.reserve() < 1.0)
-                    .cmp(&(a.limit == Limit::KinkStrain && a.reserve() < 1.0)))
+                .then(
+                    (b.limit == Limit::KinkStrain && b.reserve() < 1.0)
+                        .cmp(&(a.limit == Limit::KinkStrain && a.reserve() < 1.0)),
+                )
                 .then(a.reserve().total_cmp(&b.reserve())),
             (a, b) => b.is_some().cmp(&a.is_some()),
         });

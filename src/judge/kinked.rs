@@ -66,5 +66,10 @@ pub fn break_bend(strength: f64, a: f64) -> f64 {
     // The tension side carries at most what it would without yielding, and at least half of it.
     let low = (strength - a).max(0.0);
     let high = 4.0 * (strength + 1.0 + a.abs());
-    rising_root(|x| kinked_section(x, a).outer - strength, low, high, 1e-13 * high)
+    rising_root(
+        |x| kinked_section(x, a).outer - strength,
+        low,
+        high,
+        1e-13 * high,
+    )
 }

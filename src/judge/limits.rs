@@ -56,7 +56,11 @@ pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 3] {
     match fibre.mechanism {
         Mechanism::Brittle { compression } => {
             let compressed = compression.and_then(|compression| {
-                Check::new(Limit::Compression, bending - axial, compression.in_bending_mpa())
+                Check::new(
+                    Limit::Compression,
+                    bending - axial,
+                    compression.in_bending_mpa(),
+                )
             });
             [fracture, compressed, None]
         }
@@ -81,7 +85,11 @@ pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 3] {
         } => {
             let strain = (bending + axial) / modulus;
             let yields = Check::new(Limit::Yield, modulus * strain, yield_mpa);
-            [Check::new(Limit::Strain, strain, strain_at_break), yields, None]
+            [
+                Check::new(Limit::Strain, strain, strain_at_break),
+                yields,
+                None,
+            ]
         }
     }
 }

@@ -29,7 +29,12 @@ use std::sync::Arc;
 
 /// Judges one bend of a yarn: the worst limit over all filaments and stretches, and a finding of its own for a
 /// temperature above the fibre's limit.
-pub fn judge(bend: &Bend, yarn: &Arc<Yarn>, laid: &Laid, reserve: f64) -> (Finding, Option<Finding>) {
+pub fn judge(
+    bend: &Bend,
+    yarn: &Arc<Yarn>,
+    laid: &Laid,
+    reserve: f64,
+) -> (Finding, Option<Finding>) {
     let mut worst: Option<(Judged, Filament)> = None;
     for filament in filaments(bend, yarn, laid) {
         let judged = Judged::of(checks(yarn, &filament), reserve);

@@ -18,7 +18,9 @@ use crate::weave::Cloth;
 /// Without a restart the last station ends at `fell_n`; from a restart on the chain runs forward.
 pub fn chain(stations: &[&Passage], fell_n: f64) -> Vec<f64> {
     let mut behind = vec![0.0; stations.len()];
-    let first_restart = stations.iter().position(|station| station.tension_n.is_some());
+    let first_restart = stations
+        .iter()
+        .position(|station| station.tension_n.is_some());
     // Backwards from the fell, over the stations before any restart.
     let mut pull = fell_n;
     for index in (0..first_restart.unwrap_or(stations.len())).rev() {
@@ -38,7 +40,12 @@ pub fn stations(spec: &Spec, cloth: &Cloth) -> Vec<Bend> {
     let weave = &spec.weave;
     let mut bends: Vec<(usize, Bend)> = Vec::with_capacity(spec.passages.len());
     for system in [SystemName::Warp, SystemName::Weft] {
-        for stage in [Stage::Winding, Stage::Warping, Stage::Weaving, Stage::Finishing] {
+        for stage in [
+            Stage::Winding,
+            Stage::Warping,
+            Stage::Weaving,
+            Stage::Finishing,
+        ] {
             let here: Vec<(usize, &Passage)> = spec
                 .passages
                 .iter()

@@ -6,7 +6,9 @@
 //! gravity 9.806 65 m/s2, denier 1/9 tex; International yard and pound agreement 1959, ISO 1144 for tex).
 
 mod parse;
+mod show;
 mod unit;
 
 pub use parse::{Quantity, QuantityError, TwistDirection, parse, parse_twist};
+pub use show::{plain, rounded, significant};
 pub use unit::{Dimension, Unit};

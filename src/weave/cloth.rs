@@ -88,7 +88,9 @@ pub enum ClothError {
         error: LayError,
     },
     /// No scaling of the yarns meets the measured thickness.
-    #[error("no thickness of these yarns makes a cloth {asked_mm} mm thick: they give {least_mm:.4} to {most_mm:.4} mm")]
+    #[error(
+        "no thickness of these yarns makes a cloth {asked_mm} mm thick: they give {least_mm:.4} to {most_mm:.4} mm"
+    )]
     Thickness {
         /// Thickness asked for, mm.
         asked_mm: f64,
@@ -117,13 +119,12 @@ impl Cloth {
     /// # Errors
     /// Where the yarns do not fit, or no scaling meets the measured thickness.
     pub fn build(weave: &Weave, flatness: f64) -> Result<Self, ClothError> {
-        let vary = |thickness: f64| Vary { flatness, thickness };
         let Some(asked_mm) = weave.thickness_mm else {
-            return Self::build_varied(weave, vary(1.0));
+            return Self::build_roomy(weave, flatness, 1.0);
         };
         // Thicker yarns make a thicker cloth, up to the first that jams or stands on edge; thinner ones are
         // packed closer, down to the closest packing.
-        let thickness_at = |factor: f64| Self::build_varied(weave, vary(factor));
+        let thickness_at = |factor: f64| Self::build_roomy(weave, flatness, factor);
         let (low, high) = factor_range(|factor| thickness_at(factor).is_ok())
             .ok_or_else(|| thickness_at(1.0).err().unwrap_or(ClothError::Jammed))?;
         let excess = |factor: f64| thickness_at(factor).map_or(0.0, |c| c.thickness_mm) - asked_mm;
@@ -142,12 +143,60 @@ impl Cloth {
         })
     }
 
+    /// Yarns that touch their neighbours leave no way between; such squeezed yarns give way until there is one.
+    fn build_roomy(weave: &Weave, flatness: f64, thickness: f64) -> Result<Self, ClothError> {
+        let with = |room: f64| {
+            Self::build_varied(
+                weave,
+                Vary {
+                    flatness,
+                    thickness,
+                    room,
+                },
+            )
+        };
+        let whole = with(1.0);
+        let (warp, weft) = (&weave.warp, &weave.weft);
+        let squeezed = |system: &System| {
+            let vary = Vary {
+                flatness,
+                thickness,
+                room: 1.0,
+            };
+            system
+                .yarn
+                .laid_at(system.spacing_mm(), vary)
+                .is_ok_and(|laid| laid.squeezed)
+        };
+        if whole != Err(ClothError::Jammed) || !(squeezed(warp) || squeezed(weft)) {
+            return whole;
+        }
+        let mut passes = (1..=10)
+            .map(|step| 1.0 - 0.02 * f64::from(step))
+            .find(|room| with(*room).is_ok());
+        if let Some(room) = &mut passes {
+            let mut jams = *room + 0.02;
+            while jams - *room > 1e-6 {
+                let middle = 0.5 * (jams + *room);
+                if with(middle).is_ok() {
+                    *room = middle
+                } else {
+                    jams = middle
+                }
+            }
+        }
+        passes.map_or(whole, with)
+    }
+
     fn build_varied(weave: &Weave, vary: Vary) -> Result<Self, ClothError> {
         let lay = |system: &System, name: &'static str| {
             system
                 .yarn
                 .laid_at(system.spacing_mm(), vary)
-                .map_err(|error| ClothError::Lay { system: name, error })
+                .map_err(|error| ClothError::Lay {
+                    system: name,
+                    error,
+                })
         };
         let (warp, weft) = (lay(&weave.warp, "warp")?, lay(&weave.weft, "weft")?);
         let wave = |own: &Laid, crossed: &Laid, spacing: f64, system: &SystemInterlacing| {
@@ -157,8 +206,8 @@ impl Cloth {
         let warp_wave = wave(&warp, &weft, weave.weft.spacing_mm(), &floats.warp);
         let weft_wave = wave(&weft, &warp, weave.warp.spacing_mm(), &floats.weft);
         let whole_mm = warp.outline.thickness_mm() + weft.outline.thickness_mm();
-        let shared = share(&warp_wave, &weft_wave, whole_mm, closure(weave))
-            .ok_or(ClothError::Jammed)?;
+        let shared =
+            share(&warp_wave, &weft_wave, whole_mm, closure(weave)).ok_or(ClothError::Jammed)?;
         let yarn = |system: &System, laid: Laid, wave: Wave, height_mm: f64, woven| {
             ClothYarn::new(system, laid, wave, height_mm, woven).ok_or(ClothError::Jammed)
         };
@@ -171,7 +220,11 @@ impl Cloth {
         let height = |yarn: &ClothYarn| yarn.wave_height_mm + yarn.laid.outline.thickness_mm();
         let thickness_mm = height(&warp).max(height(&weft));
         let mass = |system: &System, yarn: &ClothYarn| {
-            (system.sett_per_mm, system.yarn.count.linear_density_tex, yarn.crimp)
+            (
+                system.sett_per_mm,
+                system.yarn.count.linear_density_tex,
+                yarn.crimp,
+            )
         };
         // Per mm2 of cloth: length of yarn times its area of fibre.
         let fibre_mm = |system: &System, yarn: &ClothYarn| {
@@ -202,7 +255,10 @@ impl ClothYarn {
     ) -> Option<Self> {
         let passing = wave.crest().pass(height_mm)?;
         let float = |side: Side| {
-            woven.longest_float(side).and_then(FloatLength::crossings).unwrap_or(0)
+            woven
+                .longest_float(side)
+                .and_then(FloatLength::crossings)
+                .unwrap_or(0)
         };
         Some(Self {
             crimp: wave.crimp_of(&passing),
@@ -236,15 +292,23 @@ fn closure(weave: &Weave) -> Closure {
 /// The range of thickness factors around a good one in which a cloth exists, each end within 1e-9.
 fn factor_range(exists: impl Fn(f64) -> bool) -> Option<(f64, f64)> {
     // A good factor near 1 to start from: yarns as they lie, else thinner ones.
-    let good = (0..40).map(|step| 0.97f64.powi(step)).find(|factor| exists(*factor))?;
+    let good = (0..40)
+        .map(|step| 0.97f64.powi(step))
+        .find(|factor| exists(*factor))?;
     let edge = |mut inside: f64, mut outside: f64| {
         while (inside - outside).abs() > 1e-9 {
             let middle = 0.5 * (inside + outside);
-            if exists(middle) { inside = middle } else { outside = middle }
+            if exists(middle) {
+                inside = middle
+            } else {
+                outside = middle
+            }
         }
         inside
     };
-    let above = (1..20).map(|step| good * 1.5f64.powi(step)).find(|factor| !exists(*factor));
+    let above = (1..20)
+        .map(|step| good * 1.5f64.powi(step))
+        .find(|factor| !exists(*factor));
     Some((edge(good, 0.0), edge(good, above.unwrap_or(good))))
 }
 
@@ -258,11 +322,46 @@ mod tests {
     fn mass_and_cover_match_the_independent_count() {
         // ends, picks per cm, widths mm, tex, crimps, mass, cover
         let cases = [
-            ((5.0, 5.0), (1.7, 1.7), (200.0, 200.0), (0.004, 0.004), 200.8, 0.9775),
-            ((10.0, 9.0), (0.8, 0.9), (68.0, 68.0), (0.01, 0.012), 130.6144, 0.962),
-            ((22.0, 20.0), (0.3, 0.32), (34.0, 34.0), (0.05, 0.07), 151.3, 0.8776),
-            ((7.0, 6.0), (1.4, 1.2), (300.0, 136.0), (0.006, 0.02), 294.492, 0.9944),
-            ((30.0, 25.0), (0.28, 0.3), (20.0, 25.0), (0.09, 0.04), 130.4, 0.96),
+            (
+                (5.0, 5.0),
+                (1.7, 1.7),
+                (200.0, 200.0),
+                (0.004, 0.004),
+                200.8,
+                0.9775,
+            ),
+            (
+                (10.0, 9.0),
+                (0.8, 0.9),
+                (68.0, 68.0),
+                (0.01, 0.012),
+                130.6144,
+                0.962,
+            ),
+            (
+                (22.0, 20.0),
+                (0.3, 0.32),
+                (34.0, 34.0),
+                (0.05, 0.07),
+                151.3,
+                0.8776,
+            ),
+            (
+                (7.0, 6.0),
+                (1.4, 1.2),
+                (300.0, 136.0),
+                (0.006, 0.02),
+                294.492,
+                0.9944,
+            ),
+            (
+                (30.0, 25.0),
+                (0.28, 0.3),
+                (20.0, 25.0),
+                (0.09, 0.04),
+                130.4,
+                0.96,
+            ),
         ];
         for (sett, width, tex, crimp, mass, covered) in cases {
             let (n1, n2) = (sett.0 / 10.0, sett.1 / 10.0);

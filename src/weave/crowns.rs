@@ -37,8 +37,8 @@ fn crown(
         lies_on_mm: rest.outline_radius_mm,
     });
     // Each change has the half crown before it and the half crown behind it.
-    let halves_per_mm = 2.0 * yarn.wave.changes_per_crossing()
-        / (crossed_spacing_mm * (1.0 + yarn.crimp));
+    let halves_per_mm =
+        2.0 * yarn.wave.changes_per_crossing() / (crossed_spacing_mm * (1.0 + yarn.crimp));
     Bend {
         place: match name {
             SystemName::Warp => "warp crown over weft".into(),

@@ -52,11 +52,17 @@ impl Jammed {
 
 /// The largest factor below 1 that fits, within a tenth of a per cent and on the fitting side.
 fn largest_factor(fits: impl Fn(f64) -> bool) -> Option<f64> {
-    let mut inside = (1..60).map(|step| 0.9f64.powi(step)).find(|factor| fits(*factor))?;
+    let mut inside = (1..60)
+        .map(|step| 0.9f64.powi(step))
+        .find(|factor| fits(*factor))?;
     let mut outside = inside / 0.9;
     while outside - inside > 1e-3 * inside {
         let middle = 0.5 * (inside + outside);
-        if fits(middle) { inside = middle } else { outside = middle }
+        if fits(middle) {
+            inside = middle
+        } else {
+            outside = middle
+        }
     }
     Some(inside)
 }

@@ -14,7 +14,7 @@ mod jam;
 mod share;
 mod wave;
 
-pub use cloth::{Cloth, ClothYarn, areal_mass_g_m2, cover};
+pub use cloth::{Cloth, ClothError, ClothYarn, areal_mass_g_m2, cover};
 pub use crowns::crowns;
 pub use jam::{Fits, Jammed};
 pub use share::{Closed, Closure, Share};

@@ -77,7 +77,9 @@ pub fn share(warp: &Wave, weft: &Wave, whole_mm: f64, by: Closure) -> Option<Sha
     let accuracy = ACCURACY * whole_mm;
     let by_crimp = |wave: &Wave, crimp: f64, highest: f64| {
         let height = height_with_crimp(wave, crimp, highest);
-        let reached = wave.crimp(height).is_some_and(|c| (c - crimp).abs() <= 1e-9 + 1e-6 * crimp);
+        let reached = wave
+            .crimp(height)
+            .is_some_and(|c| (c - crimp).abs() <= 1e-9 + 1e-6 * crimp);
         (height, reached)
     };
     let mut mismatch = None;

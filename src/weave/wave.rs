@@ -38,7 +38,12 @@ pub struct Piece {
 
 impl Wave {
     /// A yarn of outline `own` that crosses yarns of outline `crossed`, `spacing_mm` apart.
-    pub fn new(own: &Outline, crossed: &Outline, spacing_mm: f64, system: &SystemInterlacing) -> Self {
+    pub fn new(
+        own: &Outline,
+        crossed: &Outline,
+        spacing_mm: f64,
+        system: &SystemInterlacing,
+    ) -> Self {
         Self {
             crest: Crest {
                 section: *crossed,
@@ -46,7 +51,11 @@ impl Wave {
                 spacing_mm,
             },
             changes_per_crossing: system.mean_changes_per_crossing(),
-            flanks: if system.has_isolated_crossing() { Flanks::Both } else { Flanks::One },
+            flanks: if system.has_isolated_crossing() {
+                Flanks::Both
+            } else {
+                Flanks::One
+            },
         }
     }
 
@@ -84,7 +93,10 @@ impl Wave {
     /// Upward pull of one yarn per crossing for unit tension: changes per crossing times the sine of the slope,
     /// which is how fast its length grows with the wave's height.
     pub fn lift(&self, height_mm: f64) -> f64 {
-        let slope = self.crest.pass(height_mm).map_or(std::f64::consts::FRAC_PI_2, |p| p.slope_rad);
+        let slope = self
+            .crest
+            .pass(height_mm)
+            .map_or(std::f64::consts::FRAC_PI_2, |p| p.slope_rad);
         self.changes_per_crossing * slope.sin()
     }
 
@@ -166,7 +178,9 @@ mod tests {
     /// straightened 21.2 cm: 6.0 %; 1 m of cloth from 1.05 m of warp: 5 %, from 1.08 m of weft: 8 %.
     #[test]
     fn crimp_is_straightened_over_cloth_length_less_one() {
-        for (cloth, straightened, percent) in [(20.0, 21.2, 6.0), (1.0, 1.05, 5.0), (1.0, 1.08, 8.0)] {
+        for (cloth, straightened, percent) in
+            [(20.0, 21.2, 6.0), (1.0, 1.05, 5.0), (1.0, 1.08, 8.0)]
+        {
             let section = Outline::round(0.1).unwrap();
             let pattern = parse_notation("plain").unwrap();
             let wave = Wave::new(&section, &section, cloth, &pattern.interlacing().warp);

@@ -4,7 +4,8 @@
 //! flatness two fix the outline (and with it the packing), one fixes it together with the packing, none
 //! leaves the trade's default: a lens as wide as 0.9 of the spacing, packing 0.65. A single filament is a
 //! solid circle; a yarn whose surface fibres lie over 15 degrees to its axis is round. Where a width comes
-//! out above the spacing the yarn is squeezed to the spacing.
+//! out above the spacing the yarn is squeezed to the spacing; where the other system then finds no way between
+//! touching neighbours, to the widest that lets it through (`weave::cloth`).
 //!
 //! The defaults 0.9, 0.65 and 15 degrees are common practice without a source. 0.9069 (pi/sqrt 12) is the
 //! closest packing of circles, so more than 0.91 is refused.
@@ -30,6 +31,8 @@ pub struct Vary {
     pub flatness: f64,
     /// Thickness over the laid thickness, at constant width.
     pub thickness: f64,
+    /// Share of the spacing that a squeezed yarn may take.
+    pub room: f64,
 }
 
 impl Default for Vary {
@@ -37,6 +40,7 @@ impl Default for Vary {
         Self {
             flatness: 1.0,
             thickness: 1.0,
+            room: 1.0,
         }
     }
 }
@@ -153,14 +157,15 @@ impl Yarn {
             }
             _ => outline,
         };
-        let squeezed = varied.width_mm() > spacing_mm * (1.0 + 1e-12);
+        let room_mm = vary.room * spacing_mm;
+        let squeezed = varied.width_mm() > room_mm * (1.0 + 1e-12);
         let at_spacing = if squeezed {
             let shape = if varied.shape() == Shape::Round {
                 Shape::Ellipse
             } else {
                 varied.shape()
             };
-            Outline::with_width(shape, spacing_mm, area_mm2).ok_or(LayError::OnEdge {
+            Outline::with_width(shape, room_mm, area_mm2).ok_or(LayError::OnEdge {
                 area_mm2,
                 packing: self.fibre_area_mm2() / area_mm2,
                 spacing_mm,

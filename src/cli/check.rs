@@ -1,0 +1,153 @@
+//! `check`: one or several specs, held against what their fibres stand.
+
+use super::Status;
+use super::out::Streams;
+use clap::{Args, ValueEnum};
+use lissom::flow;
+use lissom::pattern::Weaves;
+use lissom::report::{self, CheckReport};
+use lissom::span::SourceText;
+use lissom::spec::{Problem, Spec};
+use lissom::study::sensitivity;
+use lissom::weave::Jammed;
+use std::io::{self, Read};
+use std::path::{Path, PathBuf};
+
+#[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
+enum Format {
+    /// For the terminal
+    Text,
+    /// For attaching and comparing by line
+    Markdown,
+    /// For programs
+    Json,
+}
+
+/// Check one or several specs
+///
+/// Exit status: 0 nothing failed; 1 something breaks, overheats, or kinks where kinks are refused, and with
+/// --strict also what yields, kinks or is close; 2 the input is wrong; 3 a file cannot be read or written.
+#[derive(Debug, Args)]
+pub(super) struct Check {
+    /// Spec files; `-` is standard input
+    #[arg(required = true, value_name = "SPEC")]
+    specs: Vec<PathBuf>,
+    /// How to report
+    #[arg(long, value_enum, default_value_t = Format::Text)]
+    format: Format,
+    /// Write the report into a file, whole or not at all
+    #[arg(long, value_name = "FILE")]
+    out: Option<PathBuf>,
+    /// Fail also on what yields, kinks or is close
+    #[arg(long)]
+    strict: bool,
+    /// A folder of weave patterns of your own
+    #[arg(long, value_name = "FOLDER")]
+    weaves: Option<PathBuf>,
+}
+
+impl Check {
+    pub(super) fn run(self, streams: &Streams) -> Status {
+        let weaves = match load_weaves(self.weaves.as_deref(), streams) {
+            Ok(weaves) => weaves,
+            Err(status) => return status,
+        };
+        let mut reports = Vec::new();
+        let mut trouble = Status::Fine;
+        for path in &self.specs {
+            match self.check(path, &weaves, streams) {
+                Ok(report) => reports.push(report),
+                Err(status) => trouble = trouble.max(status),
+            }
+        }
+        // One wrong spec of several: nothing is written of the others either.
+        if trouble != Status::Fine {
+            return trouble;
+        }
+        let failed = reports.iter().any(|report| report.fails);
+        let done = if failed { Status::Fails } else { Status::Fine };
+        let text = match self.format {
+            Format::Text => joined(&reports, report::text),
+            Format::Markdown => joined(&reports, report::markdown),
+            Format::Json => match report::to_json(&reports) {
+                Ok(text) => text,
+                Err(error) => {
+                    streams.complain(format_args!("error: the report is no JSON: {error}\n"));
+                    return Status::Machine;
+                }
+            },
+        };
+        streams.give(&text, self.out.as_deref(), done)
+    }
+
+    fn check(
+        &self,
+        path: &Path,
+        weaves: &Weaves,
+        streams: &Streams,
+    ) -> Result<CheckReport, Status> {
+        let source = read_source(path, streams)?;
+        let wrong = |source: &SourceText, problems: &[Problem]| {
+            streams.complain(report::problems(source, problems));
+            Status::WrongInput
+        };
+        let spec =
+            Spec::read(source.clone(), weaves).map_err(|problems| wrong(&source, &problems))?;
+        let outcome = flow::run(&spec, 1.0).map_err(|why| {
+            let jammed = Jammed::new(&spec.weave, why);
+            wrong(&source, &[report::jammed(&spec, &jammed)])
+        })?;
+        let variations = sensitivity(&spec, &outcome.cloth);
+        Ok(CheckReport::new(&spec, &outcome, &variations, self.strict))
+    }
+}
+
+fn joined(reports: &[CheckReport], print: impl Fn(&CheckReport) -> String) -> String {
+    let texts: Vec<String> = reports.iter().map(print).collect();
+    texts.join("\n")
+}
+
+/// The built-in weaves, and those of a folder.
+pub(super) fn load_weaves(folder: Option<&Path>, streams: &Streams) -> Result<Weaves, Status> {
+    match folder {
+        None => Ok(Weaves::builtin()),
+        Some(folder) => Weaves::with_folder(folder).map_err(|errors| {
+            for problem in &errors.problems {
+                streams.complain(format_args!("error: {problem}\n"));
+            }
+            Status::WrongInput
+        }),
+    }
+}
+
+/// Reads a spec's text; `-` is standard input.
+fn read_source(path: &Path, streams: &Streams) -> Result<SourceText, Status> {
+    let (name, bytes) = if path.as_os_str() == "-" {
+        let mut bytes = Vec::new();
+        (
+            "<stdin>".to_owned(),
+            io::stdin().lock().read_to_end(&mut bytes).map(|_| bytes),
+        )
+    } else {
+        (path.display().to_string(), std::fs::read(path))
+    };
+    let bytes = bytes.map_err(|error| {
+        streams.complain(format_args!("error: {name} cannot be read: {error}\n"));
+        Status::Machine
+    })?;
+    match String::from_utf8(bytes) {
+        Ok(text) => Ok(SourceText::new(name, text)),
+        Err(error) => {
+            let at = error.utf8_error().valid_up_to();
+            let line = error.as_bytes()[..at]
+                .iter()
+                .filter(|byte| **byte == b'\n')
+                .count()
+                + 1;
+            streams.complain(format_args!(
+                "error: {name}, line {line}: this is no UTF-8 text; save the file as UTF-8\n"
+            ));
+            Err(Status::WrongInput)
+        }
+    }
+}

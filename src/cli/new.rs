@@ -1,0 +1,48 @@
+//! `new`: a commented spec to start from.
+
+use super::Status;
+use super::out::{Streams, write_whole};
+use clap::Args;
+use std::path::PathBuf;
+
+/// The starter spec; a test checks it.
+const STARTER: &str = include_str!("starter.toml");
+
+/// Write a commented spec to start from
+#[derive(Debug, Args)]
+pub(super) struct New {
+    /// File to write; standard output where it is left out. A file that is there is not overwritten
+    #[arg(value_name = "FILE")]
+    file: Option<PathBuf>,
+}
+
+impl New {
+    pub(super) fn run(self, streams: &Streams) -> Status {
+        let Some(path) = self.file else {
+            return streams.give(STARTER, None, Status::Fine);
+        };
+        if path.exists() {
+            streams.complain(format_args!(
+                "error: {} is there already; name a new file\n",
+                path.display()
+            ));
+            return Status::WrongInput;
+        }
+        match write_whole(&path, STARTER.as_bytes()) {
+            Ok(()) => {
+                streams.complain(format_args!(
+                    "wrote {path}; check it with `lissom check {path}`\n",
+                    path = path.display()
+                ));
+                Status::Fine
+            }
+            Err(error) => {
+                streams.complain(format_args!(
+                    "error: {} cannot be written: {error}\n",
+                    path.display()
+                ));
+                Status::Machine
+            }
+        }
+    }
+}

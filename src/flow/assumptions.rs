@@ -1,0 +1,232 @@
+//! What the result hangs on that the spec did not say: every default used, in words with its value.
+
+use crate::bend::Stage;
+use crate::fibre::FigureName;
+use crate::quantity::{plain, significant};
+use crate::spec::{DEFAULT_TENSION_N_TEX, Spec, System};
+use crate::weave::{Closure, Cloth, ClothYarn};
+use crate::yarn::{Basis, DEFAULT_WIDTH_SHARE, Followed, Yarn};
+
+/// Every default and simplification behind this outcome, in a stable order.
+pub fn assumptions(spec: &Spec, cloth: &Cloth) -> Vec<String> {
+    let mut said = Vec::new();
+    let weave = &spec.weave;
+    said.push(
+        "taut path: the yarns bend like strings round each other; stiff yarns bend less sharply, or more in very tight cloth"
+            .to_owned(),
+    );
+    said.push(height_shared(cloth));
+    if let Some(factor) = cloth.thickness_factor {
+        said.push(format!(
+            "measured cloth thickness met by yarns {} times as thick as they would lie",
+            significant(factor, 3)
+        ));
+    }
+    let mut fibres: Vec<&str> = Vec::new();
+    let mut yarns: Vec<&str> = Vec::new();
+    for system in [&weave.warp, &weave.weft] {
+        if !fibres.contains(&system.yarn.fibre.id.as_str()) {
+            fibres.push(&system.yarn.fibre.id);
+            said.extend(fibre_figures(&system.yarn));
+        }
+        if !yarns.contains(&system.yarn.name.as_str()) {
+            yarns.push(&system.yarn.name);
+            said.extend(count(&system.yarn));
+        }
+    }
+    for (word, system, woven) in [
+        ("warp", &weave.warp, &cloth.warp),
+        ("weft", &weave.weft, &cloth.weft),
+    ] {
+        said.push(outline(word, &system.yarn, woven));
+        said.extend(tension(word, system));
+    }
+    if !weave.peak_given {
+        said.push(format!(
+            "peak pull {} times the mean (common practice, no source)",
+            plain(weave.peak, 3)
+        ));
+    }
+    if !weave.rest_given {
+        said.push(format!(
+            "off the loom {} % of the mean pull stays in the yarns (an assumption)",
+            plain(100.0 * weave.rest, 3)
+        ));
+    }
+    said.extend(way(spec));
+    if !spec.require.reserve_given {
+        said.push(format!(
+            "a reserve of {} counts as holding (the default)",
+            plain(spec.require.reserve, 3)
+        ));
+    }
+    said.push(
+        "pressure of upper filaments on lower ones, abrasion, repeated bending and the scatter of strength are left out"
+            .to_owned(),
+    );
+    said
+}
+
+fn height_shared(cloth: &Cloth) -> String {
+    let by = match cloth.closed.by {
+        Closure::WarpCrimp(_) => "measured warp crimp".to_owned(),
+        Closure::WeftCrimp(_) => "measured weft crimp".to_owned(),
+        Closure::BothCrimps(..) => {
+            let percent = 100.0 * cloth.closed.mismatch.unwrap_or(0.0);
+            let word = if percent < 0.0 { "less" } else { "more" };
+            format!(
+                "both measured crimps, which together ask for {} % {word} height than the yarns' thicknesses give (thickness or crimp is off by that)",
+                significant(percent.abs(), 2)
+            )
+        }
+        Closure::Tensions(..) => "balance of the contact forces at the given tensions".to_owned(),
+        Closure::EqualHeights => {
+            "equal wave heights, as neither crimp nor both tensions are given".to_owned()
+        }
+    };
+    let limited = if cloth.closed.jam_limited {
+        "; that split does not exist at this sett, the nearest that does is taken (jam limited)"
+    } else {
+        ""
+    };
+    format!("warp and weft share the height by {by}{limited}")
+}
+
+fn fibre_figures(yarn: &Yarn) -> Option<String> {
+    let fibre = &yarn.fibre;
+    let mut figures = vec![(
+        FigureName::Modulus,
+        format!("modulus {} GPa", plain(fibre.modulus_mpa / 1e3, 4)),
+    )];
+    figures.push((
+        FigureName::Strength,
+        format!(
+            "strength {} GPa ({})",
+            plain(fibre.strength_mpa / 1e3, 4),
+            fibre.strength_basis.word()
+        ),
+    ));
+    if let Some(compression) = fibre.compression() {
+        figures.push((
+            FigureName::Compression,
+            format!(
+                "compressive strength {} GPa ({}), {} GPa in bending",
+                plain(compression.strength_mpa / 1e3, 4),
+                compression.basis.word(),
+                plain(compression.in_bending_mpa() / 1e3, 4)
+            ),
+        ));
+    }
+    let told: Vec<String> = figures
+        .into_iter()
+        .filter_map(|(name, text)| {
+            let origin = fibre.origin(name)?;
+            (*origin != crate::fibre::Origin::Given).then(|| format!("{text}: {origin}"))
+        })
+        .collect();
+    (!told.is_empty()).then(|| format!("fibre `{}`: {}", fibre.id, told.join("; ")))
+}
+
+fn count(yarn: &Yarn) -> Option<String> {
+    let count = &yarn.count;
+    let um = significant(1e3 * count.filament_diameter_mm, 3);
+    let library = if count.library_diameter {
+        " (the library's diameter)"
+    } else {
+        ""
+    };
+    let text = match count.followed {
+        Followed::Nothing => return None,
+        Followed::Diameter => format!("filaments are {um} um thick, from linear density and count"),
+        Followed::Filaments => format!(
+            "{} filaments, from linear density and a diameter of {um} um{library}",
+            count.filaments
+        ),
+        Followed::LinearDensity => format!(
+            "{} tex, from {} filaments of {um} um{library}",
+            significant(count.linear_density_tex, 4),
+            count.filaments
+        ),
+    };
+    Some(format!("yarn `{}`: {text}", yarn.name))
+}
+
+fn outline(word: &str, yarn: &Yarn, woven: &ClothYarn) -> String {
+    let outline = &woven.laid.outline;
+    let size = format!(
+        "{} {} x {} mm, packing {}",
+        outline.shape().word(),
+        significant(outline.width_mm(), 3),
+        significant(outline.thickness_mm(), 3),
+        significant(woven.laid.packing, 2)
+    );
+    let packing = if yarn.form.packing.is_some() {
+        "as given"
+    } else {
+        "assumed"
+    };
+    let basis = match woven.laid.basis {
+        Basis::Solid => "a single filament".to_owned(),
+        Basis::Round => format!("round, packing {packing}"),
+        Basis::Measured => "sizes as given, packing follows".to_owned(),
+        Basis::OneSize => format!("one size as given, packing {packing}"),
+        Basis::Assumed => {
+            format!("width assumed as {DEFAULT_WIDTH_SHARE} of the spacing, packing {packing}")
+        }
+    };
+    let squeezed = if woven.laid.squeezed {
+        "; squeezed to its spacing"
+    } else {
+        ""
+    };
+    format!("{word} yarn `{}`: {size} ({basis}{squeezed})", yarn.name)
+}
+
+fn tension(word: &str, system: &System) -> Option<String> {
+    (!system.tension_given).then(|| {
+        format!(
+            "{word} tension {} cN: {} cN/tex (common practice, no source)",
+            significant(100.0 * system.tension_n, 3),
+            plain(100.0 * DEFAULT_TENSION_N_TEX, 3)
+        )
+    })
+}
+
+fn way(spec: &Spec) -> Vec<String> {
+    let mut said = Vec::new();
+    let guessed: Vec<&str> = spec
+        .passages
+        .iter()
+        .filter(|passage| !passage.friction_given)
+        .map(|passage| passage.name.as_str())
+        .collect();
+    if !guessed.is_empty() {
+        said.push(format!(
+            "friction from the fibre's record at: {}",
+            guessed.join(", ")
+        ));
+    }
+    let elsewhere = |passage: &&crate::spec::Passage| {
+        passage.stage != Stage::Weaving && passage.tension_n.is_none()
+    };
+    if let Some(passage) = spec.passages.iter().find(elsewhere) {
+        said.push(format!(
+            "pull while {} taken as that of weaving where no station gives one",
+            passage.stage.word()
+        ));
+    }
+    if !spec.passages.is_empty() {
+        said.push("straight arms on both sides of every station, long against the bend".to_owned());
+    }
+    for tool in spec
+        .tools
+        .iter()
+        .filter(|tool| tool.bend_axis_rad.is_none())
+    {
+        said.push(format!(
+            "{}: edge of unknown direction, both systems bent fully",
+            tool.name
+        ));
+    }
+    said
+}

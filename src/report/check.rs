@@ -1,0 +1,387 @@
+//! The report of `check`: one type, whose fields are the JSON contract and from which every format is printed.
+//!
+//! Keys may be added, never renamed; a value that does not exist is an absent key. Numbers are kept with nine
+//! significant digits.
+
+use super::cautions::cautions;
+use crate::fibre::Hazard;
+use crate::flow::{Outcome, Variation, assumptions};
+use crate::judge::{Finding, Limit, State};
+use crate::quantity::rounded;
+use crate::spec::Spec;
+use crate::weave::{Closure, Cloth, ClothYarn};
+use serde::Serialize;
+use sha2::{Digest, Sha256};
+use std::fmt::Write as _;
+
+/// What `check` reports of one spec.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct CheckReport {
+    /// Version of the program.
+    pub lissom: &'static str,
+    /// Which spec.
+    pub spec: SpecReport,
+    /// Worst state.
+    pub verdict: &'static str,
+    /// Whether the check fails (exit status 1).
+    pub fails: bool,
+    /// The cloth, in its one state.
+    pub cloth: ClothReport,
+    /// Every bend, judged.
+    pub bends: Vec<BendRow>,
+    /// Index in `bends` of the one that decides.
+    pub worst: usize,
+    /// The worst at other flatnesses of the assumed outlines.
+    pub sensitivity: Vec<SensitivityRow>,
+    /// What would hold instead.
+    pub advice: Vec<Advice>,
+    /// What the result hangs on that the spec did not say.
+    pub assumptions: Vec<String>,
+    /// Cautions.
+    pub cautions: Vec<String>,
+}
+
+/// Which spec a report is of.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct SpecReport {
+    /// Its name.
+    pub name: String,
+    /// The owner's number.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reference: Option<String>,
+    /// SHA-256 of its text.
+    pub sha256: String,
+    /// The file as the command named it.
+    #[serde(skip)]
+    pub file: String,
+}
+
+/// The cloth's numbers.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+#[expect(
+    missing_docs,
+    reason = "the units are in the names; the meanings stand in the README's table"
+)]
+pub struct ClothReport {
+    pub pattern: String,
+    pub ends: usize,
+    pub picks: usize,
+    pub jam_limited: bool,
+    pub height_shared_by: &'static str,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub crimp_mismatch: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub thickness_factor: Option<f64>,
+    pub warp: SystemReport,
+    pub weft: SystemReport,
+    pub thickness_mm: f64,
+    pub areal_mass_g_m2: f64,
+    pub cover: f64,
+    pub fibre_volume_fraction: f64,
+}
+
+/// The numbers of one system of the cloth.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+#[expect(
+    missing_docs,
+    reason = "the units are in the names; the meanings stand in the README's table"
+)]
+pub struct SystemReport {
+    pub yarn: String,
+    pub crimp: f64,
+    pub wave_height_mm: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub min_radius_mm: Option<f64>,
+    pub wrap_angle_deg: f64,
+    pub contact_mm: f64,
+    pub float_max: usize,
+    pub float_face: usize,
+    pub float_back: usize,
+    pub spacing_mm: f64,
+    pub yarn_shape: &'static str,
+    pub yarn_width_mm: f64,
+    pub yarn_thickness_mm: f64,
+    pub packing: f64,
+    pub linear_density_tex: f64,
+    pub filaments: u32,
+    pub filament_diameter_um: f64,
+    pub bending_rigidity_n_mm2: f64,
+}
+
+/// One bend in the report.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+#[expect(
+    missing_docs,
+    reason = "the units are in the names; the meanings stand in the README's table"
+)]
+pub struct BendRow {
+    pub place: String,
+    pub stage: &'static str,
+    pub system: &'static str,
+    pub yarn: String,
+    pub fibre: String,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub radius_mm: Option<f64>,
+    pub curvature_per_mm: f64,
+    pub lying_curvature_per_mm: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub free_curvature_per_mm: Option<f64>,
+    pub governs: &'static str,
+    pub tension_n: f64,
+    pub axial_stress_mpa: f64,
+    pub bending_stress_mpa: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub temperature_c: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub max_temperature_c: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub limit: Option<&'static str>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reserve: Option<f64>,
+    pub state: &'static str,
+    pub fails: bool,
+    pub code: &'static str,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub limit_radius_mm: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub strength_loss: Option<f64>,
+    pub limits: Vec<LimitRow>,
+    pub line: usize,
+    /// The text of that line.
+    #[serde(skip)]
+    pub quoted: String,
+}
+
+/// One limit of a bend.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct LimitRow {
+    /// Which.
+    pub limit: &'static str,
+    /// The method's code.
+    pub code: &'static str,
+    /// Applied stress, MPa; absent where the limit is a strain.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub applied_mpa: Option<f64>,
+    /// Allowed stress, MPa.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub allowed_mpa: Option<f64>,
+    /// Applied strain; absent where the limit is a stress.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub applied_strain: Option<f64>,
+    /// Allowed strain.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub allowed_strain: Option<f64>,
+    /// Allowed over applied.
+    pub reserve: f64,
+}
+
+/// The worst at another flatness.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct SensitivityRow {
+    /// Factor on the assumed flatness.
+    pub flatness_factor: f64,
+    /// Reserve of the bend that decides.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reserve: Option<f64>,
+    /// State; `jammed` where there is no cloth.
+    pub state: &'static str,
+}
+
+/// The state of a variation whose yarns cannot interlace.
+const JAMMED: &str = "jammed";
+
+/// What would hold instead, checked by running the flow.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct Advice {
+    /// The bend it is for.
+    pub place: String,
+    /// In words.
+    pub text: String,
+}
+
+impl CheckReport {
+    /// The report of a spec's outcome.
+    pub fn new(spec: &Spec, outcome: &Outcome, variations: &[Variation], strict: bool) -> Self {
+        let hazards: Vec<Hazard> = [&spec.weave.warp, &spec.weave.weft]
+            .map(|system| system.yarn.fibre.hazard)
+            .to_vec();
+        let worst = outcome.worst().map_or(0, |worst| {
+            outcome
+                .findings
+                .iter()
+                .position(|finding| std::ptr::eq(finding, worst))
+                .unwrap_or(0)
+        });
+        Self {
+            lissom: env!("CARGO_PKG_VERSION"),
+            spec: SpecReport {
+                name: spec.name.clone(),
+                reference: spec.reference.clone(),
+                sha256: sha256(&spec.source.text),
+                file: spec.source.name.clone(),
+            },
+            verdict: outcome.verdict().word(),
+            fails: outcome.fails(spec, strict),
+            cloth: ClothReport::new(spec, &outcome.cloth),
+            bends: outcome
+                .findings
+                .iter()
+                .map(|finding| BendRow::new(spec, finding, strict))
+                .collect(),
+            worst,
+            sensitivity: variations.iter().map(SensitivityRow::new).collect(),
+            advice: Vec::new(),
+            assumptions: assumptions(spec, &outcome.cloth),
+            cautions: cautions(&hazards),
+        }
+    }
+
+    /// The bend that decides.
+    pub fn worst_bend(&self) -> Option<&BendRow> {
+        self.bends.get(self.worst)
+    }
+
+    /// Whether the state changes with the assumed outlines. An outline that cannot be woven changes nothing.
+    pub fn hangs_on_width(&self) -> bool {
+        self.sensitivity
+            .iter()
+            .any(|row| row.state != self.verdict && row.state != JAMMED)
+    }
+}
+
+fn sha256(text: &str) -> String {
+    Sha256::digest(text.as_bytes())
+        .iter()
+        .fold(String::new(), |mut hex, byte| {
+            // Writing to a String cannot fail.
+            let _ = write!(hex, "{byte:02x}");
+            hex
+        })
+}
+
+impl ClothReport {
+    fn new(spec: &Spec, cloth: &Cloth) -> Self {
+        let weave = &spec.weave;
+        Self {
+            pattern: weave.pattern_name.clone(),
+            ends: weave.pattern.ends(),
+            picks: weave.pattern.picks(),
+            jam_limited: cloth.closed.jam_limited,
+            height_shared_by: match cloth.closed.by {
+                Closure::WarpCrimp(_) => "warp crimp",
+                Closure::WeftCrimp(_) => "weft crimp",
+                Closure::BothCrimps(..) => "both crimps",
+                Closure::Tensions(..) => "tensions",
+                Closure::EqualHeights => "equal heights",
+            },
+            crimp_mismatch: cloth.closed.mismatch.map(rounded),
+            thickness_factor: cloth.thickness_factor.map(rounded),
+            warp: SystemReport::new(&weave.warp.yarn, &cloth.warp),
+            weft: SystemReport::new(&weave.weft.yarn, &cloth.weft),
+            thickness_mm: rounded(cloth.thickness_mm),
+            areal_mass_g_m2: rounded(cloth.areal_mass_g_m2),
+            cover: rounded(cloth.cover),
+            fibre_volume_fraction: rounded(cloth.fibre_volume_fraction),
+        }
+    }
+}
+
+impl SystemReport {
+    fn new(yarn: &crate::yarn::Yarn, woven: &ClothYarn) -> Self {
+        let outline = &woven.laid.outline;
+        Self {
+            yarn: yarn.name.clone(),
+            crimp: rounded(woven.crimp),
+            wave_height_mm: rounded(woven.wave_height_mm),
+            min_radius_mm: woven.min_radius_mm.map(rounded),
+            wrap_angle_deg: rounded(woven.slope_rad.to_degrees()),
+            contact_mm: rounded(woven.contact_mm),
+            float_max: woven.float_max(),
+            float_face: woven.float_face,
+            float_back: woven.float_back,
+            spacing_mm: rounded(woven.spacing_mm),
+            yarn_shape: outline.shape().word(),
+            yarn_width_mm: rounded(outline.width_mm()),
+            yarn_thickness_mm: rounded(outline.thickness_mm()),
+            packing: rounded(woven.laid.packing),
+            linear_density_tex: rounded(yarn.count.linear_density_tex),
+            filaments: yarn.count.filaments,
+            filament_diameter_um: rounded(1e3 * yarn.count.filament_diameter_mm),
+            bending_rigidity_n_mm2: rounded(yarn.rigidity_n_mm2(&woven.laid)),
+        }
+    }
+}
+
+impl BendRow {
+    fn new(spec: &Spec, finding: &Finding, strict: bool) -> Self {
+        let line = spec.source.line_column(finding.governed_by.start).line;
+        let strength_loss = match finding.yarn.fibre.mechanism {
+            crate::fibre::Mechanism::Fibrillar {
+                kink_strength_loss, ..
+            } if finding.state == State::Kinks => kink_strength_loss,
+            _ => None,
+        };
+        Self {
+            place: finding.place.to_string(),
+            stage: finding.stage.word(),
+            system: finding.system.word(),
+            yarn: finding.yarn.name.clone(),
+            fibre: finding.yarn.fibre.id.clone(),
+            radius_mm: finding.radius_mm().map(rounded),
+            curvature_per_mm: rounded(finding.filament.curvature_per_mm),
+            lying_curvature_per_mm: rounded(finding.filament.lying_per_mm),
+            free_curvature_per_mm: finding.filament.free_per_mm.map(rounded),
+            governs: finding.filament.position.word(),
+            tension_n: rounded(finding.tension_n),
+            axial_stress_mpa: rounded(finding.filament.axial_stress_mpa),
+            bending_stress_mpa: rounded(finding.bending_stress_mpa()),
+            temperature_c: finding.heat_c.map(|(here, _)| rounded(here)),
+            max_temperature_c: finding.heat_c.map(|(_, limit)| rounded(limit)),
+            limit: finding.limit.map(Limit::word),
+            reserve: finding.reserve().map(rounded),
+            state: finding.state.word(),
+            fails: finding.fails(spec.require.refuse_kinks, strict),
+            code: finding.code.word(),
+            limit_radius_mm: finding.limit_radius_mm().map(rounded),
+            strength_loss,
+            limits: finding
+                .judged
+                .checks
+                .iter()
+                .flatten()
+                .map(LimitRow::new)
+                .collect(),
+            line,
+            quoted: spec.source.line(line).trim().to_owned(),
+        }
+    }
+}
+
+impl LimitRow {
+    fn new(check: &crate::judge::Check) -> Self {
+        let strain = check.limit.is_strain();
+        let (applied, allowed) = (Some(rounded(check.applied)), Some(rounded(check.allowed)));
+        Self {
+            limit: check.limit.word(),
+            code: check.limit.code().word(),
+            applied_mpa: applied.filter(|_| !strain),
+            allowed_mpa: allowed.filter(|_| !strain),
+            applied_strain: applied.filter(|_| strain),
+            allowed_strain: allowed.filter(|_| strain),
+            reserve: rounded(check.reserve()),
+        }
+    }
+}
+
+impl SensitivityRow {
+    fn new(variation: &Variation) -> Self {
+        Self {
+            flatness_factor: variation.flatness_factor,
+            reserve: variation
+                .worst
+                .and_then(|(_, reserve)| reserve)
+                .map(rounded),
+            state: variation.worst.map_or(JAMMED, |(state, _)| state.word()),
+        }
+    }
+}

@@ -1,0 +1,139 @@
+//! Markdown made for attaching and for comparing by line: stable order, fixed digits, one fact a line.
+
+use super::check::CheckReport;
+use super::text::{
+    BEND_COLUMNS, bend_cells, bend_sentences, cloth_lines, pattern_line, system_rows,
+};
+use crate::quantity::{plain, significant};
+use std::fmt::Write as _;
+
+/// The report as Markdown.
+pub fn markdown(report: &CheckReport) -> String {
+    let mut out = String::new();
+    // Writing to a String cannot fail.
+    let _ = write_report(&mut out, report);
+    out
+}
+
+/// A user's text so that it cannot become markup.
+fn escaped(text: &str) -> String {
+    let mut safe = String::with_capacity(text.len());
+    for c in text.chars() {
+        match c {
+            '\\' | '`' | '*' | '_' | '[' | ']' | '<' | '>' | '|' | '#' | '&' => {
+                safe.push('\\');
+                safe.push(c);
+            }
+            c if c.is_control() => safe.push(' '),
+            c => safe.push(c),
+        }
+    }
+    safe
+}
+
+fn row(out: &mut String, cells: &[String]) -> std::fmt::Result {
+    let cells: Vec<String> = cells.iter().map(|cell| escaped(cell)).collect();
+    writeln!(out, "| {} |", cells.join(" | "))
+}
+
+fn head(out: &mut String, cells: &[&str]) -> std::fmt::Result {
+    writeln!(out, "| {} |", cells.join(" | "))?;
+    writeln!(out, "|{}", " --- |".repeat(cells.len()))
+}
+
+fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
+    writeln!(
+        out,
+        "# {}: {}\n",
+        escaped(&report.spec.name),
+        report.verdict
+    )?;
+    if let Some(reference) = &report.spec.reference {
+        writeln!(out, "- reference: {}", escaped(reference))?;
+    }
+    writeln!(out, "- weave: {}", escaped(&pattern_line(report)))?;
+    writeln!(out, "- spec: SHA-256 {}", report.spec.sha256)?;
+    writeln!(out, "- checked by: lissom {}", report.lissom)?;
+    let failing = report.bends.iter().filter(|bend| bend.fails);
+    let worst = report.worst_bend().filter(|bend| !bend.fails);
+    for bend in worst.into_iter().chain(failing) {
+        let what = if bend.fails { "Fails" } else { "Worst bend" };
+        writeln!(
+            out,
+            "\n## {what}: {} ({})\n",
+            escaped(&bend.place),
+            bend.stage
+        )?;
+        for sentence in bend_sentences(bend) {
+            writeln!(out, "- {}", escaped(&sentence))?;
+        }
+        // A fence longer than any run of backticks a line of a spec may hold.
+        writeln!(
+            out,
+            "- line {} of the spec:\n\n`````toml\n{}\n`````",
+            bend.line, bend.quoted
+        )?;
+    }
+    if report.hangs_on_width() {
+        writeln!(
+            out,
+            "\nThe verdict hangs on the yarn's width: measure it in the cloth and give `width`."
+        )?;
+    }
+    writeln!(out, "\n## Bends, in the order of the way\n")?;
+    head(out, &BEND_COLUMNS)?;
+    for bend in &report.bends {
+        row(out, &bend_cells(bend))?;
+    }
+    writeln!(out, "\n## Cloth\n")?;
+    head(out, &["", "warp", "weft"])?;
+    for cells in system_rows(&report.cloth.warp, &report.cloth.weft) {
+        row(out, &cells)?;
+    }
+    writeln!(out)?;
+    for (name, value) in cloth_lines(report) {
+        writeln!(out, "- {name}: {value}")?;
+    }
+    if !report.sensitivity.is_empty() {
+        writeln!(
+            out,
+            "\n## If the assumed outlines were flatter or rounder\n"
+        )?;
+        head(out, &["flatness x", "state", "reserve"])?;
+        for variation in &report.sensitivity {
+            let reserve = variation
+                .reserve
+                .map_or_else(|| "-".to_owned(), |r| significant(r, 3));
+            row(
+                out,
+                &[
+                    plain(variation.flatness_factor, 2),
+                    variation.state.to_owned(),
+                    reserve,
+                ],
+            )?;
+        }
+    }
+    writeln!(out, "\n## Assumptions\n")?;
+    for item in &report.assumptions {
+        writeln!(out, "- {}", escaped(item))?;
+    }
+    writeln!(out, "\n## Cautions\n")?;
+    for item in &report.cautions {
+        writeln!(out, "- {}", escaped(item))?;
+    }
+    Ok(())
+}
+
+#[cfg(test)]
+mod tests {
+    use super::escaped;
+
+    #[test]
+    fn a_name_cannot_become_markup() {
+        assert_eq!(
+            escaped("a|b <i>`x`</i>\n# c"),
+            "a\\|b \\<i\\>\\`x\\`\\</i\\> \\# c"
+        );
+    }
+}

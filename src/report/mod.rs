@@ -1,0 +1,29 @@
+//! Reports: what was found, for people and for programs. They compute nothing.
+//!
+//! | file | what is in it |
+//! | --- | --- |
+//! | `check` | the one report of `check`, from which all formats are printed; its fields are the JSON contract |
+//! | `text`, `markdown`, `json` | the formats |
+//! | `table` | tables in text |
+//! | `cautions` | what every report warns of, by fibre |
+//! | `problems` | problems of a spec with the line and a mark under the place |
+//! | `fibres`, `weaves` | listings of the library and of the named weaves |
+
+mod cautions;
+mod check;
+mod fibres;
+mod json;
+mod markdown;
+mod problems;
+mod table;
+mod text;
+mod weaves;
+
+pub use cautions::cautions;
+pub use check::{BendRow, CheckReport, ClothReport, LimitRow, SensitivityRow, SystemReport};
+pub use fibres::{fibre_text, fibres_json, fibres_text};
+pub use json::to_json;
+pub use markdown::markdown;
+pub use problems::{jammed, problems};
+pub use text::text;
+pub use weaves::{weave_text, weaves_json, weaves_text};

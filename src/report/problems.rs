@@ -1,0 +1,93 @@
+//! Problems of a spec, each with its line and a mark under the place.
+
+use crate::quantity::significant;
+use crate::span::SourceText;
+use crate::spec::{Problem, Spec};
+use crate::weave::{ClothError, Jammed};
+use annotate_snippets::{AnnotationKind, Group, Level, Renderer, Snippet};
+
+/// Draws every problem of a text, with colour codes: print them through a stream that knows its terminal.
+pub fn problems(source: &SourceText, problems: &[Problem]) -> String {
+    let renderer = Renderer::styled();
+    let mut drawn = String::new();
+    for problem in problems {
+        let group: Group<'_> = Level::ERROR
+            .primary_title(problem.message.as_str())
+            .element(
+                Snippet::source(source.text.as_str())
+                    .path(source.name.as_str())
+                    .annotation(
+                        AnnotationKind::Primary
+                            .span(problem.span.clone())
+                            .label(problem.label.as_str()),
+                    ),
+            );
+        let helps = problem
+            .help
+            .iter()
+            .map(|help| Level::HELP.message(help.as_str()));
+        drawn.push_str(&renderer.render(&[group.elements(helps)]));
+        drawn.push_str("\n\n");
+    }
+    let count = match problems.len() {
+        1 => "1 problem".to_owned(),
+        many => format!("{many} problems"),
+    };
+    drawn.push_str(&format!("{}: {count}; nothing was checked\n", source.name));
+    drawn
+}
+
+/// The problem of a cloth that cannot be woven, with the largest setts that fit.
+pub fn jammed(spec: &Spec, jammed: &Jammed) -> Problem {
+    let weave = &spec.weave;
+    let per_cm = |per_mm: f64| significant(floor_4_digits(10.0 * per_mm), 4);
+    let sett = |name: &str, system: &crate::spec::System| {
+        format!("{} /cm {name}", significant(10.0 * system.sett_per_mm, 4))
+    };
+    let message = match &jammed.why {
+        ClothError::Jammed => format!(
+            "jammed: these yarns cannot interlace at {} and {}",
+            sett("in the warp", &weave.warp),
+            sett("in the weft", &weave.weft)
+        ),
+        other => other.to_string(),
+    };
+    let span = match jammed.why {
+        ClothError::Thickness { .. } => weave.span.clone(),
+        _ => weave.warp.sett_span.clone(),
+    };
+    let mut problem = Problem::at(span, message, "too close");
+    if matches!(jammed.why, ClothError::Thickness { .. }) {
+        problem.label = "out of reach".into();
+        return problem
+            .help("check the thickness and the yarns' linear densities against each other");
+    }
+    let fits = &jammed.fits;
+    if let Some((ends, picks)) = fits.both_per_mm {
+        problem = problem.help(format!(
+            "largest setts that fit, in the same ratio: {} /cm and {} /cm",
+            per_cm(ends),
+            per_cm(picks)
+        ));
+    }
+    if let Some(ends) = fits.warp_per_mm {
+        problem = problem.help(format!(
+            "or the weft as it is, and {} /cm in the warp",
+            per_cm(ends)
+        ));
+    }
+    if let Some(picks) = fits.weft_per_mm {
+        problem = problem.help(format!(
+            "or the warp as it is, and {} /cm in the weft",
+            per_cm(picks)
+        ));
+    }
+    problem
+        .help("or a weave with longer floats, or yarns measured flatter in the cloth (`width`, `thickness`)")
+        .help("`lissom explain jammed` tells the method")
+}
+
+fn floor_4_digits(value: f64) -> f64 {
+    let scale = 10f64.powf(3.0 - value.log10().floor());
+    (value * scale).floor() / scale
+}

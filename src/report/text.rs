@@ -1,0 +1,326 @@
+//! Text for a terminal: the verdict first, the worst bend, then every bend, the cloth, what it hangs on.
+
+use super::check::{BendRow, CheckReport, SystemReport};
+use super::table::{folded, table};
+use crate::quantity::{plain, significant};
+use anstyle::{AnsiColor, Style};
+use std::fmt::Write as _;
+
+/// The report with colour codes: print it through a stream that knows its terminal.
+pub fn text(report: &CheckReport) -> String {
+    let mut out = String::new();
+    // Writing to a String cannot fail.
+    let _ = write_report(&mut out, report);
+    out
+}
+
+fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
+    let style = verdict_style(report.verdict);
+    let reference = report
+        .spec
+        .reference
+        .as_ref()
+        .map_or_else(String::new, |number| format!(" ({number})"));
+    writeln!(
+        out,
+        "{style}{}{style:#}  {}{reference}",
+        report.verdict.to_uppercase(),
+        report.spec.name
+    )?;
+    writeln!(out, "{}", pattern_line(report))?;
+    if let Some(worst) = report.worst_bend() {
+        writeln!(out)?;
+        write_bend(out, report, worst, "Worst bend")?;
+    }
+    for (index, bend) in report.bends.iter().enumerate() {
+        if bend.fails && index != report.worst {
+            let reserve =
+                bend.reserve.map_or_else(String::new, |r| format!(" reserve {}", significant(r, 3)));
+            writeln!(
+                out,
+                "Also fails: {} ({}): {}, {}{reserve} [{}]\n  {}:{}: {}",
+                bend.place,
+                bend.stage,
+                bend.state,
+                bend.limit.unwrap_or("no limit"),
+                bend.code,
+                report.spec.file,
+                bend.line,
+                bend.quoted
+            )?;
+        }
+    }
+    if report.hangs_on_width() {
+        writeln!(out)?;
+        writeln!(
+            out,
+            "The verdict hangs on the yarn's width: measure it in the cloth and give `width`."
+        )?;
+    }
+    heading(out, "Bends, in the order of the way")?;
+    writeln!(out, "{}", bend_table(&report.bends))?;
+    heading(out, "Cloth")?;
+    writeln!(
+        out,
+        "{}",
+        system_table(&report.cloth.warp, &report.cloth.weft)
+    )?;
+    for (name, value) in cloth_lines(report) {
+        writeln!(out, "  {name:<28} {value}")?;
+    }
+    if !report.sensitivity.is_empty() {
+        heading(out, "If the assumed outlines were")?;
+        for row in &report.sensitivity {
+            let how = if row.flatness_factor < 1.0 {
+                "rounder"
+            } else {
+                "flatter"
+            };
+            let reserve = row
+                .reserve
+                .map_or_else(String::new, |r| format!(", reserve {}", significant(r, 3)));
+            writeln!(
+                out,
+                "  {how} (flatness x {}): {}{reserve}",
+                plain(row.flatness_factor, 2),
+                row.state
+            )?;
+        }
+    }
+    heading(out, "Assumptions")?;
+    list(out, &report.assumptions)?;
+    heading(out, "Cautions")?;
+    list(out, &report.cautions)
+}
+
+fn verdict_style(verdict: &str) -> Style {
+    let colour = match verdict {
+        "breaks" | "overheats" => AnsiColor::Red,
+        "holds" => AnsiColor::Green,
+        _ => AnsiColor::Yellow,
+    };
+    colour.on_default().bold()
+}
+
+fn heading(out: &mut String, text: &str) -> std::fmt::Result {
+    let style = Style::new().bold();
+    writeln!(out, "\n{style}{text}{style:#}")
+}
+
+fn list(out: &mut String, items: &[String]) -> std::fmt::Result {
+    for item in items {
+        writeln!(out, "{}", folded(item, "- ", "  "))?;
+    }
+    Ok(())
+}
+
+fn write_bend(
+    out: &mut String,
+    report: &CheckReport,
+    bend: &BendRow,
+    what: &str,
+) -> std::fmt::Result {
+    writeln!(
+        out,
+        "{what}: {} ({}, {} yarn `{}`)",
+        bend.place, bend.stage, bend.system, bend.yarn
+    )?;
+    for sentence in bend_sentences(bend) {
+        writeln!(out, "{}", folded(&sentence, "  ", "  "))?;
+    }
+    writeln!(out, "  {}:{}: {}", report.spec.file, bend.line, bend.quoted)
+}
+
+/// What a bend does to the fibre, in sentences; shared by text and Markdown.
+pub(super) fn bend_sentences(bend: &BendRow) -> Vec<String> {
+    let mut said = Vec::new();
+    if let (Some(here), Some(limit)) = (bend.temperature_c, bend.max_temperature_c) {
+        return vec![format!(
+            "{}: {} degC, and {} stands {} degC in air [{}]",
+            bend.state,
+            plain(here, 4),
+            bend.fibre,
+            plain(limit, 4),
+            bend.code
+        )];
+    }
+    let (Some(limit), Some(reserve)) = (bend.limit, bend.reserve) else {
+        return vec![format!(
+            "{}: nothing bends or pulls it [{}]",
+            bend.state, bend.code
+        )];
+    };
+    let radius = bend.radius_mm.map_or_else(
+        || "straight".to_owned(),
+        |radius| format!("bent to {} mm", significant(radius, 3)),
+    );
+    said.push(format!(
+        "{}: {limit} reserve {} [{}]; {} {radius}, {} MPa of bending on {} MPa of pull ({} cN)",
+        bend.state,
+        significant(reserve, 3),
+        bend.code,
+        bend.governs,
+        significant(bend.bending_stress_mpa, 3),
+        significant(bend.axial_stress_mpa, 3),
+        significant(100.0 * bend.tension_n, 3)
+    ));
+    if let Some(radius) = bend.limit_radius_mm {
+        said.push(format!(
+            "at this pull the limit is met at a filament radius of {} mm",
+            significant(radius, 3)
+        ));
+    }
+    if let Some(free) = bend.free_curvature_per_mm {
+        let eased = free < bend.lying_curvature_per_mm;
+        let at = |per_mm: f64| significant(1.0 / per_mm, 3);
+        if bend.lying_curvature_per_mm > 0.0 && free > 0.0 {
+            said.push(format!(
+                "lying on it would bend it to {} mm, its own stiffness to {} mm: {} governs",
+                at(bend.lying_curvature_per_mm),
+                at(free),
+                if eased { "stiffness" } else { "the surface" }
+            ));
+        }
+    }
+    if let Some(loss) = bend.strength_loss {
+        said.push(format!(
+            "kinked, not broken: about {} % of tensile strength lost",
+            plain(100.0 * loss, 2)
+        ));
+    }
+    for other in bend.limits.iter().skip(1) {
+        said.push(format!(
+            "{} reserve {} [{}]",
+            other.limit,
+            significant(other.reserve, 3),
+            other.code
+        ));
+    }
+    said
+}
+
+/// Columns of the table of bends: head and value; shared by text and Markdown.
+pub(super) const BEND_COLUMNS: [&str; 10] = [
+    "state",
+    "reserve",
+    "limit",
+    "place",
+    "stage",
+    "yarn",
+    "radius mm",
+    "pull cN",
+    "pull MPa",
+    "bend MPa",
+];
+
+/// One bend as the cells of its row.
+pub(super) fn bend_cells(bend: &BendRow) -> [String; 10] {
+    let number = |value: Option<f64>| value.map_or_else(|| "-".to_owned(), |v| significant(v, 3));
+    [
+        bend.state.to_owned(),
+        number(bend.reserve),
+        bend.limit.unwrap_or("-").to_owned(),
+        bend.place.clone(),
+        bend.stage.to_owned(),
+        bend.yarn.clone(),
+        number(bend.radius_mm),
+        significant(100.0 * bend.tension_n, 3),
+        significant(bend.axial_stress_mpa, 3),
+        significant(bend.bending_stress_mpa, 3),
+    ]
+}
+
+fn bend_table(bends: &[BendRow]) -> String {
+    table(
+        BEND_COLUMNS,
+        bends.iter().map(|bend| bend_cells(bend).to_vec()),
+        &[1, 6, 7, 8, 9],
+    )
+}
+
+/// Rows of the table of both systems: name, warp, weft; shared by text and Markdown.
+pub(super) fn system_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[String; 3]> {
+    let row =
+        |name: &str, of: &dyn Fn(&SystemReport) -> String| [name.to_owned(), of(warp), of(weft)];
+    vec![
+        row("yarn", &|s| s.yarn.clone()),
+        row("tex", &|s| significant(s.linear_density_tex, 4)),
+        row("filaments x um", &|s| {
+            format!(
+                "{} x {}",
+                s.filaments,
+                significant(s.filament_diameter_um, 3)
+            )
+        }),
+        row("threads per cm", &|s| significant(10.0 / s.spacing_mm, 4)),
+        row("outline", &|s| s.yarn_shape.to_owned()),
+        row("width x thickness mm", &|s| {
+            format!(
+                "{} x {}",
+                significant(s.yarn_width_mm, 3),
+                significant(s.yarn_thickness_mm, 3)
+            )
+        }),
+        row("packing", &|s| significant(s.packing, 2)),
+        row("rigidity N mm2", &|s| {
+            significant(s.bending_rigidity_n_mm2, 2)
+        }),
+        row("crimp %", &|s| significant(100.0 * s.crimp, 3)),
+        row("wave height mm", &|s| significant(s.wave_height_mm, 3)),
+        row("slope deg", &|s| significant(s.wrap_angle_deg, 3)),
+        row("smallest radius mm", &|s| {
+            s.min_radius_mm
+                .map_or_else(|| "straight".to_owned(), |r| significant(r, 3))
+        }),
+        row("contact mm", &|s| significant(s.contact_mm, 3)),
+        row("longest float face, back", &|s| {
+            format!("{}, {}", s.float_face, s.float_back)
+        }),
+    ]
+}
+
+fn system_table(warp: &SystemReport, weft: &SystemReport) -> String {
+    let rows = system_rows(warp, weft).into_iter().map(|row| row.to_vec());
+    table(["", "warp", "weft"], rows, &[1, 2])
+}
+
+/// The line that names the weave.
+pub(super) fn pattern_line(report: &CheckReport) -> String {
+    let cloth = &report.cloth;
+    format!("{}, repeat {} x {}", cloth.pattern, cloth.ends, cloth.picks)
+}
+
+/// The cloth's own numbers: name and value; shared by text and Markdown.
+pub(super) fn cloth_lines(report: &CheckReport) -> Vec<(&'static str, String)> {
+    let cloth = &report.cloth;
+    vec![
+        (
+            "areal mass",
+            format!("{} g/m2", significant(cloth.areal_mass_g_m2, 4)),
+        ),
+        (
+            "thickness",
+            format!("{} mm", significant(cloth.thickness_mm, 3)),
+        ),
+        (
+            "cover",
+            format!("{} %", significant(100.0 * cloth.cover, 3)),
+        ),
+        (
+            "fibre volume",
+            format!("{} %", significant(100.0 * cloth.fibre_volume_fraction, 3)),
+        ),
+        (
+            "height shared by",
+            format!(
+                "{}{}",
+                cloth.height_shared_by,
+                if cloth.jam_limited {
+                    ", jam limited"
+                } else {
+                    ""
+                }
+            ),
+        ),
+    ]
+}
