@@ -227,9 +227,12 @@ mod tests {
         near(value("2.5 cN/tex", Dimension::SpecificForce), 0.025);
         near(value("1 gf/den", Dimension::SpecificForce), 0.088_259_85);
         near(value("12.5 Msi", Dimension::Stress), 86_184.466_161_461_7);
-        near(value("665 ksi", Dimension::Stress), 4585.013_599_789_8);
+        near(value("665 ksi", Dimension::Stress), 4_585.013_599_789_8);
         near(value("1 lbf", Dimension::Force), 4.448_221_615_260_5);
-        near(value("30 deg", Dimension::Angle), 0.523_598_775_598_299);
+        near(
+            value("45 deg", Dimension::Angle),
+            std::f64::consts::FRAC_PI_4,
+        );
         near(value("482 degF", Dimension::Temperature), 250.0);
         near(value("1e-3 N mm2", Dimension::Rigidity), 1e-3);
         assert_eq!(parse_twist("40 /m Z").unwrap().0, 0.04);

@@ -34,8 +34,9 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     }
     for (index, bend) in report.bends.iter().enumerate() {
         if bend.fails && index != report.worst {
-            let reserve =
-                bend.reserve.map_or_else(String::new, |r| format!(" reserve {}", significant(r, 3)));
+            let reserve = bend
+                .reserve
+                .map_or_else(String::new, |r| format!(" reserve {}", significant(r, 3)));
             writeln!(
                 out,
                 "Also fails: {} ({}): {}, {}{reserve} [{}]\n  {}:{}: {}",

@@ -87,7 +87,7 @@ pub fn read_weave(spec: &Table<'_>, yarns: &[SpecYarn], weaves: &Weaves) -> Opti
     let warp = read_system(&table, "warp", yarns);
     let weft = read_system(&table, "weft", yarns);
     let thickness = table.measure("thickness", Dimension::Length, Bound::Positive);
-    table.word("path", &[("taut", ())]);
+    read_path(&table);
     let rest = table
         .measure("rest", Dimension::Share, Bound::Within(0.0, 1.0))
         .value();
@@ -110,6 +110,22 @@ pub fn read_weave(spec: &Table<'_>, yarns: &[SpecYarn], weaves: &Weaves) -> Opti
         peak_given: peak.is_some(),
         span,
     })
+}
+
+/// Only one model of the path is built; a spec that asks for another must not be answered with this one.
+fn read_path(table: &Table<'_>) {
+    if let Field::Given(path) = table.word("path", &[("taut", true), ("stiff", false)])
+        && !path.value
+    {
+        table.push(
+            Problem::at(
+                path.span,
+                "the stiff path is not in this version",
+                "not built yet",
+            )
+            .help("leave `path` out, or write `path = \"taut\"`"),
+        );
+    }
 }
 
 fn read_pattern(table: &Table<'_>, weaves: &Weaves) -> Option<(String, Pattern)> {

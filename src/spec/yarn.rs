@@ -4,7 +4,7 @@ use super::fibre::Fibres;
 use super::keys::YARN;
 use super::problem::Problem;
 use super::reader::{Bound, Field, Placed, Table, quantity_problem};
-use crate::quantity::{Dimension, TwistDirection, parse_twist};
+use crate::quantity::{Dimension, TwistDirection, parse_twist, plain, significant};
 use crate::span::Span;
 use crate::yarn::{CLOSEST_PACKING, Count, CountError, CountGiven, Outline, Shape, Yarn, YarnForm};
 use std::sync::Arc;
@@ -104,8 +104,7 @@ fn read_one(name: &Placed<String>, table: &Table<'_>, fibres: &Fibres) -> Option
         bending_rigidity_n_mm2: rigidity.value(),
         tension_spread: spread.unwrap_or(1.0),
     };
-    check_form(table, &yarn);
-    Some(yarn)
+    form_agrees(table, &yarn).then_some(yarn)
 }
 
 fn read_twist(table: &Table<'_>) -> Option<(f64, Option<TwistDirection>)> {
@@ -161,8 +160,15 @@ fn read_packing(table: &Table<'_>) -> Option<f64> {
     Some(packing.value)
 }
 
-/// Sizes that contradict each other or the yarn, whatever the spacing.
-fn check_form(table: &Table<'_>, yarn: &Yarn) {
+/// Whether the sizes agree with each other and the yarn, whatever the spacing; problems are kept.
+fn form_agrees(table: &Table<'_>, yarn: &Yarn) -> bool {
+    let problem = form_problem(table, yarn);
+    let agrees = problem.is_none();
+    problem.into_iter().for_each(|problem| table.push(problem));
+    agrees
+}
+
+fn form_problem(table: &Table<'_>, yarn: &Yarn) -> Option<Problem> {
     let form = yarn.form;
     let place = |keys: &[&str]| {
         keys.iter()
@@ -170,47 +176,38 @@ fn check_form(table: &Table<'_>, yarn: &Yarn) {
             .unwrap_or_else(|| table.span())
     };
     if yarn.is_monofilament() {
-        let shaped = matches!(form.shape, Some(shape) if shape != Shape::Round);
-        if shaped
-            || form
-                != (YarnForm {
-                    shape: form.shape,
-                    ..YarnForm::default()
-                })
-        {
-            table.push(
-                Problem::at(
-                    place(&["width", "thickness", "flatness", "packing", "shape"]),
-                    "a single filament is a solid circle of its own diameter",
-                    "has no other outline",
-                )
-                .help("leave `shape`, `width`, `thickness`, `flatness` and `packing` out"),
-            );
-        }
-        return;
+        let bare = YarnForm {
+            shape: form.shape.filter(|shape| *shape == Shape::Round),
+            ..YarnForm::default()
+        };
+        return (form != bare).then(|| {
+            Problem::at(
+                place(&["width", "thickness", "flatness", "packing", "shape"]),
+                "a single filament is a solid circle of its own diameter",
+                "has no other outline",
+            )
+            .help("leave `shape`, `width`, `thickness`, `flatness` and `packing` out")
+        });
     }
-    let (w, t) = match (form.width_mm, form.thickness_mm, form.flatness) {
-        (Some(w), Some(t), Some(f)) => {
-            if (w / t / f - 1.0).abs() > 0.05 {
-                table.push(
-                    Problem::at(
-                        place(&["flatness"]),
-                        format!("width over thickness is {:.3}, not {f}", w / t),
-                        "contradicts the sizes",
-                    )
-                    .help("leave one of `width`, `thickness` and `flatness` out"),
-                );
-            }
-            (w, t)
-        }
-        (Some(w), Some(t), None) => (w, t),
-        (Some(w), None, Some(f)) => (w, w / f),
-        (None, Some(t), Some(f)) => (t * f, t),
-        _ => return,
-    };
     let shape = yarn.shape();
+    let (w, t) = form.sizes_mm(shape)?;
+    if let Some(flatness) = form.flatness
+        && (w / t / flatness - 1.0).abs() > 0.05
+    {
+        return Some(
+            Problem::at(
+                place(&["flatness"]),
+                format!(
+                    "width over thickness is {}, not {flatness}",
+                    plain(w / t, 3)
+                ),
+                "contradicts the sizes",
+            )
+            .help("leave one of `width`, `thickness` and `flatness` out"),
+        );
+    }
     let Some(outline) = Outline::new(shape, w, t) else {
-        table.push(
+        return Some(
             Problem::at(
                 place(&["thickness", "width", "flatness"]),
                 format!("a {} cannot be {w} mm wide and {t} mm thick", shape.word()),
@@ -218,17 +215,16 @@ fn check_form(table: &Table<'_>, yarn: &Yarn) {
             )
             .help("width must not be below thickness; a round yarn has both alike"),
         );
-        return;
     };
     let packing = yarn.fibre_area_mm2() / outline.area_mm2();
     let sizes = format!(
-        "{:.4} mm2 of fibre in a {} of {:.4} mm2 is a packing of {packing:.2}",
-        yarn.fibre_area_mm2(),
+        "{} mm2 of fibre in a {} of {} mm2 is a packing of {packing:.2}",
+        significant(yarn.fibre_area_mm2(), 3),
         shape.word(),
-        outline.area_mm2()
+        significant(outline.area_mm2(), 3)
     );
     if packing > CLOSEST_PACKING {
-        table.push(
+        return Some(
             Problem::at(
                 place(&["thickness", "width"]),
                 format!("{sizes}, over {CLOSEST_PACKING}"),
@@ -236,16 +232,16 @@ fn check_form(table: &Table<'_>, yarn: &Yarn) {
             )
             .help("check linear density, width and thickness against each other"),
         );
-    } else if let Some(given) = form.packing
-        && (packing / given - 1.0).abs() > 0.05
-    {
-        table.push(
-            Problem::at(
-                place(&["packing"]),
-                format!("{sizes}, not {given}"),
-                "contradicts the sizes",
-            )
-            .help("sizes and linear density fix the packing: leave `packing` out"),
-        );
     }
+    let given = form
+        .packing
+        .filter(|given| (packing / given - 1.0).abs() > 0.05)?;
+    Some(
+        Problem::at(
+            place(&["packing"]),
+            format!("{sizes}, not {given}"),
+            "contradicts the sizes",
+        )
+        .help("sizes and linear density fix the packing: leave `packing` out"),
+    )
 }

@@ -17,5 +17,5 @@ mod wave;
 pub use cloth::{Cloth, ClothError, ClothYarn, areal_mass_g_m2, cover};
 pub use crowns::crowns;
 pub use jam::{Fits, Jammed};
-pub use share::{Closed, Closure, Share};
+pub use share::{Closed, Closure, Share, share};
 pub use wave::{Piece, Wave};

@@ -227,13 +227,7 @@ impl Yarn {
             flatness,
             ..
         } = self.form;
-        let sizes = match (width_mm, thickness_mm, flatness) {
-            (Some(w), Some(t), _) => Some((w, t)),
-            (Some(w), None, Some(f)) => Some((w, w / f)),
-            (None, Some(t), Some(f)) => Some((t * f, t)),
-            _ => None,
-        };
-        if let Some((width_mm, thickness_mm)) = sizes {
+        if let Some((width_mm, thickness_mm)) = self.form.sizes_mm(shape) {
             let outline =
                 Outline::new(shape, width_mm, thickness_mm).ok_or(LayError::NoOutline {
                     shape: shape.word(),

@@ -43,6 +43,19 @@ pub struct YarnForm {
     pub packing: Option<f64>,
 }
 
+impl YarnForm {
+    /// Width and thickness, mm, where what is given fixes both: two of three, or one of a circle.
+    pub fn sizes_mm(&self, shape: Shape) -> Option<(f64, f64)> {
+        match (self.width_mm, self.thickness_mm, self.flatness) {
+            (Some(w), Some(t), _) => Some((w, t)),
+            (Some(d), None, _) | (None, Some(d), _) if shape == Shape::Round => Some((d, d)),
+            (Some(w), None, Some(f)) => Some((w, w / f)),
+            (None, Some(t), Some(f)) => Some((t * f, t)),
+            _ => None,
+        }
+    }
+}
+
 /// A yarn, resolved: its fibre, its count and what is known of its form.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Yarn {

@@ -1,0 +1,224 @@
+//! Wrong specs and the exact message for each: message text is product.
+
+#![allow(clippy::unwrap_used, clippy::panic, reason = "helpers of tests")]
+
+mod common;
+
+use common::lissom;
+
+/// A valid spec; each case replaces one piece of it.
+const GOOD: &str = r#"name = "Good"
+
+[fibre.own]
+like = "alumina"
+filament_diameter = "12 um"
+
+[yarn.face]
+fibre = "own"
+linear_density = "200 tex"
+filaments = 450
+
+[yarn.back]
+fibre = "e-glass"
+linear_density = "68 tex"
+width = "0.5 mm"
+
+[weave]
+pattern = "plain"
+warp = { yarn = "face", sett = "9 /cm" }
+weft = { yarn = "back", sett = "10 /cm" }
+
+[[passage]]
+yarn = "warp"
+name = "heald eye"
+radius = "2 mm"
+turn = "12 deg"
+
+[require]
+reserve = 2.0
+"#;
+
+fn complaint(spec: &str) -> String {
+    let output = lissom(&["check", "-"], spec);
+    let text = String::from_utf8(output.stderr).unwrap();
+    assert_eq!(output.status.code(), Some(2), "{text}");
+    assert!(output.stdout.is_empty());
+    text
+}
+
+#[test]
+fn the_good_spec_is_good() {
+    assert_eq!(lissom(&["check", "-"], GOOD).status.code(), Some(0));
+}
+
+/// Name of the case, what is replaced, by what.
+const CASES: &[(&str, &str, &str)] = &[
+    ("bare number", "\"200 tex\"", "200"),
+    ("bare real number", "\"0.5 mm\"", "0.5"),
+    ("no unit", "\"200 tex\"", "\"200\""),
+    ("unknown unit", "\"200 tex\"", "\"200 texx\""),
+    ("unit in wrong case", "\"12 um\"", "\"12 UM\""),
+    ("unit of something else", "\"0.5 mm\"", "\"0.5 tex\""),
+    ("decimal comma", "\"0.5 mm\"", "\"0,5 mm\""),
+    ("no number", "\"0.5 mm\"", "\"wide\""),
+    ("negative", "\"0.5 mm\"", "\"-0.5 mm\""),
+    ("zero", "\"9 /cm\"", "\"0 /cm\""),
+    ("infinite", "\"0.5 mm\"", "\"inf mm\""),
+    ("overflowing", "\"0.5 mm\"", "\"1e400 mm\""),
+    (
+        "unknown key",
+        "linear_density = \"68 tex\"",
+        "linear_densty = \"68 tex\"",
+    ),
+    ("unknown table", "[require]", "[requires]"),
+    ("unknown fibre", "\"e-glass\"", "\"e-glas\""),
+    ("unknown own fibre", "fibre = \"own\"", "fibre = \"owm\""),
+    ("unknown weave", "\"plain\"", "\"plane\""),
+    ("misspelt words", "\"plain\"", "\"twil 2/2 z\""),
+    ("satin step", "\"plain\"", "\"satin 8 step 2\""),
+    ("no regular satin", "\"plain\"", "\"satin 6\""),
+    ("unknown yarn", "yarn = \"back\"", "yarn = \"bak\""),
+    ("packing too high", "width = \"0.5 mm\"", "packing = 0.95"),
+    (
+        "packing from sizes too high",
+        "width = \"0.5 mm\"",
+        "width = \"0.5 mm\"\nthickness = \"0.04 mm\"",
+    ),
+    (
+        "packing against sizes",
+        "width = \"0.5 mm\"",
+        "width = \"0.5 mm\"\nthickness = \"0.12 mm\"\npacking = 0.4",
+    ),
+    (
+        "binding out of range",
+        "width = \"0.5 mm\"",
+        "binding = 1.5",
+    ),
+    (
+        "count contradiction",
+        "filaments = 450",
+        "filaments = 450\nfilament_diameter = \"14 um\"",
+    ),
+    ("no count", "linear_density = \"68 tex\"\n", ""),
+    ("less than a filament", "\"68 tex\"", "\"0.02 tex\""),
+    ("filaments zero", "filaments = 450", "filaments = 0"),
+    ("filaments real", "filaments = 450", "filaments = 450.5"),
+    (
+        "twist without direction",
+        "width = \"0.5 mm\"",
+        "twist = \"40 /m\"",
+    ),
+    ("unknown shape", "width = \"0.5 mm\"", "shape = \"lense\""),
+    (
+        "taller than wide",
+        "width = \"0.5 mm\"",
+        "width = \"0.1 mm\"\nthickness = \"0.5 mm\"",
+    ),
+    (
+        "rows not one cloth",
+        "pattern = \"plain\"",
+        "rows = [\"##\", \"#.\"]",
+    ),
+    (
+        "rows ragged",
+        "pattern = \"plain\"",
+        "rows = [\"#.\", \".\"]",
+    ),
+    (
+        "rows with another mark",
+        "pattern = \"plain\"",
+        "rows = [\"#x\", \".#\"]",
+    ),
+    (
+        "rows and pattern",
+        "pattern = \"plain\"",
+        "pattern = \"plain\"\nrows = [\"#.\", \".#\"]",
+    ),
+    ("no pattern", "pattern = \"plain\"\n", ""),
+    ("no weave", "[weave]", "[loom]"),
+    (
+        "no sett",
+        "yarn = \"back\", sett = \"10 /cm\"",
+        "yarn = \"back\"",
+    ),
+    ("no name", "name = \"Good\"", ""),
+    ("empty name", "\"Good\"", "\" \""),
+    (
+        "stiff path",
+        "pattern = \"plain\"",
+        "pattern = \"plain\"\npath = \"stiff\"",
+    ),
+    ("reserve under one", "reserve = 2.0", "reserve = 0.5"),
+    (
+        "passage of an unknown yarn",
+        "yarn = \"warp\"",
+        "yarn = \"wrap\"",
+    ),
+    ("passage without radius", "radius = \"2 mm\"\n", ""),
+    ("turn of many wraps", "\"12 deg\"", "\"12000 deg\""),
+    (
+        "figure of no use",
+        "filament_diameter = \"12 um\"",
+        "yield_stress = \"1 GPa\"",
+    ),
+    (
+        "own fibre without figures",
+        "like = \"alumina\"",
+        "kind = \"fibrillar\"",
+    ),
+    (
+        "no room side by side",
+        "sett = \"9 /cm\"",
+        "sett = \"90 /cm\"",
+    ),
+    (
+        "jammed",
+        "sett = \"9 /cm\" }\nweft = { yarn = \"back\", sett = \"10 /cm\" }",
+        "sett = \"25 /cm\" }\nweft = { yarn = \"back\", sett = \"22 /cm\" }",
+    ),
+    (
+        "cloth thickness out of reach",
+        "pattern = \"plain\"",
+        "pattern = \"plain\"\nthickness = \"0.01 mm\"",
+    ),
+    ("no TOML", "[weave]", "[weave"),
+    (
+        "key twice",
+        "name = \"Good\"",
+        "name = \"Good\"\nname = \"Again\"",
+    ),
+];
+
+#[test]
+fn every_wrong_spec_gets_its_message() {
+    assert!(CASES.len() >= 54, "the number of cases never falls");
+    for (name, from, to) in CASES {
+        let spoilt = GOOD.replacen(from, to, 1);
+        assert_ne!(spoilt, GOOD, "{name}");
+        insta::assert_snapshot!(
+            format!("problem {name}").replace(' ', "-"),
+            complaint(&spoilt)
+        );
+    }
+}
+
+#[test]
+fn all_problems_of_a_file_come_together_in_its_order() {
+    let spoilt = GOOD
+        .replacen("\"12 um\"", "12", 1)
+        .replacen("\"68 tex\"", "\"68 den/m\"", 1)
+        .replacen("\"plain\"", "\"plane\"", 1)
+        .replacen("reserve = 2.0", "reserve = 2.0\nkink = \"refuse\"", 1);
+    let text = complaint(&spoilt);
+    let places: Vec<usize> = text
+        .lines()
+        .filter_map(|line| line.trim().strip_prefix("--> <stdin>:"))
+        .map(|place| place.split(':').next().unwrap().parse().unwrap())
+        .collect();
+    assert_eq!(places.len(), 4, "{text}");
+    assert!(
+        places.windows(2).all(|pair| pair[0] < pair[1]),
+        "{places:?}"
+    );
+    assert!(text.contains("4 problems; nothing was checked"));
+}
