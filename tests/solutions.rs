@@ -1,6 +1,11 @@
 //! Outside checks against the independent solutions of `tests/reference/` (its README says what each is).
 
-#![allow(clippy::unwrap_used, clippy::panic, clippy::print_stdout, reason = "helpers of tests")]
+#![allow(
+    clippy::unwrap_used,
+    clippy::panic,
+    clippy::print_stdout,
+    reason = "helpers of tests"
+)]
 
 use lissom::bend::Flanks;
 use lissom::judge::{break_bend, kinked_section};

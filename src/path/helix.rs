@@ -30,35 +30,53 @@ pub fn bent_helix_curvature_per_mm(
     bend_radius_mm: f64,
     phase_rad: f64,
 ) -> f64 {
+    squared(radius_mm, twist_per_mm, bend_radius_mm, phase_rad).sqrt()
+}
+
+fn squared(radius_mm: f64, twist_per_mm: f64, bend_radius_mm: f64, phase_rad: f64) -> f64 {
     let (r, bend) = (radius_mm, bend_radius_mm);
     let (sine, cosine) = phase_rad.sin_cos();
     let w = TAU * twist_per_mm;
     let g = 1.0 + r / bend * cosine;
-    let q = r * r * w * w + g * g;
+    let wound = r * r * w * w;
+    let q = wound + g * g;
     let in_plane = (r * w * w + g / bend * cosine) / q;
-    let across = sine / bend * (2.0 * r * r * w * w + g * g) / q.powf(1.5);
-    in_plane.hypot(across)
+    let across = sine / bend * (2.0 * wound + g * g);
+    in_plane * in_plane + across * across / (q * q * q)
 }
 
 /// The largest curvature over all phases, 1/mm.
 ///
-/// Accuracy 1e-9 relative: coarse search over half a turn, then the bracket narrowed by golden section.
+/// Accuracy 1e-9 relative: coarse search over half a turn, then the bracket narrowed by golden section (an error
+/// of 1e-5 in the phase of a maximum is one of 1e-10 in its value).
 pub fn bent_helix_peak_per_mm(radius_mm: f64, twist_per_mm: f64, bend_radius_mm: f64) -> f64 {
-    const PHASES: usize = 24;
-    let at =
-        |phase: f64| bent_helix_curvature_per_mm(radius_mm, twist_per_mm, bend_radius_mm, phase);
+    const PHASES: usize = 16;
+    const GOLDEN: f64 = 0.618_033_988_749_895;
+    let at = |phase: f64| squared(radius_mm, twist_per_mm, bend_radius_mm, phase);
     let step = PI / PHASES as f64;
-    let best = (0..=PHASES)
+    let (_, best) = (0..=PHASES)
         .map(|index| index as f64 * step)
-        .max_by(|a, b| at(*a).total_cmp(&at(*b)))
-        .unwrap_or(0.0);
-    let golden = (5f64.sqrt() - 1.0) / 2.0;
+        .map(|phase| (at(phase), phase))
+        .fold((f64::NEG_INFINITY, 0.0), |best, next| {
+            if next.0 > best.0 { next } else { best }
+        });
     let (mut low, mut high) = (best - step, best + step);
-    while high - low > 1e-6 {
-        let (a, b) = (high - golden * (high - low), low + golden * (high - low));
-        if at(a) > at(b) { high = b } else { low = a }
+    let inner = |low: f64, high: f64| high - GOLDEN * (high - low);
+    let outer = |low: f64, high: f64| low + GOLDEN * (high - low);
+    let (mut a, mut b) = (inner(low, high), outer(low, high));
+    let (mut at_a, mut at_b) = (at(a), at(b));
+    while high - low > 1e-5 {
+        if at_a > at_b {
+            (high, b, at_b) = (b, a, at_a);
+            a = inner(low, high);
+            at_a = at(a);
+        } else {
+            (low, a, at_a) = (a, b, at_b);
+            b = outer(low, high);
+            at_b = at(b);
+        }
     }
-    at(0.5 * (low + high))
+    at(0.5 * (low + high)).sqrt()
 }
 
 #[cfg(test)]

@@ -71,15 +71,35 @@ impl Crest {
 
     /// The thread passing with this wave height (0 to D), or `None` where it cannot.
     pub fn pass(&self, wave_height_mm: f64) -> Option<Passing> {
-        let depth_mm = self.reach_mm() - 0.5 * wave_height_mm;
-        let (slope_rad, half_straight_mm) = self.slope(depth_mm)?;
-        let contact_mm = self.section.touch(slope_rad).arc_mm + self.half_thickness_mm * slope_rad;
+        let (slope_rad, half_straight_mm) = self.slope(self.depth_mm(wave_height_mm))?;
         Some(Passing {
             slope_rad,
-            length_mm: 2.0 * (contact_mm + half_straight_mm),
+            length_mm: self.length_with(slope_rad, half_straight_mm),
             straight_mm: 2.0 * half_straight_mm,
             rests: self.rests(slope_rad),
         })
+    }
+
+    /// Only the slope of the straight piece, rad.
+    pub fn slope_rad(&self, wave_height_mm: f64) -> Option<f64> {
+        self.slope(self.depth_mm(wave_height_mm))
+            .map(|(slope, _)| slope)
+    }
+
+    /// Only the length from crest to trough, mm.
+    pub fn length_mm(&self, wave_height_mm: f64) -> Option<f64> {
+        let (slope, half_straight_mm) = self.slope(self.depth_mm(wave_height_mm))?;
+        Some(self.length_with(slope, half_straight_mm))
+    }
+
+    /// How far the sections stand below the middle at this wave height, mm.
+    fn depth_mm(&self, wave_height_mm: f64) -> f64 {
+        self.reach_mm() - 0.5 * wave_height_mm
+    }
+
+    fn length_with(&self, slope_rad: f64, half_straight_mm: f64) -> f64 {
+        let contact_mm = self.section.touch(slope_rad).arc_mm + self.half_thickness_mm * slope_rad;
+        2.0 * (contact_mm + half_straight_mm)
     }
 
     /// Slope and half the straight piece, for sections `depth_mm` below the middle.
@@ -167,35 +187,44 @@ impl Crest {
         rests
     }
 
-    /// How far the thread stays clear of jamming at this wave height: the maximum of f, mm.
-    fn margin_mm(&self, wave_height_mm: f64) -> f64 {
-        let depth_mm = self.reach_mm() - 0.5 * wave_height_mm;
-        let half_spacing = 0.5 * self.spacing_mm;
-        let steepest =
-            |a: f64| half_spacing * a.cos() - depth_mm * a.sin() - self.section.touch(a).along_mm;
-        let peak = match self.section.arcs() {
-            Some(arcs) => {
-                let at = |arc: crate::yarn::Arc| {
-                    (half_spacing - arc.centre_x_mm).atan2(depth_mm - arc.centre_z_mm)
-                };
-                let first = at(arcs[0]);
-                if first <= arcs[0].until_rad {
-                    first
-                } else {
-                    at(arcs[1])
-                }
-            }
-            None => rising_root(|a| -steepest(a), 0.0, FRAC_PI_2, 1e-14),
-        };
-        half_spacing * peak.sin() + depth_mm * peak.cos()
-            - self.section.touch(peak).distance_mm
-            - self.half_thickness_mm
-    }
-
     /// The highest wave with which the thread still passes, mm: at most D, where it takes the whole height.
+    ///
+    /// There the maximum of f is zero. On an arc about (cx, cz) that is where the distance from its centre to the
+    /// point half way, sqrt((p/2 - cx)² + (g - cz)²), equals its radius plus o.
     pub fn highest_wave_mm(&self) -> f64 {
         let whole = 2.0 * self.reach_mm();
-        rising_root(|h| -self.margin_mm(h), 0.0, whole, 1e-14 * whole)
+        let half_spacing = 0.5 * self.spacing_mm;
+        let Some(arcs) = self.section.arcs() else {
+            return self.highest_wave_on_ellipse_mm(whole);
+        };
+        for arc in arcs {
+            let x = half_spacing - arc.centre_x_mm;
+            let reach = arc.radius_mm + self.half_thickness_mm;
+            if x >= reach {
+                // Wide enough at any height, unless the next arc is narrower still.
+                continue;
+            }
+            let z = (reach * reach - x * x).sqrt();
+            if x.atan2(z) <= arc.until_rad {
+                return (whole - 2.0 * (z + arc.centre_z_mm)).clamp(0.0, whole);
+            }
+        }
+        whole
+    }
+
+    fn highest_wave_on_ellipse_mm(&self, whole: f64) -> f64 {
+        let half_spacing = 0.5 * self.spacing_mm;
+        // The maximum of f at a height: how far the thread stays clear of jamming.
+        let margin = |wave_height_mm: f64| {
+            let depth = self.depth_mm(wave_height_mm);
+            let steepest =
+                |a: f64| self.section.touch(a).along_mm + depth * a.sin() - half_spacing * a.cos();
+            let peak = rising_root(steepest, 0.0, FRAC_PI_2, 1e-14);
+            half_spacing * peak.sin() + depth * peak.cos()
+                - self.section.touch(peak).distance_mm
+                - self.half_thickness_mm
+        };
+        rising_root(|h| -margin(h), 0.0, whole, 1e-14 * whole)
     }
 }
 

@@ -81,13 +81,16 @@ impl Wave {
 
     /// Mean crimp of the system at a wave height, a ratio; `None` where the yarn cannot pass.
     pub fn crimp(&self, height_mm: f64) -> Option<f64> {
-        let passing = self.crest.pass(height_mm)?;
-        Some(self.crimp_of(&passing))
+        Some(self.crimp_with(self.crest.length_mm(height_mm)?))
     }
 
     /// Mean crimp of the system with this passing.
     pub fn crimp_of(&self, passing: &Passing) -> f64 {
-        self.changes_per_crossing * (passing.length_mm / self.crest.spacing_mm - 1.0)
+        self.crimp_with(passing.length_mm)
+    }
+
+    fn crimp_with(&self, passing_length_mm: f64) -> f64 {
+        self.changes_per_crossing * (passing_length_mm / self.crest.spacing_mm - 1.0)
     }
 
     /// Upward pull of one yarn per crossing for unit tension: changes per crossing times the sine of the slope,
@@ -95,8 +98,8 @@ impl Wave {
     pub fn lift(&self, height_mm: f64) -> f64 {
         let slope = self
             .crest
-            .pass(height_mm)
-            .map_or(std::f64::consts::FRAC_PI_2, |p| p.slope_rad);
+            .slope_rad(height_mm)
+            .unwrap_or(std::f64::consts::FRAC_PI_2);
         self.changes_per_crossing * slope.sin()
     }
 

@@ -126,10 +126,11 @@ impl Outline {
                     .sqrt();
                 2.0 * area_mm2 / (width_mm + root)
             }
+            // A lens fills between 2/3 and pi/4 of its rectangle.
             Shape::Lens => rising_root(
                 |t| lens_area(width_mm, t) - area_mm2,
-                0.0,
-                width_mm,
+                area_mm2 / (FRAC_PI_4 * width_mm),
+                (1.5 * area_mm2 / width_mm).min(width_mm),
                 1e-15 * width_mm,
             ),
         };
