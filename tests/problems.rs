@@ -174,7 +174,7 @@ const CASES: &[(&str, &str, &str)] = &[
     (
         "jammed",
         "sett = \"9 /cm\" }\nweft = { yarn = \"back\", sett = \"10 /cm\" }",
-        "sett = \"25 /cm\" }\nweft = { yarn = \"back\", sett = \"22 /cm\" }",
+        "sett = \"30 /cm\" }\nweft = { yarn = \"back\", sett = \"29 /cm\" }",
     ),
     (
         "cloth thickness out of reach",

@@ -23,11 +23,16 @@ enum Format {
     Json,
 }
 
-/// Check one or several specs
-///
-/// Exit status: 0 nothing failed; 1 something breaks, overheats, or kinks where kinks are refused, and with
-/// --strict also what yields, kinks or is close; 2 the input is wrong; 3 a file cannot be read or written.
+const EXIT_STATUS: &str = "\
+Exit status:
+  0  nothing failed
+  1  something breaks or overheats, or kinks where the spec refuses kinks or past 3 % of
+     compressive strain; with --strict also what yields, kinks or is close
+  2  the input is wrong; nothing is written
+  3  a file cannot be read or written";
+
 #[derive(Debug, Args)]
+#[command(after_help = EXIT_STATUS)]
 pub(super) struct Check {
     /// Spec files; `-` is standard input
     #[arg(required = true, value_name = "SPEC")]

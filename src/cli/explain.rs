@@ -5,7 +5,6 @@ use super::out::Streams;
 use clap::Args;
 use lissom::judge::{Code, explain};
 
-/// Tell the method behind a finding's code
 #[derive(Debug, Args)]
 pub(super) struct Explain {
     /// A code from a report, such as `kink-onset`; without one, all codes are listed

@@ -15,7 +15,6 @@ enum Format {
     Json,
 }
 
-/// List the fibres, or show everything known of one
 #[derive(Debug, Args)]
 pub(super) struct Fibres {
     /// An id or a full name, such as `e-glass`

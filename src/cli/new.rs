@@ -8,7 +8,6 @@ use std::path::PathBuf;
 /// The starter spec; a test checks it.
 const STARTER: &str = include_str!("starter.toml");
 
-/// Write a commented spec to start from
 #[derive(Debug, Args)]
 pub(super) struct New {
     /// File to write; standard output where it is left out. A file that is there is not overwritten

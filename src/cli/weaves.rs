@@ -16,7 +16,6 @@ enum Format {
     Json,
 }
 
-/// List the named weaves, or draw one on point paper
 #[derive(Debug, Args)]
 pub(super) struct Weaves {
     /// A name or words, such as `satin-8` or `twill 2/2 z`

@@ -17,7 +17,7 @@
 //!
 //! # What is here
 //!
-//! - [`library`]: the built-in records. A [`Record`] holds every figure with its range, its sources, and whether it was read,
+//! - [`library()`]: the built-in records. A [`Record`] holds every figure with its range, its sources, and whether it was read,
 //!   derived, or comes from memory ([`Figure`], [`How`]). Grades are generic. The files stand in `data/`.
 //! - [`sources`] and [`general`]: the table of sources, and factors that hold for whole classes of fibre.
 //! - [`Fibre`]: plain numbers in mm, N, MPa, made from a record, from a record with [`FibreOverrides`], or from given values.

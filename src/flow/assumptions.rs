@@ -5,7 +5,7 @@ use crate::fibre::FigureName;
 use crate::quantity::{plain, significant};
 use crate::spec::{DEFAULT_TENSION_N_TEX, Spec, System};
 use crate::weave::{Closure, Cloth, ClothYarn};
-use crate::yarn::{Basis, DEFAULT_WIDTH_SHARE, Followed, Yarn};
+use crate::yarn::{Basis, DEFAULT_PACKING, DEFAULT_WIDTH_SHARE, Followed, Yarn};
 
 /// Every default and simplification behind this outcome, in a stable order.
 pub fn assumptions(spec: &Spec, cloth: &Cloth) -> Vec<String> {
@@ -20,6 +20,12 @@ pub fn assumptions(spec: &Spec, cloth: &Cloth) -> Vec<String> {
         said.push(format!(
             "measured cloth thickness met by yarns {} times as thick as they would lie",
             significant(factor, 3)
+        ));
+    }
+    if let Some(packing) = cloth.raised_packing {
+        said.push(format!(
+            "the assumed packing of {DEFAULT_PACKING} leaves these yarns no room to interlace; it is raised to {}, the least that does: measure width and thickness",
+            significant(packing, 3)
         ));
     }
     let mut fibres: Vec<&str> = Vec::new();

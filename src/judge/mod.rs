@@ -1,7 +1,7 @@
 //! The one room that judges: a bend, a yarn and its fibre in, a finding out.
 //!
 //! It knows no geometry of cloth or machine: it sees radii, turns, pulls and temperatures in a
-//! [`Bend`](crate::bend::Bend).
+//! [`Bend`].
 //!
 //! | file | what is in it |
 //! | --- | --- |

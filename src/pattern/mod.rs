@@ -19,7 +19,7 @@
 //! - `family`: plain, ribs, hopsack, twills, satins built from their numbers;
 //! - `words`, `notation`: the same asked for in a weaver's words ([`parse_notation`]);
 //! - `library`, `weave_file`, `builtin`: named weaves, one TOML each, in `weaves/` and in a user's own folder ([`Weaves`]);
-//! - `draw`: point paper for the terminal ([`draw`]).
+//! - `draw`: point paper for the terminal ([`draw()`]).
 //!
 //! Left out: leno (ends that change their order), lappet and pile loops, which no matrix of this kind can hold. Several
 //! layers bound together are one matrix and are legal; several layers not bound are refused by whoever needs one cloth.

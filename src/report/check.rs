@@ -72,6 +72,8 @@ pub struct ClothReport {
     pub crimp_mismatch: Option<f64>,
     #[serde(skip_serializing_if = "Option::is_none")]
     pub thickness_factor: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub raised_packing: Option<f64>,
     pub warp: SystemReport,
     pub weft: SystemReport,
     pub thickness_mm: f64,
@@ -276,6 +278,7 @@ impl ClothReport {
             },
             crimp_mismatch: cloth.closed.mismatch.map(rounded),
             thickness_factor: cloth.thickness_factor.map(rounded),
+            raised_packing: cloth.raised_packing.map(rounded),
             warp: SystemReport::new(&weave.warp.yarn, &cloth.warp),
             weft: SystemReport::new(&weave.weft.yarn, &cloth.weft),
             thickness_mm: rounded(cloth.thickness_mm),

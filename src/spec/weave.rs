@@ -7,7 +7,7 @@ use super::yarn::SpecYarn;
 use crate::pattern::{Interlacing, Pattern, PatternError, Weaves};
 use crate::quantity::Dimension;
 use crate::span::Span;
-use crate::yarn::{LayError, Vary, Yarn};
+use crate::yarn::{CLOSEST_PACKING, LayError, Vary, Yarn};
 use std::sync::Arc;
 
 /// Mean tension where none is given, N/tex (common practice, no source).
@@ -210,7 +210,12 @@ fn read_system(weave: &Table<'_>, which: &'static str, yarns: &[SpecYarn]) -> Op
     let (found, sett) = (found?, sett?);
     let yarn = Arc::clone(found.yarn.as_ref()?);
     // Without neighbours to lie beside there is no cloth: found here, where the sett can be pointed at.
-    if let Err(error) = yarn.laid_at(1.0 / sett.value, Vary::default()) {
+    // An assumed packing may give way up to the closest.
+    let closest = Vary {
+        packing: CLOSEST_PACKING,
+        ..Vary::default()
+    };
+    if let Err(error) = yarn.laid_at(1.0 / sett.value, closest) {
         table.push(lay_problem(&error, found, &yarn, &sett));
         return None;
     }
@@ -276,7 +281,7 @@ fn lay_problem(error: &LayError, spec: &SpecYarn, yarn: &Yarn, sett: &Placed<f64
         / if yarn.is_monofilament() {
             1.0
         } else {
-            yarn.assumed_packing()
+            yarn.form.packing.unwrap_or(CLOSEST_PACKING)
         };
     let largest_per_cm = 10.0 / (4.0 * area / std::f64::consts::PI).sqrt();
     Problem::at(span, format!("yarn `{}`: {error}", yarn.name), "too close").help(format!(

@@ -10,6 +10,7 @@
 //! A measured cloth thickness scales the thicknesses of both yarns by one factor until the larger of wave
 //! height + thickness meets it. Left out: nesting, hairiness, flattening by a gauge's pressure.
 
+use super::dense;
 use super::share::{Closed, Closure, share};
 use super::wave::Wave;
 use crate::pattern::{FloatLength, Side, SystemInterlacing};
@@ -71,6 +72,8 @@ pub struct Cloth {
     pub fibre_volume_fraction: f64,
     /// Factor by which a measured cloth thickness scaled the yarns' thicknesses.
     pub thickness_factor: Option<f64>,
+    /// Packing to which assumed packings had to be raised before the yarns could interlace.
+    pub raised_packing: Option<f64>,
 }
 
 /// Why there is no cloth.
@@ -120,11 +123,11 @@ impl Cloth {
     /// Where the yarns do not fit, or no scaling meets the measured thickness.
     pub fn build(weave: &Weave, flatness: f64) -> Result<Self, ClothError> {
         let Some(asked_mm) = weave.thickness_mm else {
-            return Self::build_roomy(weave, flatness, 1.0);
+            return dense::build(weave, flatness);
         };
         // Thicker yarns make a thicker cloth, up to the first that jams or stands on edge; thinner ones are
         // packed closer, down to the closest packing.
-        let thickness_at = |factor: f64| Self::build_roomy(weave, flatness, factor);
+        let thickness_at = |factor: f64| dense::build_scaled(weave, flatness, factor);
         let (low, high) = factor_range(|factor| thickness_at(factor).is_ok())
             .ok_or_else(|| thickness_at(1.0).err().unwrap_or(ClothError::Jammed))?;
         let excess = |factor: f64| thickness_at(factor).map_or(0.0, |c| c.thickness_mm) - asked_mm;
@@ -143,52 +146,8 @@ impl Cloth {
         })
     }
 
-    /// Yarns that touch their neighbours leave no way between; such squeezed yarns give way until there is one.
-    fn build_roomy(weave: &Weave, flatness: f64, thickness: f64) -> Result<Self, ClothError> {
-        let with = |room: f64| {
-            Self::build_varied(
-                weave,
-                Vary {
-                    flatness,
-                    thickness,
-                    room,
-                },
-            )
-        };
-        let whole = with(1.0);
-        let (warp, weft) = (&weave.warp, &weave.weft);
-        let squeezed = |system: &System| {
-            let vary = Vary {
-                flatness,
-                thickness,
-                room: 1.0,
-            };
-            system
-                .yarn
-                .laid_at(system.spacing_mm(), vary)
-                .is_ok_and(|laid| laid.squeezed)
-        };
-        if whole != Err(ClothError::Jammed) || !(squeezed(warp) || squeezed(weft)) {
-            return whole;
-        }
-        let mut passes = (1..=10)
-            .map(|step| 1.0 - 0.02 * f64::from(step))
-            .find(|room| with(*room).is_ok());
-        if let Some(room) = &mut passes {
-            let mut jams = *room + 0.02;
-            while jams - *room > 1e-6 {
-                let middle = 0.5 * (jams + *room);
-                if with(middle).is_ok() {
-                    *room = middle
-                } else {
-                    jams = middle
-                }
-            }
-        }
-        passes.map_or(whole, with)
-    }
-
-    fn build_varied(weave: &Weave, vary: Vary) -> Result<Self, ClothError> {
+    /// The cloth with these outlines and no others.
+    pub(super) fn build_varied(weave: &Weave, vary: Vary) -> Result<Self, ClothError> {
         let lay = |system: &System, name: &'static str| {
             system
                 .yarn
@@ -241,6 +200,7 @@ impl Cloth {
             warp,
             weft,
             thickness_factor: None,
+            raised_packing: None,
         }
     }
 }

@@ -33,6 +33,8 @@ pub struct Vary {
     pub thickness: f64,
     /// Share of the spacing that a squeezed yarn may take.
     pub room: f64,
+    /// Packing where the spec gives none and no two sizes.
+    pub packing: f64,
 }
 
 impl Default for Vary {
@@ -41,6 +43,7 @@ impl Default for Vary {
             flatness: 1.0,
             thickness: 1.0,
             room: 1.0,
+            packing: DEFAULT_PACKING,
         }
     }
 }
@@ -125,7 +128,9 @@ impl Yarn {
     /// The shape given, or the default for the yarn's twist.
     pub fn shape(&self) -> Shape {
         self.form.shape.unwrap_or_else(|| {
-            let round_radius = (self.fibre_area_mm2() / (PI * self.assumed_packing())).sqrt();
+            let round_radius = (self.fibre_area_mm2()
+                / (PI * self.form.packing.unwrap_or(DEFAULT_PACKING)))
+            .sqrt();
             let surface = helix_angle_rad(round_radius, self.twist_per_mm);
             if self.is_monofilament() || surface.to_degrees() > ROUND_HELIX_DEG {
                 Shape::Round
@@ -133,11 +138,6 @@ impl Yarn {
                 Shape::Lens
             }
         })
-    }
-
-    /// Packing given, or assumed.
-    pub fn assumed_packing(&self) -> f64 {
-        self.form.packing.unwrap_or(DEFAULT_PACKING)
     }
 
     /// Lays the yarn beside its neighbours, `spacing_mm` apart.
@@ -148,7 +148,7 @@ impl Yarn {
         if self.is_monofilament() {
             return self.laid_solid(spacing_mm);
         }
-        let (outline, basis) = self.free_outline(spacing_mm)?;
+        let (outline, basis) = self.free_outline(spacing_mm, vary.packing)?;
         let area_mm2 = outline.area_mm2();
         let varied = match basis {
             Basis::OneSize | Basis::Assumed if vary.flatness != 1.0 => {
@@ -179,7 +179,8 @@ impl Yarn {
             spacing_mm,
         })?;
         let packing = self.fibre_area_mm2() / outline.area_mm2();
-        if packing > CLOSEST_PACKING {
+        // The closest packing itself may come back a hair above it.
+        if packing > CLOSEST_PACKING * (1.0 + 1e-9) {
             return Err(LayError::TooDense {
                 fibre_mm2: self.fibre_area_mm2(),
                 area_mm2: outline.area_mm2(),
@@ -212,9 +213,13 @@ impl Yarn {
     }
 
     /// The outline before any squeeze: from the sizes given, the packing and the spacing.
-    fn free_outline(&self, spacing_mm: f64) -> Result<(Outline, Basis), LayError> {
+    fn free_outline(
+        &self,
+        spacing_mm: f64,
+        assumed_packing: f64,
+    ) -> Result<(Outline, Basis), LayError> {
         let shape = self.shape();
-        let packing = self.assumed_packing();
+        let packing = self.form.packing.unwrap_or(assumed_packing);
         let area_mm2 = self.fibre_area_mm2() / packing;
         let on_edge = || LayError::OnEdge {
             area_mm2,
