@@ -20,10 +20,16 @@ fn the_readme_has_every_key() {
     let mut rows = String::new();
     for (table, keys) in TABLES {
         for key in *keys {
-            rows += &format!("| {table} | `{}` | {} | {} | {} |\n", key.name, key.takes, key.default, key.says);
+            rows += &format!(
+                "| {table} | `{}` | {} | {} | {} |\n",
+                key.name, key.takes, key.default, key.says
+            );
         }
     }
-    assert!(readme.contains(&rows), "the README's table of keys should be:\n{rows}");
+    assert!(
+        readme.contains(&rows),
+        "the README's table of keys should be:\n{rows}"
+    );
 }
 
 /// The worked example is the real output.
@@ -31,14 +37,21 @@ fn the_readme_has_every_key() {
 fn the_readme_shows_real_output() {
     let output = lissom(&["check", "examples/radome-skin.toml"], "");
     let shown = String::from_utf8(output.stdout).unwrap();
-    assert!(read("README.md").contains(&format!("```text\n{shown}```")), "should be:\n{shown}");
+    assert!(
+        read("README.md").contains(&format!("```text\n{shown}```")),
+        "should be:\n{shown}"
+    );
 }
 
 #[test]
 fn the_readme_names_every_example_code_and_command() {
     let readme = read("README.md");
     for code in Code::ALL {
-        assert!(readme.contains(&format!("`{}`", code.word())), "{}", code.word());
+        assert!(
+            readme.contains(&format!("`{}`", code.word())),
+            "{}",
+            code.word()
+        );
     }
     for command in ["check", "fibres", "weaves", "new", "explain"] {
         assert!(readme.contains(&format!("`lissom {command}")), "{command}");

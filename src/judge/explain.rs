@@ -1,6 +1,6 @@
 //! The method behind every code, for `lissom explain` and the documents.
 
-use super::finding::Code;
+use super::code::Code;
 
 /// What a code means.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]

@@ -1,5 +1,6 @@
-//! What a judgement says: state, limit, code, and the numbers behind them.
+//! What a judgement says: the limits ranked, and the finding with the numbers behind it.
 
+use super::code::{Code, Limit, State};
 use super::filament::Filament;
 use super::limits::Check;
 use crate::bend::{Bend, Stage, SystemName};
@@ -7,151 +8,6 @@ use crate::span::Span;
 use crate::yarn::Yarn;
 use std::borrow::Cow;
 use std::sync::Arc;
-
-/// What becomes of the fibre, from best to worst.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, PartialOrd, Ord, Hash)]
-pub enum State {
-    /// The reserve is at least the one required.
-    Holds,
-    /// The reserve is at least 1 and below the one required.
-    Close,
-    /// Kink bands form; damaged, not broken.
-    Kinks,
-    /// The bend stays.
-    Yields,
-    /// The yarn is hotter than its fibre stands.
-    Overheats,
-    /// It breaks.
-    Breaks,
-}
-
-impl State {
-    /// The word in reports.
-    pub fn word(self) -> &'static str {
-        match self {
-            Self::Holds => "holds",
-            Self::Close => "close",
-            Self::Kinks => "kinks",
-            Self::Yields => "yields",
-            Self::Overheats => "overheats",
-            Self::Breaks => "breaks",
-        }
-    }
-}
-
-/// What limits a bend.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
-pub enum Limit {
-    /// Fracture on the tension side.
-    Fracture,
-    /// Fracture on the compressed side.
-    Compression,
-    /// Onset of kink bands.
-    Kink,
-    /// Compressive strain of a kinked fibre.
-    KinkStrain,
-    /// Yield.
-    Yield,
-    /// Strain at break.
-    Strain,
-    /// Temperature in air.
-    Temperature,
-}
-
-impl Limit {
-    /// The word in reports.
-    pub fn word(self) -> &'static str {
-        match self {
-            Self::Fracture => "fracture",
-            Self::Compression => "compression",
-            Self::Kink | Self::KinkStrain => "kink",
-            Self::Yield => "yield",
-            Self::Strain => "strain",
-            Self::Temperature => "temperature",
-        }
-    }
-
-    /// Whether its figures are strains rather than stresses.
-    pub fn is_strain(self) -> bool {
-        matches!(self, Self::Strain | Self::KinkStrain)
-    }
-
-    /// The state below a reserve of 1.
-    fn failed(self) -> State {
-        match self {
-            Self::Fracture | Self::Compression | Self::Strain => State::Breaks,
-            Self::Kink | Self::KinkStrain => State::Kinks,
-            Self::Yield => State::Yields,
-            Self::Temperature => State::Overheats,
-        }
-    }
-
-    /// The stable code of the method.
-    pub fn code(self) -> Code {
-        match self {
-            Self::Fracture => Code::TensionFracture,
-            Self::Compression => Code::CompressionFracture,
-            Self::Kink => Code::KinkOnset,
-            Self::KinkStrain => Code::KinkStrain,
-            Self::Yield => Code::YieldOnset,
-            Self::Strain => Code::StrainAtBreak,
-            Self::Temperature => Code::OverTemperature,
-        }
-    }
-}
-
-/// The stable name of the method behind a finding; `lissom explain CODE` tells it.
-#[derive(Debug, Clone, Copy, PartialEq, Eq, Hash)]
-pub enum Code {
-    /// No limit applies: neither bent nor pulled.
-    NoLimit,
-    /// Fracture on the tension side.
-    TensionFracture,
-    /// Fracture on the compressed side.
-    CompressionFracture,
-    /// Onset of kink bands.
-    KinkOnset,
-    /// Compressive strain of a kinked fibre over 3 %.
-    KinkStrain,
-    /// Onset of yield.
-    YieldOnset,
-    /// Strain at break of a ductile fibre.
-    StrainAtBreak,
-    /// Hotter than the fibre stands.
-    OverTemperature,
-    /// Yarns that cannot interlace.
-    Jammed,
-}
-
-impl Code {
-    /// Every code, in the order of the documents.
-    pub const ALL: [Self; 9] = [
-        Self::TensionFracture,
-        Self::CompressionFracture,
-        Self::KinkOnset,
-        Self::KinkStrain,
-        Self::YieldOnset,
-        Self::StrainAtBreak,
-        Self::OverTemperature,
-        Self::NoLimit,
-        Self::Jammed,
-    ];
-
-    /// The code as printed.
-    pub fn word(self) -> &'static str {
-        match self {
-            Self::NoLimit => "no-limit",
-            Self::TensionFracture => "tension-fracture",
-            Self::CompressionFracture => "compression-fracture",
-            Self::KinkOnset => "kink-onset",
-            Self::KinkStrain => "kink-strain",
-            Self::YieldOnset => "yield-onset",
-            Self::StrainAtBreak => "strain-at-break",
-            Self::OverTemperature => "over-temperature",
-            Self::Jammed => "jammed",
-        }
-    }
-}
 
 /// All limits of one filament, and the one that governs.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -187,10 +43,12 @@ impl Judged {
         Self { checks, state }
     }
 
-    /// Sorts judgements from best to worst.
-    pub(super) fn rank(&self) -> (State, std::cmp::Reverse<Ordered>) {
-        let reserve = self.checks[0].map_or(f64::INFINITY, |check| check.reserve());
-        (self.state, std::cmp::Reverse(Ordered(reserve)))
+    /// Sorts judgements from best to worst: state, then crushed past the kink strain, then smallest reserve.
+    pub(super) fn rank(&self) -> (State, bool, std::cmp::Reverse<Ordered>) {
+        let leading = self.checks[0];
+        let crushed = leading.is_some_and(|check| check.limit == Limit::KinkStrain);
+        let reserve = leading.map_or(f64::INFINITY, |check| check.reserve());
+        (self.state, crushed, std::cmp::Reverse(Ordered(reserve)))
     }
 }
 

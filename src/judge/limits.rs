@@ -10,8 +10,8 @@
 //! s_c is the figure that holds in bending (a uniaxial one counts twice, see `fibre`). Where nothing is
 //! compressed (s_b <= s_a) there is no compression limit.
 
+use super::code::Limit;
 use super::filament::Filament;
-use super::finding::Limit;
 use super::kinked::kinked_section;
 use crate::fibre::Mechanism;
 use crate::yarn::Yarn;

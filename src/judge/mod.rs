@@ -8,18 +8,23 @@
 //! | `filament` | how each filament through the yarn's thickness is bent and pulled at a bend |
 //! | `limits` | the limits of brittle, fibrillar and ductile fibres under pull and bending |
 //! | `kinked` | the kinked section: elastic in tension, yielding in compression |
-//! | `finding` | states, limits, codes and the finding itself |
+//! | `code` | states, limits, and the stable codes of their methods |
+//! | `finding` | the limits ranked, and the finding itself |
 //! | `explain` | the method behind every code |
 
+mod code;
 mod explain;
 mod filament;
 mod finding;
 mod kinked;
 mod limits;
+#[cfg(test)]
+mod tests;
 
+pub use code::{Code, Limit, State};
 pub use explain::{Explanation, explain};
 pub use filament::{Filament, Position, filaments};
-pub use finding::{Code, Finding, Judged, Limit, State};
+pub use finding::{Finding, Judged};
 pub use kinked::{Section, break_bend, kinked_section};
 pub use limits::{Check, KINK_STRAIN_LIMIT, checks};
 

@@ -97,3 +97,60 @@ fn station(passage: &Passage, weave: &Weave, cloth: &Cloth, pull_n: f64) -> Bend
         heated_by: passage.temperature_span.clone(),
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn station(friction: f64, turn_deg: f64, tension_n: Option<f64>) -> Passage {
+        Passage {
+            name: "station".into(),
+            system: SystemName::Warp,
+            stage: Stage::Weaving,
+            radius_mm: 1.0,
+            turn_rad: turn_deg.to_radians(),
+            friction,
+            friction_given: true,
+            tension_n,
+            temperature_c: None,
+            radius_span: 0..0,
+            temperature_span: None,
+        }
+    }
+
+    /// Hand calculation: the fell's 1 N is behind the last station; each before it sees less by exp(-mu theta).
+    #[test]
+    fn pulls_fall_backwards_from_the_fell() {
+        let stations = [
+            station(0.2, 90.0, None),
+            station(0.3, 45.0, None),
+            station(0.25, 180.0, None),
+        ];
+        let route: Vec<&Passage> = stations.iter().collect();
+        let behind = chain(&route, 1.0);
+        let factor = |mu: f64, deg: f64| (mu * deg.to_radians()).exp();
+        assert!((behind[2] - 1.0).abs() < 1e-12);
+        assert!((behind[1] - 1.0 / factor(0.25, 180.0)).abs() < 1e-12);
+        assert!((behind[0] - 1.0 / factor(0.25, 180.0) / factor(0.3, 45.0)).abs() < 1e-12);
+    }
+
+    #[test]
+    fn a_given_tension_restarts_the_chain_forwards() {
+        let stations = [
+            station(0.2, 90.0, None),
+            station(0.3, 45.0, Some(0.4)),
+            station(0.25, 180.0, None),
+            station(0.2, 60.0, Some(0.1)),
+        ];
+        let route: Vec<&Passage> = stations.iter().collect();
+        let behind = chain(&route, 1.0);
+        let factor = |mu: f64, deg: f64| (mu * deg.to_radians()).exp();
+        assert!(
+            (behind[0] - 1.0).abs() < 1e-12,
+            "before a restart the chain ends at the fell's pull"
+        );
+        assert!((behind[1] - 0.4 * factor(0.3, 45.0)).abs() < 1e-12);
+        assert!((behind[2] - behind[1] * factor(0.25, 180.0)).abs() < 1e-12);
+        assert!((behind[3] - 0.1 * factor(0.2, 60.0)).abs() < 1e-12);
+    }
+}

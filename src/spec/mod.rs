@@ -132,3 +132,117 @@ fn read_require(spec: &Table<'_>) -> Require {
             .unwrap_or(false),
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::bend::{Stage, SystemName};
+    use crate::yarn::Shape;
+
+    const FULL: &str = r##"
+name = "Full"
+reference = "X-1"
+[fibre.own]
+like = "alumina"
+filament_diameter = "12 um"
+max_temperature = "1112 degF"
+[yarn.face]
+fibre = "OWN"
+linear_density = "1800 den"
+filaments = 420
+twist = "60 /m S"
+shape = "racetrack"
+width = "20 mil"
+packing = 0.7
+binding = 0.25
+bending_rigidity = "0.05 N mm2"
+tension_spread = 1.5
+[yarn.back]
+fibre = "PAN carbon, standard modulus"
+linear_density = "198 tex"
+[weave]
+rows = ["#.", ".#"]
+thickness = "0.9 mm"
+rest = "20 %"
+peak = 1.5
+warp = { yarn = "face", sett = "25.4 /in", tension = "2.5 cN/tex", crimp = "2.1 %" }
+weft = { yarn = "back", sett = "5 /cm", tension = "40 cN" }
+[[passage]]
+yarn = "weft"
+name = "eyelet"
+stage = "winding"
+radius = "0 mm"
+turn = "90 deg"
+tension = "20 cN"
+temperature = "250 degC"
+[[tool]]
+name = "corner"
+radius = "6 mm"
+bend_axis = "30 deg"
+[require]
+reserve = 1.5
+kinks = "refuse"
+"##;
+
+    #[test]
+    fn every_value_arrives_in_internal_units_with_its_place() {
+        let spec = Spec::read(SourceText::new("full", FULL), &Weaves::builtin()).unwrap();
+        assert_eq!(
+            (spec.name.as_str(), spec.reference.as_deref()),
+            ("Full", Some("X-1"))
+        );
+        let near = |a: f64, b: f64| assert!((a - b).abs() < 1e-9, "{a} {b}");
+        let face = &spec.weave.warp.yarn;
+        assert_eq!(
+            (face.name.as_str(), face.fibre.id.as_str()),
+            ("face", "own")
+        );
+        near(face.count.linear_density_tex, 200.0);
+        assert_eq!(face.count.filaments, 420);
+        near(face.twist_per_mm, 0.06);
+        assert_eq!(face.form.shape, Some(Shape::Racetrack));
+        near(face.form.width_mm.unwrap(), 0.508);
+        near(face.binding, 0.25);
+        near(face.bending_rigidity_n_mm2.unwrap(), 0.05);
+        near(face.tension_spread, 1.5);
+        near(face.fibre.max_temp_c.unwrap(), 600.0);
+        assert_eq!(spec.weave.weft.yarn.fibre.id, "carbon-pan-sm");
+        near(spec.weave.warp.sett_per_mm, 1.0);
+        near(spec.weave.warp.tension_n, 0.025 * 200.0);
+        near(spec.weave.warp.crimp.unwrap(), 0.021);
+        near(spec.weave.weft.tension_n, 0.4);
+        near(spec.weave.thickness_mm.unwrap(), 0.9);
+        near(spec.weave.rest, 0.2);
+        near(spec.weave.peak, 1.5);
+        let passage = &spec.passages[0];
+        assert_eq!(
+            (passage.system, passage.stage),
+            (SystemName::Weft, Stage::Winding)
+        );
+        near(passage.turn_rad, std::f64::consts::FRAC_PI_2);
+        near(passage.tension_n.unwrap(), 0.2);
+        near(passage.temperature_c.unwrap(), 250.0);
+        assert!(!passage.friction_given && passage.friction > 0.0);
+        near(spec.tools[0].bend_axis_rad.unwrap(), 30f64.to_radians());
+        assert!(spec.require.refuse_kinks);
+        near(spec.require.reserve, 1.5);
+        assert_eq!(&spec.source.text[passage.radius_span.clone()], "\"0 mm\"");
+        assert_eq!(
+            &spec.source.text[spec.weave.warp.sett_span.clone()],
+            "\"25.4 /in\""
+        );
+        assert!(spec.source.text[spec.weave.weft.span.clone()].starts_with("{ yarn = \"back\""));
+    }
+
+    #[test]
+    fn what_is_left_out_takes_the_default_of_the_trade() {
+        let text = "name = \"n\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"68 tex\"\n[weave]\n\
+            pattern = \"plain\"\nwarp = { yarn = \"y\", sett = \"10 /cm\" }\nweft = { yarn = \"y\", sett = \"10 /cm\" }\n";
+        let spec = Spec::read(SourceText::new("n", text), &Weaves::builtin()).unwrap();
+        let weave = &spec.weave;
+        assert!((weave.warp.tension_n - 0.68).abs() < 1e-12 && !weave.warp.tension_given);
+        assert_eq!((weave.rest, weave.peak), (DEFAULT_REST, DEFAULT_PEAK));
+        assert_eq!(spec.require.reserve, DEFAULT_RESERVE);
+        assert!(spec.passages.is_empty() && spec.tools.is_empty());
+    }
+}

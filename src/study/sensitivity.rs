@@ -64,3 +64,53 @@ fn toward(spec: &Spec, flatness_factor: f64) -> Vec<Variation> {
         vec![asked, at(told)]
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::pattern::Weaves;
+    use crate::span::SourceText;
+
+    fn of(yarn: &str, sett: &str) -> Vec<Variation> {
+        let text = format!(
+            "name = \"t\"\n[yarn.y]\nfibre = \"e-glass\"\n{yarn}\n[weave]\npattern = \"plain\"\n\
+             warp = {{ yarn = \"y\", sett = \"{sett}\" }}\nweft = {{ yarn = \"y\", sett = \"{sett}\" }}\n"
+        );
+        let spec = Spec::read(SourceText::new("t", text), &Weaves::builtin()).unwrap();
+        let outcome = run(&spec, 1.0).unwrap();
+        sensitivity(&spec, &outcome.cloth)
+    }
+
+    #[test]
+    fn rounder_yarns_bend_each_other_more() {
+        let rows = of("linear_density = \"68 tex\"", "12 /cm");
+        let factors: Vec<f64> = rows.iter().map(|row| row.flatness_factor).collect();
+        assert_eq!(factors, FLATNESS_FACTORS);
+        let reserve = |index: usize| rows[index].worst.unwrap().1.unwrap();
+        assert!(reserve(0) < reserve(1), "{rows:?}");
+    }
+
+    #[test]
+    fn measured_and_solid_outlines_are_not_varied() {
+        assert!(
+            of(
+                "linear_density = \"68 tex\"\nwidth = \"0.5 mm\"\nthickness = \"0.12 mm\"",
+                "12 /cm"
+            )
+            .is_empty()
+        );
+        assert!(of("filaments = 1\nfilament_diameter = \"0.1 mm\"", "12 /cm").is_empty());
+    }
+
+    #[test]
+    fn where_there_is_no_cloth_the_nearest_that_is_one_is_told() {
+        // A given packing cannot give way: rounder yarns jam.
+        let rows = of("linear_density = \"68 tex\"\npacking = 0.65", "21.3 /cm");
+        assert_eq!((rows[0].flatness_factor, rows[0].worst), (0.7, None));
+        assert!(
+            rows[1].flatness_factor > 0.7
+                && rows[1].flatness_factor < 1.0
+                && rows[1].worst.is_some()
+        );
+    }
+}

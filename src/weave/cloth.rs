@@ -7,14 +7,11 @@
 //! fibre share = fibre volume per area / thickness
 //! ```
 //!
-//! A measured cloth thickness scales the thicknesses of both yarns by one factor until the larger of wave
-//! height + thickness meets it. Left out: nesting, hairiness, flattening by a gauge's pressure.
+//! Left out: nesting, hairiness, flattening by a gauge's pressure.
 
-use super::dense;
 use super::share::{Closed, Closure, share};
 use super::wave::Wave;
 use crate::pattern::{FloatLength, Side, SystemInterlacing};
-use crate::root::rising_root;
 use crate::spec::{System, Weave};
 use crate::yarn::{Laid, LayError, Vary};
 use thiserror::Error;
@@ -117,35 +114,6 @@ pub fn cover(warp: (f64, f64), weft: (f64, f64)) -> f64 {
 }
 
 impl Cloth {
-    /// The cloth of a weave, its assumed outlines varied by `flatness` (1 for the spec as it stands).
-    ///
-    /// # Errors
-    /// Where the yarns do not fit, or no scaling meets the measured thickness.
-    pub fn build(weave: &Weave, flatness: f64) -> Result<Self, ClothError> {
-        let Some(asked_mm) = weave.thickness_mm else {
-            return dense::build(weave, flatness);
-        };
-        // Thicker yarns make a thicker cloth, up to the first that jams or stands on edge; thinner ones are
-        // packed closer, down to the closest packing.
-        let thickness_at = |factor: f64| dense::build_scaled(weave, flatness, factor);
-        let (low, high) = factor_range(|factor| thickness_at(factor).is_ok())
-            .ok_or_else(|| thickness_at(1.0).err().unwrap_or(ClothError::Jammed))?;
-        let excess = |factor: f64| thickness_at(factor).map_or(0.0, |c| c.thickness_mm) - asked_mm;
-        let factor = rising_root(excess, low, high, 1e-12);
-        let cloth = thickness_at(factor)?;
-        if (cloth.thickness_mm / asked_mm - 1.0).abs() > 1e-6 {
-            return Err(ClothError::Thickness {
-                asked_mm,
-                least_mm: thickness_at(low)?.thickness_mm,
-                most_mm: thickness_at(high)?.thickness_mm,
-            });
-        }
-        Ok(Self {
-            thickness_factor: Some(factor),
-            ..cloth
-        })
-    }
-
     /// The cloth with these outlines and no others.
     pub(super) fn build_varied(weave: &Weave, vary: Vary) -> Result<Self, ClothError> {
         let lay = |system: &System, name: &'static str| {
@@ -247,29 +215,6 @@ fn closure(weave: &Weave) -> Closure {
         }
         (None, None) => Closure::EqualHeights,
     }
-}
-
-/// The range of thickness factors around a good one in which a cloth exists, each end within 1e-9.
-fn factor_range(exists: impl Fn(f64) -> bool) -> Option<(f64, f64)> {
-    // A good factor near 1 to start from: yarns as they lie, else thinner ones.
-    let good = (0..40)
-        .map(|step| 0.97f64.powi(step))
-        .find(|factor| exists(*factor))?;
-    let edge = |mut inside: f64, mut outside: f64| {
-        while (inside - outside).abs() > 1e-9 {
-            let middle = 0.5 * (inside + outside);
-            if exists(middle) {
-                inside = middle
-            } else {
-                outside = middle
-            }
-        }
-        inside
-    };
-    let above = (1..20)
-        .map(|step| good * 1.5f64.powi(step))
-        .find(|factor| !exists(*factor));
-    Some((edge(good, 0.0), edge(good, above.unwrap_or(good))))
 }
 
 #[cfg(test)]

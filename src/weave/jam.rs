@@ -66,3 +66,38 @@ fn largest_factor(fits: impl Fn(f64) -> bool) -> Option<f64> {
     }
     Some(inside)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::pattern::Weaves;
+    use crate::span::SourceText;
+    use crate::spec::Spec;
+
+    /// Round yarns of 0.5 mm in plain weave jam at p = sqrt(3)/2 D = 0.866 mm, both setts alike (Peirce).
+    #[test]
+    fn the_largest_sett_is_that_of_peirce_to_a_per_cent_and_on_the_safe_side() {
+        // 0.5 mm round at packing 0.65 and 2.54 g/cm3: 324.17 tex.
+        let text = "name = \"t\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"324.17 tex\"\nshape = \"round\"\n\
+            packing = 0.65\n[weave]\npattern = \"plain\"\nwarp = { yarn = \"y\", sett = \"14 /cm\" }\n\
+            weft = { yarn = \"y\", sett = \"14 /cm\" }\n";
+        let weave = Spec::read(SourceText::new("t", text), &Weaves::builtin())
+            .unwrap()
+            .weave;
+        let why = Cloth::build(&weave, 1.0).unwrap_err();
+        let fits = Jammed::new(&weave, why).fits;
+        let (ends, picks) = fits.both_per_mm.unwrap();
+        let peirce = 1.0 / 0.75f64.sqrt();
+        assert_eq!(ends, picks);
+        assert!(ends <= peirce && ends > 0.99 * peirce, "{ends} {peirce}");
+        // At 14 picks/cm, p2/D = 0.714: sqrt(1 - (p1/D)²) = 1 - 0.7 gives p1 = 0.954 mm.
+        let p2: f64 = 1.0 / 1.4;
+        let p1 = (1.0 - (1.0 - (1.0 - p2 * p2).sqrt()).powi(2)).sqrt();
+        let alone = fits.warp_per_mm.unwrap();
+        assert!(
+            alone <= 1.0 / p1 && alone > 0.99 / p1,
+            "{alone} {}",
+            1.0 / p1
+        );
+    }
+}

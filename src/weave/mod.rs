@@ -4,14 +4,14 @@
 //! | --- | --- |
 //! | `wave` | one system's wave: crimp and slope for a given height, from the pattern and the taut path |
 //! | `share` | how warp and weft share the height: measured crimp, tensions, or equal heights |
+//! | `build` | from a weave to its cloth: measured thickness met, yarns that give way in dense cloth |
 //! | `cloth` | the cloth and its numbers: crimp, thickness, mass, cover, fibre volume |
-//! | `dense` | how yarns give way in dense cloth where the spec did not fix them |
 //! | `jam` | the largest sett that fits where the yarns asked for cannot interlace |
 //! | `crowns` | the bends of the cloth's yarns |
 
+mod build;
 mod cloth;
 mod crowns;
-mod dense;
 mod jam;
 mod share;
 mod wave;

@@ -119,3 +119,75 @@ pub fn share(warp: &Wave, weft: &Wave, whole_mm: f64, by: Closure) -> Option<Sha
         },
     })
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::pattern::parse_notation;
+    use crate::yarn::{Outline, Shape};
+
+    fn waves(pattern: &str) -> (Wave, Wave, f64) {
+        let woven = parse_notation(pattern).unwrap().interlacing();
+        let warp = Outline::new(Shape::Lens, 0.5, 0.12).unwrap();
+        let weft = Outline::new(Shape::Ellipse, 0.7, 0.15).unwrap();
+        (
+            Wave::new(&warp, &weft, 0.95, &woven.warp),
+            Wave::new(&weft, &warp, 0.70, &woven.weft),
+            0.27,
+        )
+    }
+
+    /// Balance of forces is least energy: T1 L1 + T2 L2 over the repeat, here by trying heights on either side.
+    #[test]
+    fn given_tensions_take_the_least_energy() {
+        for pattern in ["plain", "warp rib 2/2", "weft rib 3/1", "satin 5"] {
+            let (warp, weft, whole) = waves(pattern);
+            let (t1, t2) = (0.7, 0.45);
+            let shared = share(&warp, &weft, whole, Closure::Tensions(t1, t2)).unwrap();
+            assert!(!shared.closed.jam_limited, "{pattern}");
+            // Length of one end over its repeat: (1 + crimp) times picks; ends stand 0.70 apart, picks 0.95, so
+            // per area of cloth the energies are weighted by 1/0.70 and 1/0.95.
+            let energy = |h: f64| {
+                t1 * (1.0 + warp.crimp(h).unwrap()) / 0.70
+                    + t2 * (1.0 + weft.crimp(whole - h).unwrap()) / 0.95
+            };
+            let least = energy(shared.warp_mm);
+            for step in [-0.01, -1e-3, 1e-3, 0.01] {
+                assert!(
+                    energy(shared.warp_mm + step * whole) > least,
+                    "{pattern} {step}"
+                );
+            }
+        }
+    }
+
+    #[test]
+    fn measured_crimp_is_met_and_two_of_them_are_held_against_each_other() {
+        let (warp, weft, whole) = waves("plain");
+        let shared = share(&warp, &weft, whole, Closure::WarpCrimp(0.01)).unwrap();
+        assert!((warp.crimp(shared.warp_mm).unwrap() - 0.01).abs() < 1e-9);
+        let other = share(&warp, &weft, whole, Closure::WeftCrimp(0.02)).unwrap();
+        assert!((weft.crimp(other.weft_mm).unwrap() - 0.02).abs() < 1e-9);
+        // Two crimps of one and the same cloth agree.
+        let same = weft.crimp(shared.weft_mm).unwrap();
+        let both = share(&warp, &weft, whole, Closure::BothCrimps(0.01, same)).unwrap();
+        assert!((both.warp_mm - shared.warp_mm).abs() < 1e-6);
+        assert!(both.closed.mismatch.unwrap().abs() < 1e-6);
+        // Twice the crimp in the weft asks for more height than there is.
+        let more = share(&warp, &weft, whole, Closure::BothCrimps(0.01, 2.0 * same)).unwrap();
+        assert!(more.closed.mismatch.unwrap() > 0.1);
+        assert!((more.warp_mm + more.weft_mm - whole).abs() < 1e-12);
+    }
+
+    #[test]
+    fn a_split_out_of_reach_is_the_nearest_and_says_so() {
+        let (warp, weft, whole) = waves("plain");
+        let shared = share(&warp, &weft, whole, Closure::WarpCrimp(0.9)).unwrap();
+        assert!(shared.closed.jam_limited);
+        let straight = share(&warp, &weft, whole, Closure::WarpCrimp(0.0)).unwrap();
+        assert_eq!(
+            (straight.warp_mm, straight.closed.jam_limited),
+            (0.0, false)
+        );
+    }
+}

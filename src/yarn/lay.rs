@@ -5,7 +5,7 @@
 //! leaves the trade's default: a lens as wide as 0.9 of the spacing, packing 0.65. A single filament is a
 //! solid circle; a yarn whose surface fibres lie over 15 degrees to its axis is round. Where a width comes
 //! out above the spacing the yarn is squeezed to the spacing; where the other system then finds no way between
-//! touching neighbours, to the widest that lets it through (`weave::cloth`).
+//! touching neighbours, to the widest that lets it through (`weave::build`).
 //!
 //! The defaults 0.9, 0.65 and 15 degrees are common practice without a source. 0.9069 (pi/sqrt 12) is the
 //! closest packing of circles, so more than 0.91 is refused.
@@ -270,4 +270,168 @@ fn scaled_thickness(outline: Outline, by: f64) -> Option<Outline> {
         outline.shape()
     };
     Outline::new(shape, outline.width_mm(), by * outline.thickness_mm())
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::fibre::library;
+    use crate::yarn::{Count, CountGiven};
+
+    fn glass(tex: f64, filaments: Option<u32>, twist_per_mm: f64, form: YarnForm) -> Yarn {
+        let fibre = library().find("e-glass").unwrap().fibre().unwrap();
+        let given = CountGiven {
+            linear_density_tex: Some(tex),
+            filaments,
+            filament_diameter_mm: None,
+        };
+        Yarn {
+            name: "y".into(),
+            count: Count::resolve(given, fibre.diameter_mm, fibre.density_g_cm3).unwrap(),
+            fibre,
+            twist_per_mm,
+            twist_direction: None,
+            form,
+            binding: 0.0,
+            bending_rigidity_n_mm2: None,
+            tension_spread: 1.0,
+        }
+    }
+
+    /// 66 tex at 2.54 g/cm3: 0.025 98 mm2 of fibre; at packing 0.65 an outline of 0.039 98 mm2 (hand calculation).
+    #[test]
+    fn without_sizes_it_is_a_lens_of_nine_tenths_of_the_spacing() {
+        let laid = glass(66.0, None, 0.0, YarnForm::default())
+            .laid_at(0.5, Vary::default())
+            .unwrap();
+        assert_eq!(laid.outline.shape(), Shape::Lens);
+        assert!((laid.outline.width_mm() - 0.45).abs() < 1e-12);
+        assert!((laid.outline.area_mm2() - 0.066 / 2.54 / 0.65).abs() < 1e-9);
+        assert!((laid.packing - 0.65).abs() < 1e-9);
+        assert_eq!((laid.basis, laid.squeezed), (Basis::Assumed, false));
+    }
+
+    /// Surface helix over 15 deg: radius 0.1128 mm, so 0.4 turns per mm make 15.8 deg and 0.35 make 13.9 deg.
+    #[test]
+    fn high_twist_and_single_filaments_are_round() {
+        let shape = |twist: f64| glass(66.0, None, twist, YarnForm::default()).shape();
+        assert_eq!(shape(0.35), Shape::Lens);
+        assert_eq!(shape(0.40), Shape::Round);
+        let wire = glass(20.0, Some(1), 0.0, YarnForm::default());
+        let laid = wire.laid_at(0.2, Vary::default()).unwrap();
+        assert_eq!((laid.basis, laid.packing), (Basis::Solid, 1.0));
+        assert_eq!(laid.outline.width_mm(), wire.count.filament_diameter_mm);
+        assert!(matches!(
+            wire.laid_at(0.05, Vary::default()),
+            Err(LayError::SolidTooWide { .. })
+        ));
+    }
+
+    #[test]
+    fn two_sizes_fix_the_packing_and_one_of_a_circle_does() {
+        let form = YarnForm {
+            width_mm: Some(0.40),
+            flatness: Some(3.2),
+            ..YarnForm::default()
+        };
+        let laid = glass(66.0, None, 0.0, form)
+            .laid_at(0.5, Vary::default())
+            .unwrap();
+        assert_eq!(laid.basis, Basis::Measured);
+        assert!((laid.outline.thickness_mm() - 0.125).abs() < 1e-12);
+        assert!((laid.packing * laid.outline.area_mm2() - 0.066 / 2.54).abs() < 1e-12);
+        let round = YarnForm {
+            shape: Some(Shape::Round),
+            width_mm: Some(0.24),
+            ..YarnForm::default()
+        };
+        let laid = glass(66.0, None, 0.0, round)
+            .laid_at(0.5, Vary::default())
+            .unwrap();
+        assert_eq!(
+            (laid.basis, laid.outline.thickness_mm()),
+            (Basis::Measured, 0.24)
+        );
+        let dense = YarnForm {
+            width_mm: Some(0.2),
+            ..round
+        };
+        let refused = glass(
+            66.0,
+            None,
+            0.0,
+            YarnForm {
+                width_mm: Some(0.18),
+                ..dense
+            },
+        );
+        assert!(matches!(
+            refused.laid_at(0.5, Vary::default()),
+            Err(LayError::TooDense { .. })
+        ));
+    }
+
+    #[test]
+    fn wider_than_the_spacing_is_squeezed_at_the_same_area() {
+        let form = YarnForm {
+            width_mm: Some(0.6),
+            ..YarnForm::default()
+        };
+        let yarn = glass(66.0, None, 0.0, form);
+        let laid = yarn.laid_at(0.5, Vary::default()).unwrap();
+        assert!(laid.squeezed);
+        assert!((laid.outline.width_mm() - 0.5).abs() < 1e-12);
+        assert!((laid.packing - 0.65).abs() < 1e-9);
+        assert!(matches!(
+            yarn.laid_at(0.2, Vary::default()),
+            Err(LayError::OnEdge { .. })
+        ));
+    }
+
+    #[test]
+    fn only_assumed_outlines_are_varied_and_keep_their_area() {
+        let flatter = Vary {
+            flatness: 1.2,
+            ..Vary::default()
+        };
+        let yarn = glass(66.0, None, 0.0, YarnForm::default());
+        let (one, other) = (
+            yarn.laid_at(0.5, Vary::default()).unwrap(),
+            yarn.laid_at(0.5, flatter).unwrap(),
+        );
+        assert!((other.outline.flatness() / one.outline.flatness() - 1.2).abs() < 1e-9);
+        assert!((other.outline.area_mm2() / one.outline.area_mm2() - 1.0).abs() < 1e-9);
+        let measured = YarnForm {
+            width_mm: Some(0.4),
+            thickness_mm: Some(0.12),
+            ..YarnForm::default()
+        };
+        let yarn = glass(66.0, None, 0.0, measured);
+        assert_eq!(
+            yarn.laid_at(0.5, Vary::default()),
+            yarn.laid_at(0.5, flatter)
+        );
+    }
+
+    /// A single filament is E pi d^4/64; N free ones N times that; fully bonded at packing 1 would be the solid E I.
+    #[test]
+    fn rigidity_lies_between_free_and_bonded() {
+        let mut yarn = glass(66.0, Some(400), 0.0, YarnForm::default());
+        let laid = yarn.laid_at(0.5, Vary::default()).unwrap();
+        let d = yarn.count.filament_diameter_mm;
+        let one = 73_000.0 * PI * d.powi(4) / 64.0;
+        assert!((yarn.free_rigidity_n_mm2() / (400.0 * one) - 1.0).abs() < 1e-12);
+        let added = 73_000.0 * laid.packing * laid.outline.second_moment_mm4();
+        assert!((yarn.bonded_rigidity_n_mm2(&laid) - 400.0 * one - added).abs() < 1e-9);
+        assert_eq!(yarn.rigidity_n_mm2(&laid), yarn.free_rigidity_n_mm2());
+        yarn.binding = 0.5;
+        let half = yarn.free_rigidity_n_mm2() + 0.25 * added;
+        assert!((yarn.rigidity_n_mm2(&laid) / half - 1.0).abs() < 1e-12);
+        yarn.bending_rigidity_n_mm2 = Some(0.07);
+        assert_eq!(yarn.rigidity_n_mm2(&laid), 0.07);
+        // Pull shared by 400 filaments; the most loaded one carries 1.3 times its share.
+        yarn.tension_spread = 1.3;
+        let stress = 1.3 * 0.8 / (400.0 * PI / 4.0 * d * d);
+        assert!((yarn.axial_stress_mpa(0.8) / stress - 1.0).abs() < 1e-12);
+    }
 }

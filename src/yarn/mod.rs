@@ -2,7 +2,8 @@
 //!
 //! | file | what is in it |
 //! | --- | --- |
-//! | `outline` | the four outlines, their area and polygon, and how a thread touches them |
+//! | `outline` | the four outlines: area, second moment, polygon |
+//! | `touch` | where a tight thread touches an outline and leaves it |
 //! | `count` | linear density, filaments and filament diameter: two fix the third |
 //! | `lay` | a yarn laid at its spacing: width, thickness and packing from what is given |
 //! | `rigidity` | bending rigidity of the yarn and pull on one filament |
@@ -11,13 +12,15 @@ mod count;
 mod lay;
 mod outline;
 mod rigidity;
+mod touch;
 
 pub use count::{Count, CountError, CountGiven, Followed};
 pub use lay::{
     Basis, CLOSEST_PACKING, DEFAULT_PACKING, DEFAULT_WIDTH_SHARE, Laid, LayError, ROUND_HELIX_DEG,
     Vary,
 };
-pub use outline::{Arc, Outline, Shape, Touch};
+pub use outline::{Outline, Shape};
+pub use touch::{Arc, Touch};
 
 use crate::fibre::Fibre;
 use crate::quantity::TwistDirection;

@@ -1,0 +1,292 @@
+//! The judge on bends made by hand.
+
+use super::*;
+use crate::bend::{Easing, Flanks, Meets, Stage, Stretch, SystemName};
+use crate::fibre::{Fibre, library};
+use crate::yarn::{Count, CountGiven, Shape, Vary, YarnForm};
+
+fn fibre(name: &str) -> Fibre {
+    library().find(name).unwrap().fibre().unwrap()
+}
+
+/// A yarn of this fibre, 0.2 mm thick and 1 mm wide.
+fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
+    let fibre = fibre(name);
+    let given = CountGiven {
+        linear_density_tex: None,
+        filaments: Some(filaments),
+        filament_diameter_mm: Some(um * 1e-3),
+    };
+    let form = YarnForm {
+        shape: (filaments > 1).then_some(Shape::Lens),
+        width_mm: (filaments > 1).then_some(1.0),
+        thickness_mm: (filaments > 1).then_some(0.2),
+        ..YarnForm::default()
+    };
+    Yarn {
+        name: "y".into(),
+        count: Count::resolve(given, fibre.diameter_mm, fibre.density_g_cm3).unwrap(),
+        fibre,
+        twist_per_mm: 0.0,
+        twist_direction: None,
+        form,
+        binding: 0.0,
+        bending_rigidity_n_mm2: None,
+        tension_spread: 1.0,
+    }
+}
+
+fn bend(radius_mm: f64, pull_n: f64) -> Bend {
+    Bend {
+        place: "by hand".into(),
+        stage: Stage::Weaving,
+        system: SystemName::Warp,
+        profile: vec![Stretch {
+            length_mm: 1.0,
+            lies_on_mm: Some(radius_mm),
+        }],
+        easing: Easing::Held,
+        added_per_mm: 0.0,
+        plane: 1,
+        pull_n,
+        temperature_c: None,
+        meets: Meets::All,
+        governed_by: 0..1,
+        heated_by: None,
+    }
+}
+
+fn judged(bend: &Bend, yarn: Yarn) -> Finding {
+    let laid = yarn.laid_at(2.0, Vary::default()).unwrap();
+    judge(bend, &Arc::new(yarn), &laid, 2.0).0
+}
+
+/// E-glass, 9 um, on R = 0.5: the innermost axis lies 4.5 um above: s_b = 73 000 x 0.009/(2 x 0.5045) = 651.1 MPa;
+/// 2 N on 1000 filaments: 31.44 MPa; reserve 2200/682.6 = 3.223 (hand calculation).
+#[test]
+fn brittle_fracture_by_hand() {
+    let finding = judged(&bend(0.5, 2.0), yarn("e-glass", 1000, 9.0));
+    assert_eq!(finding.filament.position, Position::Inside);
+    assert!((finding.radius_mm().unwrap() - 0.5045).abs() < 1e-9);
+    assert!((finding.bending_stress_mpa() - 651.14).abs() < 0.01);
+    assert!((finding.filament.axial_stress_mpa - 31.438).abs() < 0.001);
+    assert!((finding.reserve().unwrap() - 3.2231).abs() < 1e-3);
+    assert_eq!(
+        (finding.state, finding.limit),
+        (State::Holds, Some(Limit::Fracture))
+    );
+    assert_eq!(
+        finding.judged.checks[1], None,
+        "no compressive strength is known"
+    );
+    // At the limit radius the reserve is 1.
+    let limit = finding.limit_radius_mm().unwrap();
+    let there = judged(&bend(limit - 0.0045, 2.0), yarn("e-glass", 1000, 9.0));
+    assert!((there.reserve().unwrap() - 1.0).abs() < 1e-9);
+}
+
+/// Pitch carbon: 0.45 GPa uniaxial counts 0.9 GPa in bending; the pull spares the compressed side.
+#[test]
+fn compression_governs_pitch_carbon_and_pull_spares_it() {
+    let loose = judged(&bend(5.0, 0.0), yarn("carbon-pitch-uhm", 1000, 10.0));
+    let applied = 780_000.0 * 0.010 / (2.0 * 5.005);
+    assert_eq!(loose.limit, Some(Limit::Compression));
+    assert!((loose.reserve().unwrap() - 900.0 / applied).abs() < 1e-6);
+    let pulled = judged(&bend(5.0, 8.0), yarn("carbon-pitch-uhm", 1000, 10.0));
+    let stress = 8.0 / (1000.0 * std::f64::consts::PI / 4.0 * 1e-4);
+    let compression = pulled
+        .judged
+        .checks
+        .iter()
+        .flatten()
+        .find(|c| c.limit == Limit::Compression)
+        .unwrap();
+    assert!((compression.applied - (applied - stress)).abs() < 1e-6);
+    // Pulled harder than bent, nothing is compressed.
+    let hard = judged(&bend(500.0, 60.0), yarn("carbon-pitch-uhm", 1000, 10.0));
+    assert!(
+        hard.judged
+            .checks
+            .iter()
+            .flatten()
+            .all(|check| check.limit == Limit::Fracture)
+    );
+}
+
+/// Aramid: kinks at E d k/2 = 0.9 GPa (0.45 uniaxial, twice in bending), later fails past 3 % of compressive strain.
+#[test]
+fn fibrillar_fibres_kink_and_fail_past_three_per_cent() {
+    let at = |radius: f64| judged(&bend(radius, 0.0), yarn("aramid-std", 1000, 12.0));
+    let kink_radius = 72_000.0 * 0.012 / (2.0 * 900.0);
+    let before = at(kink_radius + 0.01);
+    assert_eq!((before.state, before.code), (State::Close, Code::KinkOnset));
+    let after = at(kink_radius - 0.03);
+    assert_eq!((after.state, after.code), (State::Kinks, Code::KinkOnset));
+    assert!(!after.fails(false, false) && after.fails(true, false) && after.fails(false, true));
+    let crushed = at(0.12);
+    assert_eq!(
+        (crushed.state, crushed.code),
+        (State::Kinks, Code::KinkStrain)
+    );
+    assert!(crushed.fails(false, false));
+    // The kinked tension side is spared: it still holds where E d/(2 R) is above the strength.
+    let sharp = at(0.135);
+    let elastic = sharp.bending_stress_mpa();
+    let tension = sharp
+        .judged
+        .checks
+        .iter()
+        .flatten()
+        .find(|c| c.limit == Limit::Fracture)
+        .unwrap();
+    assert!(
+        elastic > 2_900.0 && tension.applied < 0.9 * elastic,
+        "{elastic} {}",
+        tension.applied
+    );
+}
+
+/// Soft wire 0.1 mm on 1 mm: strain 0.05/1.05 = 0.047 62; yields (0.25 GPa), breaks at 30 %.
+#[test]
+fn ductile_fibres_yield_and_break_by_strain() {
+    let finding = judged(&bend(1.0, 0.0), yarn("stainless-annealed", 1, 100.0));
+    assert_eq!(
+        (finding.state, finding.limit),
+        (State::Yields, Some(Limit::Yield))
+    );
+    assert_eq!(finding.filament.position, Position::Single);
+    let strain = finding
+        .judged
+        .checks
+        .iter()
+        .flatten()
+        .find(|c| c.limit == Limit::Strain)
+        .unwrap();
+    assert!((strain.applied - 0.05 / 1.05).abs() < 1e-9);
+    assert!((strain.reserve() - 0.3 * 1.05 / 0.05).abs() < 1e-6);
+    assert!(!finding.fails(false, false) && finding.fails(false, true));
+    let broken = judged(&bend(0.05, 0.0), yarn("stainless-annealed", 1, 100.0));
+    assert_eq!(
+        (broken.state, broken.limit),
+        (State::Breaks, Some(Limit::Strain))
+    );
+}
+
+/// Free filaments: the innermost governs. Fully bonded: the outermost, strained by y k as well.
+#[test]
+fn binding_moves_the_worst_filament_outwards() {
+    let mut bonded = yarn("carbon-pan-sm", 3000, 7.0);
+    bonded.binding = 1.0;
+    let finding = judged(&bend(20.0, 0.0), bonded);
+    let (k, y) = (1.0 / 20.1, 0.1 - 0.0035);
+    let of_filament = k / (1.0 + k * y);
+    let stress = 230_000.0 * (0.0035 + y) * of_filament;
+    assert_eq!(finding.limit, Some(Limit::Fracture));
+    let total = finding.filament.axial_stress_mpa + finding.bending_stress_mpa();
+    assert!((total / stress - 1.0).abs() < 1e-9, "{total} {stress}");
+    assert_eq!(finding.filament.position, Position::Outside);
+    let free = judged(&bend(20.0, 0.0), yarn("carbon-pan-sm", 3000, 7.0));
+    assert_eq!(free.filament.position, Position::Inside);
+    assert!(free.reserve().unwrap() > 20.0 * finding.reserve().unwrap());
+}
+
+/// A knife edge: only the filament's own stiffness under its pull decides, 4 sqrt(strain) sin(theta/4).
+#[test]
+fn over_a_knife_edge_stiffness_caps_the_curvature() {
+    let mut edge = bend(0.0, 3.0);
+    edge.easing = Easing::LongArms { turn_rad: 1.0 };
+    let glass = yarn("e-glass", 1000, 9.0);
+    let strain = glass.axial_stress_mpa(3.0) / 73_000.0;
+    let finding = judged(&edge, glass);
+    let bending_strain = finding.bending_stress_mpa() / 73_000.0;
+    assert!((bending_strain - 4.0 * strain.sqrt() * 0.25f64.sin()).abs() < 1e-12);
+    // Without pull nothing says how it gets round: it is taken to lie on, and breaks.
+    edge.pull_n = 0.0;
+    assert_eq!(
+        judged(&edge, yarn("e-glass", 1000, 9.0)).state,
+        State::Breaks
+    );
+    // A round guide larger than that is lain on.
+    let mut guide = bend(5.0, 3.0);
+    guide.easing = Easing::LongArms { turn_rad: 1.0 };
+    assert!(
+        (judged(&guide, yarn("e-glass", 1000, 9.0))
+            .radius_mm()
+            .unwrap()
+            - 5.0045)
+            .abs()
+            < 1e-9
+    );
+}
+
+/// The crown law takes the smaller of both curvatures, and a corner's curvature comes on top.
+#[test]
+fn crowns_ease_and_corners_add() {
+    let mut crown = bend(0.05, 0.5);
+    crown.easing = Easing::Crown {
+        drop_mm: 0.05,
+        arm_mm: 0.3,
+        flanks: Flanks::Both,
+    };
+    let wire = || yarn("stainless-annealed", 1, 100.0);
+    let eased = judged(&crown, wire());
+    assert!(eased.radius_mm().unwrap() > 0.1 && eased.filament.free_per_mm.unwrap() < 10.0);
+    let alone = eased.filament.curvature_per_mm;
+    crown.added_per_mm = 0.25;
+    assert!((judged(&crown, wire()).filament.curvature_per_mm - alone - 0.25).abs() < 1e-12);
+}
+
+#[test]
+fn twist_winds_the_surface_filament() {
+    let mut twisted = yarn("e-glass", 1000, 9.0);
+    twisted.twist_per_mm = 0.5;
+    let finding = judged(&bend(1.0, 0.0), twisted);
+    let r = 0.1 - 0.0045;
+    let exact = crate::path::bent_helix_peak_per_mm(r, 0.5, 1.1);
+    assert_eq!(finding.filament.position, Position::Surface);
+    assert!((finding.filament.curvature_per_mm - exact).abs() < 1e-12);
+}
+
+#[test]
+fn heat_is_a_finding_of_its_own() {
+    let mut oven = bend(40.0, 1.0);
+    oven.temperature_c = Some(301.0);
+    oven.heated_by = Some(7..9);
+    let glass = yarn("e-glass", 1000, 9.0);
+    let laid = glass.laid_at(2.0, Vary::default()).unwrap();
+    let (bent, heat) = judge(&oven, &Arc::new(glass.clone()), &laid, 2.0);
+    assert_eq!(bent.state, State::Holds);
+    let heat = heat.unwrap();
+    assert_eq!(
+        (heat.state, heat.code, heat.reserve()),
+        (State::Overheats, Code::OverTemperature, None)
+    );
+    assert_eq!(heat.governed_by, 7..9);
+    assert!(heat.fails(false, false));
+    oven.temperature_c = Some(300.0);
+    assert!(judge(&oven, &Arc::new(glass), &laid, 2.0).1.is_none());
+}
+
+#[test]
+fn a_straight_yarn_without_pull_has_no_limit() {
+    let mut straight = bend(1.0, 0.0);
+    straight.profile.clear();
+    let finding = judged(&straight, yarn("e-glass", 1000, 9.0));
+    assert_eq!(
+        (finding.state, finding.code, finding.reserve()),
+        (State::Holds, Code::NoLimit, None)
+    );
+}
+
+#[test]
+fn states_rank_as_the_contract_says() {
+    let order = [
+        State::Holds,
+        State::Close,
+        State::Kinks,
+        State::Yields,
+        State::Overheats,
+        State::Breaks,
+    ];
+    assert!(order.windows(2).all(|pair| pair[0] < pair[1]));
+}
