@@ -1,8 +1,9 @@
 //! `[fibre.NAME]`: fibres of the spec's own, from a library record or from given figures alone.
 
+use super::field::{Bound, Field, Placed};
 use super::keys::FIBRE;
 use super::problem::{Problem, nearest_of};
-use super::reader::{Bound, Field, Placed, Table};
+use super::reader::Table;
 use crate::fibre::{
     CompressionBasis, Fibre, FibreOverrides, FibreProblem, FindError, Kind, StrengthBasis, library,
 };

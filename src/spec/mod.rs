@@ -6,6 +6,7 @@
 //! and the weave room's to say.
 
 mod fibre;
+mod field;
 pub mod keys;
 mod problem;
 mod reader;
@@ -20,7 +21,8 @@ pub use weave::{DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, System, Weave
 use crate::pattern::Weaves;
 use crate::span::SourceText;
 use fibre::Fibres;
-use reader::{Bound, Problems, Table};
+use field::{Bound, Problems};
+use reader::Table;
 use toml::de::DeTable;
 
 /// Smallest reserve that counts as holding, where none is given.

@@ -3,83 +3,13 @@
 //! A [`Table`] refuses unknown keys at once; its getters return [`Field`]s, so that a value that is there
 //! but wrong (already reported) is told apart from one that is absent (which may be another problem).
 
+use super::field::{Bound, Field, Placed, Problems};
 use super::keys::Key;
 use super::problem::{Problem, nearest_of};
 use crate::quantity::{Dimension, Quantity, QuantityError, parse};
 use crate::span::Span;
-use std::cell::RefCell;
 use toml::Spanned;
 use toml::de::{DeTable, DeValue};
-
-/// A value and the place it stood.
-#[derive(Debug, Clone, PartialEq)]
-pub struct Placed<T> {
-    /// The value.
-    pub value: T,
-    /// Its place in the spec's text.
-    pub span: Span,
-}
-
-/// What a key held.
-#[derive(Debug, Clone, PartialEq)]
-pub enum Field<T> {
-    /// The key is not there.
-    Absent,
-    /// It is there, wrong, and reported.
-    Wrong,
-    /// It is there and right.
-    Given(Placed<T>),
-}
-
-impl<T> Field<T> {
-    /// The value where it is there and right.
-    pub fn given(self) -> Option<Placed<T>> {
-        match self {
-            Self::Given(placed) => Some(placed),
-            Self::Absent | Self::Wrong => None,
-        }
-    }
-
-    /// The bare value where it is there and right.
-    pub fn value(self) -> Option<T> {
-        self.given().map(|placed| placed.value)
-    }
-
-    /// Another value from this one.
-    pub fn map<U>(self, change: impl FnOnce(T) -> U) -> Field<U> {
-        match self {
-            Self::Given(placed) => Field::Given(Placed {
-                value: change(placed.value),
-                span: placed.span,
-            }),
-            Self::Absent => Field::Absent,
-            Self::Wrong => Field::Wrong,
-        }
-    }
-}
-
-/// Collects the problems of one file.
-#[derive(Debug, Default)]
-pub struct Problems(RefCell<Vec<Problem>>);
-
-impl Problems {
-    /// Keeps a problem.
-    pub fn push(&self, problem: Problem) {
-        self.0.borrow_mut().push(problem);
-    }
-
-    /// Whether none was found so far.
-    pub fn is_empty(&self) -> bool {
-        self.0.borrow().is_empty()
-    }
-
-    /// All of them, in the order of the text.
-    pub fn into_sorted(self) -> Vec<Problem> {
-        let mut all = self.0.into_inner();
-        all.sort_by_key(|problem| (problem.span.start, problem.span.end));
-        all
-    }
-}
 
 /// One table being read.
 #[derive(Debug, Clone)]
@@ -88,36 +18,6 @@ pub struct Table<'a> {
     table: &'a DeTable<'a>,
     span: Span,
     what: String,
-}
-
-/// What a number must be.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub enum Bound {
-    /// Above zero.
-    Positive,
-    /// Zero or above.
-    NotNegative,
-    /// Any finite value.
-    Any,
-    /// From the first to the second, both included.
-    Within(f64, f64),
-}
-
-impl Bound {
-    fn broken_by(self, value: f64) -> Option<String> {
-        match self {
-            Self::Positive if value <= 0.0 => Some("must be above zero".into()),
-            Self::NotNegative if value < 0.0 => Some("must not be negative".into()),
-            Self::Within(low, high) if !(low..=high).contains(&value) => {
-                Some(if high == f64::MAX {
-                    format!("must be {low} or more")
-                } else {
-                    format!("must lie between {low} and {high}")
-                })
-            }
-            _ => None,
-        }
-    }
 }
 
 impl<'a> Table<'a> {
@@ -167,11 +67,7 @@ impl<'a> Table<'a> {
     /// Whether a value of this table has been reported.
     pub fn has_problems_inside(&self) -> bool {
         let values: Vec<Span> = self.table.values().map(Spanned::span).collect();
-        self.problems
-            .0
-            .borrow()
-            .iter()
-            .any(|problem| values.contains(&problem.span))
+        self.problems.any_at(&values)
     }
 
     /// Keeps a problem.

@@ -1,8 +1,9 @@
 //! `[[passage]]` and `[[tool]]`: what a yarn runs over, and what the cloth is laid over.
 
+use super::field::Bound;
 use super::keys::{PASSAGE, TOOL};
 use super::problem::Problem;
-use super::reader::{Bound, Table};
+use super::reader::Table;
 use super::weave::{Weave, read_tension};
 use crate::bend::{Stage, SystemName};
 use crate::quantity::Dimension;

@@ -1,8 +1,9 @@
 //! `[weave]`: the pattern and its two systems.
 
+use super::field::{Bound, Field, Placed};
 use super::keys::{SYSTEM, WEAVE};
 use super::problem::{Problem, nearest_of};
-use super::reader::{Bound, Field, Placed, Table};
+use super::reader::Table;
 use super::yarn::SpecYarn;
 use crate::pattern::{Interlacing, Pattern, PatternError, Weaves};
 use crate::quantity::Dimension;

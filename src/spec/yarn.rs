@@ -1,9 +1,10 @@
 //! `[yarn.NAME]`: fibre, count, twist and what is known of the outline.
 
 use super::fibre::Fibres;
+use super::field::{Bound, Field, Placed};
 use super::keys::YARN;
 use super::problem::Problem;
-use super::reader::{Bound, Field, Placed, Table, quantity_problem};
+use super::reader::{Table, quantity_problem};
 use crate::quantity::{Dimension, TwistDirection, parse_twist, plain, significant};
 use crate::span::Span;
 use crate::yarn::{CLOSEST_PACKING, Count, CountError, CountGiven, Outline, Shape, Yarn, YarnForm};
