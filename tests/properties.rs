@@ -7,10 +7,11 @@ mod common;
 use common::spec;
 use lissom::flow::{Outcome, run};
 use lissom::judge::Finding;
-use lissom::pattern::Weaves;
+use lissom::pattern::{Weaves, Woven};
 use lissom::span::SourceText;
 use lissom::spec::Spec;
 use proptest::prelude::*;
+use std::sync::Arc;
 
 /// A woven spec in numbers, all outlines given or following from packing.
 #[derive(Debug, Clone)]
@@ -126,8 +127,7 @@ fn crowns(outcome: &Outcome) -> Vec<&Finding> {
 fn exchanged(text: &str) -> Spec {
     let mut spec = spec(text);
     std::mem::swap(&mut spec.weave.warp, &mut spec.weave.weft);
-    spec.weave.pattern = spec.weave.pattern.transposed();
-    spec.weave.interlacing = spec.weave.pattern.interlacing();
+    spec.weave.woven = Arc::new(Woven::new(spec.weave.woven.pattern.transposed()));
     spec
 }
 

@@ -1,10 +1,11 @@
 //! The built-in fibres: found by id or by full name, each read when it is first wanted.
 
+use std::collections::HashMap;
 use std::sync::OnceLock;
 
 use thiserror::Error;
 
-use super::entries::{COUNT, ENTRIES};
+use super::entries::{COUNT, ENTRIES, Entry};
 use super::record::{DataError, Record};
 
 /// The built-in fibres. There is one: [`library`].
@@ -44,10 +45,7 @@ impl Library {
     /// There is none, or its file is broken.
     pub fn find(&'static self, query: &str) -> Result<&'static Record, FindError> {
         let wanted = bare(query);
-        let index = ENTRIES
-            .iter()
-            .position(|entry| bare(entry.id) == wanted || bare(entry.name) == wanted);
-        match index {
+        match index().get(&wanted).copied() {
             Some(index) => Ok(self.record(index).map_err(Clone::clone)?),
             None => Err(FindError::Unknown {
                 query: query.to_owned(),
@@ -93,6 +91,15 @@ impl Library {
             .get_or_init(|| Record::parse(entry.id, entry.text))
             .as_ref()
     }
+}
+
+/// Place of every record by its bare id and bare name.
+fn index() -> &'static HashMap<String, usize> {
+    static INDEX: OnceLock<HashMap<String, usize>> = OnceLock::new();
+    INDEX.get_or_init(|| {
+        let both = |(at, entry): (usize, &Entry)| [(bare(entry.id), at), (bare(entry.name), at)];
+        ENTRIES.iter().enumerate().flat_map(both).collect()
+    })
 }
 
 /// Below this two names are taken to have nothing to do with each other. A third of the letters may differ; chosen by eye.

@@ -8,6 +8,7 @@
 
 use super::builtin::BUILTIN;
 use super::weave_file::{self, FolderErrors, MAX_BYTES, WeaveFileError};
+use super::woven::Kept;
 use super::{Pattern, words};
 use std::fs;
 use std::path::{Path, PathBuf};
@@ -29,6 +30,7 @@ pub struct Weave {
 #[derive(Clone, Debug, Default)]
 pub struct Weaves {
     own: Vec<Weave>,
+    pub(super) kept: Kept,
 }
 
 impl Weaves {

@@ -19,6 +19,7 @@
 //! - `family`: plain, ribs, hopsack, twills, satins built from their numbers;
 //! - `words`, `notation`: the same asked for in a weaver's words ([`parse_notation`]);
 //! - `library`, `weave_file`, `builtin`: named weaves, one TOML each, in `weaves/` and in a user's own folder ([`Weaves`]);
+//! - `woven`: a pattern with what follows from it, worked out once ([`Woven`]);
 //! - `draw`: point paper for the terminal ([`draw()`]).
 //!
 //! Left out: leno (ends that change their order), lappet and pile loops, which no matrix of this kind can hold. Several
@@ -35,6 +36,7 @@ mod notation;
 mod turn;
 mod weave_file;
 mod words;
+mod woven;
 
 #[cfg(test)]
 mod testing;
@@ -49,3 +51,4 @@ pub use library::{Weave, Weaves};
 pub use matrix::{MAX_REPEAT, Pattern, PatternError};
 pub use notation::{NotationError, parse_notation};
 pub use weave_file::{FolderErrors, WeaveFileError};
+pub use woven::Woven;

@@ -266,8 +266,8 @@ impl ClothReport {
         let weave = &spec.weave;
         Self {
             pattern: weave.pattern_name.clone(),
-            ends: weave.pattern.ends(),
-            picks: weave.pattern.picks(),
+            ends: weave.woven.pattern.ends(),
+            picks: weave.woven.pattern.picks(),
             jam_limited: cloth.closed.jam_limited,
             height_shared_by: match cloth.closed.by {
                 Closure::WarpCrimp(_) => "warp crimp",

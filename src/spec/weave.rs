@@ -5,7 +5,7 @@ use super::keys::{SYSTEM, WEAVE};
 use super::problem::{Problem, nearest_of};
 use super::reader::Table;
 use super::yarn::SpecYarn;
-use crate::pattern::{Interlacing, Pattern, PatternError, Weaves};
+use crate::pattern::{Pattern, PatternError, Weaves, Woven};
 use crate::quantity::Dimension;
 use crate::span::Span;
 use crate::yarn::{CLOSEST_PACKING, LayError, Vary, Yarn};
@@ -49,10 +49,8 @@ impl System {
 pub struct Weave {
     /// What the spec called the pattern.
     pub pattern_name: String,
-    /// The pattern's smallest repeat.
-    pub pattern: Pattern,
-    /// Its floats and changes.
-    pub interlacing: Interlacing,
+    /// The pattern's smallest repeat, its floats and changes; one cloth.
+    pub woven: Arc<Woven>,
     /// The ends.
     pub warp: System,
     /// The picks.
@@ -97,11 +95,10 @@ pub fn read_weave(spec: &Table<'_>, yarns: &[SpecYarn], weaves: &Weaves) -> Opti
         .clone()
         .given()
         .map_or_else(|| table.span(), |placed| placed.span);
-    let (pattern_name, pattern) = pattern?;
+    let (pattern_name, woven) = pattern?;
     Some(Weave {
-        interlacing: pattern.interlacing(),
         pattern_name,
-        pattern,
+        woven,
         warp: warp?,
         weft: weft?,
         thickness_mm: thickness.value(),
@@ -129,8 +126,8 @@ fn read_path(table: &Table<'_>) {
     }
 }
 
-fn read_pattern(table: &Table<'_>, weaves: &Weaves) -> Option<(String, Pattern)> {
-    let (name, span, pattern) = match (table.text("pattern"), table.texts("rows")) {
+fn read_pattern(table: &Table<'_>, weaves: &Weaves) -> Option<(String, Arc<Woven>)> {
+    let (name, span, woven) = match (table.text("pattern"), table.texts("rows")) {
         (Field::Given(_), Field::Given(rows)) => {
             table.push(
                 Problem::at(
@@ -142,8 +139,8 @@ fn read_pattern(table: &Table<'_>, weaves: &Weaves) -> Option<(String, Pattern)>
             );
             return None;
         }
-        (Field::Given(name), Field::Absent) => match weaves.pattern(&name.value) {
-            Ok(pattern) => (name.value, name.span, pattern),
+        (Field::Given(name), Field::Absent) => match weaves.woven(&name.value) {
+            Ok(woven) => (name.value, name.span, woven),
             Err(error) => {
                 table.push(
                     Problem::at(name.span, error.to_string(), "no weave")
@@ -154,7 +151,11 @@ fn read_pattern(table: &Table<'_>, weaves: &Weaves) -> Option<(String, Pattern)>
         },
         (Field::Absent, Field::Given(rows)) => {
             let pattern = pattern_from(table, &rows)?;
-            ("drawn rows".to_owned(), rows.span, pattern)
+            (
+                "drawn rows".to_owned(),
+                rows.span,
+                Arc::new(Woven::new(pattern)),
+            )
         }
         (Field::Absent, Field::Absent) => {
             table.missing("pattern", "\"plain\"");
@@ -162,7 +163,7 @@ fn read_pattern(table: &Table<'_>, weaves: &Weaves) -> Option<(String, Pattern)>
         }
         _ => return None,
     };
-    if let Some(layers) = pattern.falls_apart() {
+    if let Some(layers) = &woven.layers {
         table.push(
             Problem::at(
                 span,
@@ -173,7 +174,7 @@ fn read_pattern(table: &Table<'_>, weaves: &Weaves) -> Option<(String, Pattern)>
         );
         return None;
     }
-    Some((name, pattern))
+    Some((name, woven))
 }
 
 fn pattern_from(table: &Table<'_>, rows: &Placed<Vec<Placed<String>>>) -> Option<Pattern> {

@@ -129,7 +129,7 @@ impl Cloth {
         let wave = |own: &Laid, crossed: &Laid, spacing: f64, system: &SystemInterlacing| {
             Wave::new(&own.outline, &crossed.outline, spacing, system)
         };
-        let floats = &weave.interlacing;
+        let floats = &weave.woven.interlacing;
         let warp_wave = wave(&warp, &weft, weave.weft.spacing_mm(), &floats.warp);
         let weft_wave = wave(&weft, &warp, weave.warp.spacing_mm(), &floats.weft);
         let whole_mm = warp.outline.thickness_mm() + weft.outline.thickness_mm();
