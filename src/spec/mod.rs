@@ -5,15 +5,18 @@
 //! fits their spacing, its pattern is one cloth. Whether the yarns can interlace at that sett is geometry,
 //! and the weave room's to say.
 
+mod document;
 mod fibre;
 mod field;
 pub mod keys;
 mod problem;
 mod reader;
+mod tree;
 mod way;
 mod weave;
 mod yarn;
 
+pub use document::{Document, KeyPath, NewValue, SetError};
 pub use problem::Problem;
 pub use way::{Passage, Tool};
 pub use weave::{DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, System, Weave};
@@ -21,9 +24,9 @@ pub use weave::{DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, System, Weave
 use crate::pattern::Weaves;
 use crate::span::SourceText;
 use fibre::Fibres;
-use field::{Bound, Problems};
+use field::Bound;
 use reader::Table;
-use toml::de::DeTable;
+use std::sync::Arc;
 
 /// Smallest reserve that counts as holding, where none is given.
 pub const DEFAULT_RESERVE: f64 = 2.0;
@@ -43,7 +46,7 @@ pub struct Require {
 #[derive(Debug, Clone)]
 pub struct Spec {
     /// The text it was read from.
-    pub source: SourceText,
+    pub source: Arc<SourceText>,
     /// What the report calls the cloth.
     pub name: String,
     /// The owner's own number.
@@ -64,41 +67,11 @@ impl Spec {
     /// # Errors
     /// All problems of the text, in its order. Where the text is no TOML, only those of its syntax.
     pub fn read(source: SourceText, weaves: &Weaves) -> Result<Self, Vec<Problem>> {
-        let (document, errors) = DeTable::parse_recoverable(&source.text);
-        if !errors.is_empty() {
-            return Err(errors
-                .iter()
-                .map(|error| {
-                    let span = error.span().unwrap_or(0..0);
-                    Problem::at(
-                        span,
-                        format!("this is no TOML: {}", error.message().trim()),
-                        "here",
-                    )
-                })
-                .collect());
-        }
-        let problems = Problems::default();
-        // A problem of the whole spec is marked at its first line.
-        let first_line = 0..source.text.find('\n').unwrap_or(source.text.len());
-        let read = {
-            let table = Table::new(
-                &problems,
-                document.get_ref(),
-                first_line,
-                "the spec",
-                keys::SPEC,
-            );
-            read_parts(&table, weaves)
-        };
-        match read {
-            Some(parts) if problems.is_empty() => Ok(Self { source, ..parts }),
-            _ => Err(problems.into_sorted()),
-        }
+        Document::parse(source)?.spec(weaves)
     }
 }
 
-fn read_parts(table: &Table<'_>, weaves: &Weaves) -> Option<Spec> {
+fn read_parts(table: &Table<'_>, source: &Arc<SourceText>, weaves: &Weaves) -> Option<Spec> {
     let name = table.required(table.text("name"), "name", "\"Furnace curtain, trial 1\"");
     let reference = table.text("reference").value();
     let fibres = Fibres::read(table);
@@ -108,7 +81,7 @@ fn read_parts(table: &Table<'_>, weaves: &Weaves) -> Option<Spec> {
     let tools = way::read_tools(table);
     let require = read_require(table);
     Some(Spec {
-        source: SourceText::new("", ""),
+        source: Arc::clone(source),
         name: name?.value,
         reference,
         weave: weave?,

@@ -6,16 +6,15 @@
 use super::field::{Bound, Field, Placed, Problems};
 use super::keys::Key;
 use super::problem::{Problem, nearest_of};
+use super::tree::{Branch, Value};
 use crate::quantity::{Dimension, Quantity, QuantityError, parse};
 use crate::span::Span;
-use toml::Spanned;
-use toml::de::{DeTable, DeValue};
 
 /// One table being read.
 #[derive(Debug, Clone)]
 pub struct Table<'a> {
     problems: &'a Problems,
-    table: &'a DeTable<'a>,
+    table: &'a Branch,
     span: Span,
     what: String,
 }
@@ -24,7 +23,7 @@ impl<'a> Table<'a> {
     /// A table whose keys are checked against the known ones; `what` is its word in messages.
     pub fn new(
         problems: &'a Problems,
-        table: &'a DeTable<'a>,
+        table: &'a Branch,
         span: Span,
         what: impl Into<String>,
         keys: &'static [Key],
@@ -35,14 +34,14 @@ impl<'a> Table<'a> {
             span,
             what: what.into(),
         };
-        for key in table.keys() {
-            let name: &str = key.get_ref();
+        for (key, _) in table.iter() {
+            let name = key.value.as_str();
             if !keys.iter().any(|known| known.name == name) {
                 let known = keys.iter().map(|key| key.name);
                 let all: Vec<String> = known.clone().map(|name| format!("`{name}`")).collect();
                 problems.push(
                     Problem::at(
-                        key.span(),
+                        key.span.clone(),
                         format!("unknown key `{name}` in {}", this.what),
                         "not a key here",
                     )
@@ -61,12 +60,16 @@ impl<'a> Table<'a> {
 
     /// Where the value of a key stands, if it is there.
     pub fn place_of(&self, key: &str) -> Option<Span> {
-        self.raw(key).map(Spanned::span)
+        self.raw(key).map(|found| found.span.clone())
     }
 
     /// Whether a value of this table has been reported.
     pub fn has_problems_inside(&self) -> bool {
-        let values: Vec<Span> = self.table.values().map(Spanned::span).collect();
+        let values: Vec<Span> = self
+            .table
+            .iter()
+            .map(|(_, found)| found.span.clone())
+            .collect();
         self.problems.any_at(&values)
     }
 
@@ -95,14 +98,14 @@ impl<'a> Table<'a> {
         field.given()
     }
 
-    fn raw(&self, key: &str) -> Option<&'a Spanned<DeValue<'a>>> {
+    fn raw(&self, key: &str) -> Option<&'a Placed<Value>> {
         self.table.get(key)
     }
 
-    fn wrong_type<T>(&self, key: &str, found: &Spanned<DeValue<'_>>, wanted: &str) -> Field<T> {
+    fn wrong_type<T>(&self, key: &str, found: &Placed<Value>, wanted: &str) -> Field<T> {
         self.push(Problem::at(
-            found.span(),
-            format!("`{key}` takes {wanted}, not {}", type_word(found.get_ref())),
+            found.span.clone(),
+            format!("`{key}` takes {wanted}, not {}", found.value.word()),
             format!("{wanted} needed"),
         ));
         Field::Wrong
@@ -113,18 +116,18 @@ impl<'a> Table<'a> {
         let Some(found) = self.raw(key) else {
             return Field::Absent;
         };
-        match found.get_ref() {
-            DeValue::String(text) if text.trim().is_empty() => {
+        match &found.value {
+            Value::Text(text) if text.trim().is_empty() => {
                 self.push(Problem::at(
-                    found.span(),
+                    found.span.clone(),
                     format!("`{key}` is empty"),
                     "empty",
                 ));
                 Field::Wrong
             }
-            DeValue::String(text) => Field::Given(Placed {
+            Value::Text(text) => Field::Given(Placed {
                 value: text.to_string(),
-                span: found.span(),
+                span: found.span.clone(),
             }),
             _ => self.wrong_type(key, found, "a text"),
         }
@@ -168,14 +171,14 @@ impl<'a> Table<'a> {
         let Some(found) = self.raw(key) else {
             return Field::Absent;
         };
-        let span = found.span();
+        let span = found.span.clone();
         let units = || {
             let symbols: Vec<&str> = wanted.iter().flat_map(|kind| kind.symbols()).collect();
             format!("units that would do: {}", symbols.join(", "))
         };
-        let text = match found.get_ref() {
-            DeValue::String(text) => text,
-            number @ (DeValue::Integer(_) | DeValue::Float(_)) => {
+        let text = match &found.value {
+            Value::Text(text) => text,
+            Value::Whole(digits) | Value::Real(digits) => {
                 let symbol = wanted
                     .first()
                     .and_then(|kind| kind.symbols().next())
@@ -183,8 +186,7 @@ impl<'a> Table<'a> {
                 self.push(
                     Problem::at(span, format!("`{key}` is a bare number"), "no unit")
                         .help(format!(
-                            "write a text with its unit, `\"{} {symbol}\"`",
-                            digits(number)
+                            "write a text with its unit, `\"{digits} {symbol}\"`"
                         ))
                         .help(units()),
                 );
@@ -225,29 +227,27 @@ impl<'a> Table<'a> {
         let Some(found) = self.raw(key) else {
             return Field::Absent;
         };
-        let value = match found.get_ref() {
-            number @ (DeValue::Integer(_) | DeValue::Float(_)) => {
-                digits(number).parse::<f64>().ok()
-            }
-            _ => return self.wrong_type(key, found, "a number"),
+        let Some(digits) = found.value.digits() else {
+            return self.wrong_type(key, found, "a number");
         };
-        let span = found.span();
-        let broken = match value {
-            Some(value) if value.is_finite() => bound.broken_by(value),
-            _ => Some("must be a finite number".into()),
+        let broken = match digits.parse::<f64>() {
+            Ok(value) if value.is_finite() => match bound.broken_by(value) {
+                None => {
+                    return Field::Given(Placed {
+                        value,
+                        span: found.span.clone(),
+                    });
+                }
+                Some(broken) => broken,
+            },
+            _ => "must be a finite number".to_owned(),
         };
-        match (value, broken) {
-            (Some(value), None) => Field::Given(Placed { value, span }),
-            (_, broken) => {
-                let broken = broken.unwrap_or_default();
-                self.push(Problem::at(
-                    span,
-                    format!("`{key}` {broken}"),
-                    digits(found.get_ref()),
-                ));
-                Field::Wrong
-            }
-        }
+        self.push(Problem::at(
+            found.span.clone(),
+            format!("`{key}` {broken}"),
+            digits,
+        ));
+        Field::Wrong
     }
 
     /// A whole number from 1 up.
@@ -255,19 +255,19 @@ impl<'a> Table<'a> {
         let Some(found) = self.raw(key) else {
             return Field::Absent;
         };
-        let DeValue::Integer(number) = found.get_ref() else {
+        let Value::Whole(digits) = &found.value else {
             return self.wrong_type(key, found, "a whole number");
         };
-        match u32::from_str_radix(number.as_str(), number.radix()) {
+        match digits.parse::<u32>() {
             Ok(value) if value > 0 => Field::Given(Placed {
                 value,
-                span: found.span(),
+                span: found.span.clone(),
             }),
             _ => {
                 self.push(Problem::at(
-                    found.span(),
+                    found.span.clone(),
                     format!("`{key}` must be a whole number from 1 to {}", u32::MAX),
-                    number.as_str().to_owned(),
+                    digits.as_str(),
                 ));
                 Field::Wrong
             }
@@ -279,22 +279,22 @@ impl<'a> Table<'a> {
         let Some(found) = self.raw(key) else {
             return Field::Absent;
         };
-        let DeValue::Array(items) = found.get_ref() else {
+        let Value::List(items) = &found.value else {
             return self.wrong_type(key, found, "a list of texts");
         };
         let mut texts = Vec::new();
         for item in items.iter() {
-            match item.get_ref() {
-                DeValue::String(text) => texts.push(Placed {
+            match &item.value {
+                Value::Text(text) => texts.push(Placed {
                     value: text.to_string(),
-                    span: item.span(),
+                    span: item.span.clone(),
                 }),
                 _ => return self.wrong_type(key, item, "texts only"),
             }
         }
         Field::Given(Placed {
             value: texts,
-            span: found.span(),
+            span: found.span.clone(),
         })
     }
 
@@ -303,12 +303,12 @@ impl<'a> Table<'a> {
         let Some(found) = self.raw(key) else {
             return Field::Absent;
         };
-        let DeValue::Table(table) = found.get_ref() else {
+        let Value::Table(table) = &found.value else {
             return self.wrong_type(key, found, "a table");
         };
         Field::Given(Placed {
-            value: Table::new(self.problems, table, found.span(), what, keys),
-            span: found.span(),
+            value: Table::new(self.problems, table, found.span.clone(), what, keys),
+            span: found.span.clone(),
         })
     }
 
@@ -321,22 +321,22 @@ impl<'a> Table<'a> {
         let Some(found) = self.raw(key) else {
             return Vec::new();
         };
-        let DeValue::Table(outer) = found.get_ref() else {
+        let Value::Table(outer) = &found.value else {
             self.wrong_type::<()>(key, found, &format!("tables, `[{key}.NAME]`"));
             return Vec::new();
         };
         let mut tables = Vec::new();
         for (name, value) in outer.iter() {
-            let text = name.get_ref().to_string();
-            match value.get_ref() {
-                DeValue::Table(table) => {
+            let text = name.value.clone();
+            match &value.value {
+                Value::Table(table) => {
                     let what = format!("[{key}.{text}]");
                     tables.push((
                         Placed {
                             value: text,
-                            span: name.span(),
+                            span: name.span.clone(),
                         },
-                        Table::new(self.problems, table, value.span(), what, keys),
+                        Table::new(self.problems, table, value.span.clone(), what, keys),
                     ));
                 }
                 _ => {
@@ -352,16 +352,22 @@ impl<'a> Table<'a> {
         let Some(found) = self.raw(key) else {
             return Vec::new();
         };
-        let DeValue::Array(items) = found.get_ref() else {
+        let Value::List(items) = &found.value else {
             self.wrong_type::<()>(key, found, &format!("a list of tables, `[[{key}]]`"));
             return Vec::new();
         };
         let mut tables = Vec::new();
         for (index, item) in items.iter().enumerate() {
-            match item.get_ref() {
-                DeValue::Table(table) => {
+            match &item.value {
+                Value::Table(table) => {
                     let what = format!("[[{key}]] number {}", index + 1);
-                    tables.push(Table::new(self.problems, table, item.span(), what, keys));
+                    tables.push(Table::new(
+                        self.problems,
+                        table,
+                        item.span.clone(),
+                        what,
+                        keys,
+                    ));
                 }
                 _ => {
                     self.wrong_type::<()>(key, item, &format!("tables, `[[{key}]]`"));
@@ -369,28 +375,6 @@ impl<'a> Table<'a> {
             }
         }
         tables
-    }
-}
-
-/// The digits of a number as written, without underscores.
-fn digits(value: &DeValue<'_>) -> String {
-    match value {
-        DeValue::Integer(number) if number.radix() == 10 => number.as_str().to_owned(),
-        DeValue::Integer(number) => i64::from_str_radix(number.as_str(), number.radix())
-            .map_or_else(|_| number.as_str().to_owned(), |value| value.to_string()),
-        DeValue::Float(number) => number.as_str().to_owned(),
-        _ => String::new(),
-    }
-}
-
-fn type_word(value: &DeValue<'_>) -> &'static str {
-    match value {
-        DeValue::String(_) => "a text",
-        DeValue::Integer(_) | DeValue::Float(_) => "a number",
-        DeValue::Boolean(_) => "true or false",
-        DeValue::Datetime(_) => "a date",
-        DeValue::Array(_) => "a list",
-        DeValue::Table(_) => "a table",
     }
 }
 

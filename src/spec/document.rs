@@ -1,0 +1,297 @@
+//! A spec's TOML tree with places, whose values can be replaced before it is read: what a study varies.
+//!
+//! Keys are named by a path: `weave.warp.sett`, `weave.pattern`, `yarn.face.width`, `fibre.own.modulus`,
+//! `passage.heald eye.radius` (or its number from 1), `tool.corner.radius`, `require.reserve`. A replaced
+//! value keeps the place of what it replaced; an added one takes that of its table, so that problems of a
+//! variant still point into the text.
+
+use super::field::{Placed, Problems};
+use super::keys::{self, Key};
+use super::problem::{Problem, nearest_of};
+use super::reader::Table;
+use super::tree::{self, Branch, Value};
+use super::{Spec, read_parts};
+use crate::pattern::Weaves;
+use crate::span::{SourceText, Span};
+use std::sync::Arc;
+use thiserror::Error;
+
+/// A parsed text that has not been read as a spec yet.
+#[derive(Debug, Clone)]
+pub struct Document {
+    source: Arc<SourceText>,
+    root: Branch,
+}
+
+/// Why a key cannot be replaced.
+#[derive(Debug, Clone, PartialEq, Eq, Error)]
+pub enum SetError {
+    /// No table of that name.
+    #[error("`{key}` is no key of a spec: it starts with none of {known}")]
+    NoTable {
+        /// The path.
+        key: String,
+        /// The tables there are.
+        known: String,
+    },
+    /// No such key in the table.
+    #[error("`{key}` is no key of a spec{}", .nearest.as_ref().map_or_else(String::new, |near| format!("; the nearest is `{near}`")))]
+    NoKey {
+        /// The path.
+        key: String,
+        /// The nearest path there is.
+        nearest: Option<String>,
+    },
+    /// The spec has no yarn, passage or tool of that name.
+    #[error("this spec has no {what} called `{name}`{}", .nearest.as_ref().map_or_else(String::new, |near| format!("; the nearest is `{near}`")))]
+    NoSuch {
+        /// Yarn, passage or tool.
+        what: &'static str,
+        /// The name.
+        name: String,
+        /// The nearest name there is.
+        nearest: Option<String>,
+    },
+}
+
+/// A key's path, taken apart.
+#[derive(Debug, Clone, PartialEq, Eq)]
+pub struct KeyPath {
+    /// As written.
+    pub text: String,
+    top: &'static str,
+    middle: Option<String>,
+    last: &'static str,
+}
+
+impl KeyPath {
+    /// Takes a path apart.
+    ///
+    /// # Errors
+    /// Where no spec has such a key.
+    pub fn parse(text: &str) -> Result<Self, SetError> {
+        let text = text.trim();
+        let tables: [(&str, &'static [Key], bool); 7] = [
+            ("fibre", keys::FIBRE, true),
+            ("yarn", keys::YARN, true),
+            ("passage", keys::PASSAGE, true),
+            ("tool", keys::TOOL, true),
+            ("weave", keys::WEAVE, false),
+            ("require", keys::REQUIRE, false),
+            ("weave", keys::SYSTEM, true),
+        ];
+        let (top, rest) = text.split_once('.').unwrap_or((text, ""));
+        let (middle, last) = match rest.rsplit_once('.') {
+            Some((middle, last)) => (Some(middle), last),
+            None => (None, rest),
+        };
+        let here: Vec<_> = tables
+            .iter()
+            .filter(|(name, _, named)| *name == top && *named == middle.is_some())
+            .collect();
+        let Some((top, known, _)) = here.first() else {
+            let mut known: Vec<String> = tables
+                .iter()
+                .map(|(name, ..)| format!("`{name}`"))
+                .collect();
+            known.dedup();
+            known.truncate(6);
+            return Err(SetError::NoTable {
+                key: text.to_owned(),
+                known: known.join(", "),
+            });
+        };
+        let system = *top != "weave" || matches!(middle, None | Some("warp" | "weft"));
+        match known.iter().find(|key| key.name == last) {
+            Some(key) if system => Ok(Self {
+                text: text.to_owned(),
+                top,
+                middle: middle.map(str::to_owned),
+                last: key.name,
+            }),
+            _ => Err(SetError::NoKey {
+                key: text.to_owned(),
+                nearest: nearest_of(last, known.iter().map(|key| key.name)).map(|near| {
+                    let middle = match middle {
+                        Some(_) if !system => ".warp".to_owned(),
+                        Some(name) => format!(".{name}"),
+                        None => String::new(),
+                    };
+                    format!("{top}{middle}.{near}")
+                }),
+            }),
+        }
+    }
+
+    /// Last part of the path: the key itself.
+    pub fn last(&self) -> &'static str {
+        self.last
+    }
+}
+
+/// A value to put in: a text as it stands, or a number.
+#[derive(Debug, Clone, PartialEq)]
+pub enum NewValue {
+    /// A text, such as a quantity with its unit or a word.
+    Text(String),
+    /// A number without a unit, as TOML writes it.
+    Number(String),
+}
+
+impl Document {
+    /// Parses a text.
+    ///
+    /// # Errors
+    /// All problems of its syntax.
+    pub fn parse(source: SourceText) -> Result<Self, Vec<Problem>> {
+        let root = tree::parse(&source.text)?;
+        Ok(Self {
+            source: Arc::new(source),
+            root,
+        })
+    }
+
+    /// The text it was parsed from.
+    pub fn source(&self) -> &Arc<SourceText> {
+        &self.source
+    }
+
+    /// Reads it as a spec; patterns are looked up in `weaves`.
+    ///
+    /// # Errors
+    /// All problems, in the order of the text.
+    pub fn spec(&self, weaves: &Weaves) -> Result<Spec, Vec<Problem>> {
+        let problems = Problems::default();
+        let table = Table::new(
+            &problems,
+            &self.root,
+            self.first_line(),
+            "the spec",
+            keys::SPEC,
+        );
+        let read = read_parts(&table, &self.source, weaves);
+        match read {
+            Some(spec) if problems.is_empty() => Ok(spec),
+            _ => Err(problems.into_sorted()),
+        }
+    }
+
+    /// Where problems of the whole spec are marked.
+    fn first_line(&self) -> Span {
+        let text = &self.source.text;
+        0..text.find('\n').unwrap_or(text.len())
+    }
+
+    /// Replaces or adds a value. A filament diameter frees the count: where linear density and filaments are both
+    /// given, the filaments follow.
+    ///
+    /// # Errors
+    /// Where the spec has no such yarn, passage or tool.
+    pub fn set(&mut self, key: &KeyPath, value: &NewValue) -> Result<(), SetError> {
+        let value = match value {
+            NewValue::Text(text) => Value::Text(text.clone()),
+            NewValue::Number(digits) if digits.contains(['.', 'e', 'E']) => {
+                Value::Real(digits.clone())
+            }
+            NewValue::Number(digits) => Value::Whole(digits.clone()),
+        };
+        if key.last == "filament_diameter" {
+            self.free_the_count(key);
+        }
+        let (table, place) = self.table_of(key)?;
+        if key.top == "weave" && key.last == "pattern" {
+            table.remove("rows");
+        }
+        table.put(key.last, value, &place);
+        Ok(())
+    }
+
+    /// The table a key stands in, and its place; made where it may be left out.
+    fn table_of(&mut self, key: &KeyPath) -> Result<(&mut Branch, Span), SetError> {
+        let everywhere = self.first_line();
+        let no_such = |what, name: &str, known: Vec<String>| SetError::NoSuch {
+            what,
+            name: name.to_owned(),
+            nearest: nearest_of(name, known.iter().map(String::as_str)).map(str::to_owned),
+        };
+        let Some(name) = key.middle.as_deref() else {
+            return Ok(self.root.enter(key.top, &everywhere));
+        };
+        match key.top {
+            "passage" | "tool" => {
+                let Some(Value::List(list)) =
+                    self.root.get_mut(key.top).map(|found| &mut found.value)
+                else {
+                    return Err(no_such(key.top, name, Vec::new()));
+                };
+                let names: Vec<String> = list.iter().map(|item| name_of(&item.value)).collect();
+                let number = name
+                    .parse::<usize>()
+                    .ok()
+                    .and_then(|number| number.checked_sub(1));
+                let at = names.iter().position(|known| known == name).or(number);
+                let item = at.and_then(|at| list.get_mut(at)).and_then(as_branch);
+                item.ok_or_else(|| no_such(key.top, name, names))
+            }
+            "yarn" => {
+                let (yarns, _) = self.root.enter("yarn", &everywhere);
+                let known = yarns.iter().map(|(key, _)| key.value.clone()).collect();
+                yarns
+                    .get_mut(name)
+                    .and_then(as_branch)
+                    .ok_or_else(|| no_such("yarn", name, known))
+            }
+            "fibre" => {
+                let (fibres, place) = self.root.enter("fibre", &everywhere);
+                if fibres.get(name).is_none() {
+                    // A fibre of the library, varied: one of the spec's own that starts from it.
+                    let (own, place) = fibres.enter(name, &place);
+                    own.put("like", Value::Text(name.to_owned()), &place);
+                }
+                Ok(fibres.enter(name, &place))
+            }
+            top => {
+                let (table, place) = self.root.enter(top, &everywhere);
+                Ok(table.enter(name, &place))
+            }
+        }
+    }
+
+    /// Takes `filaments` out of the yarns whose diameter is varied and whose linear density is given.
+    fn free_the_count(&mut self, key: &KeyPath) {
+        let Some(Value::Table(yarns)) = self.root.get_mut("yarn").map(|found| &mut found.value)
+        else {
+            return;
+        };
+        for (name, yarn) in yarns.iter_mut() {
+            let Value::Table(yarn) = &mut yarn.value else {
+                continue;
+            };
+            let varied = match (key.top, yarn.get("fibre").map(|fibre| &fibre.value)) {
+                ("yarn", _) => key.middle.as_deref() == Some(name),
+                (_, Some(Value::Text(fibre))) => key.middle.as_ref() == Some(fibre),
+                _ => false,
+            };
+            if varied && yarn.get("linear_density").is_some() {
+                yarn.remove("filaments");
+            }
+        }
+    }
+}
+
+fn name_of(item: &Value) -> String {
+    match item {
+        Value::Table(table) => match table.get("name").map(|name| &name.value) {
+            Some(Value::Text(name)) => name.clone(),
+            _ => String::new(),
+        },
+        _ => String::new(),
+    }
+}
+
+fn as_branch(found: &mut Placed<Value>) -> Option<(&mut Branch, Span)> {
+    match &mut found.value {
+        Value::Table(table) => Some((table, found.span.clone())),
+        _ => None,
+    }
+}
