@@ -72,6 +72,30 @@ pub enum Flanks {
     One,
 }
 
+/// The crown of a wave: the inflection lies this far below the crest and along the cloth.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Crown {
+    /// Drop from the crest to the inflection, mm.
+    pub drop_mm: f64,
+    /// Distance along the cloth, mm.
+    pub arm_mm: f64,
+    /// Which sides fall away.
+    pub flanks: Flanks,
+}
+
+/// The shoulder of a wide section, where a taut yarn turns down beside its tip.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Shoulder {
+    /// Distance along the cloth from the crest to where the taut yarn leaves the section, mm.
+    pub back_mm: f64,
+    /// Slope with which the section's outline comes to the shoulder, rad.
+    pub start_rad: f64,
+    /// Slope of the straight piece behind it, rad.
+    pub slope_rad: f64,
+    /// Half of that straight piece: from the shoulder to the inflection, mm.
+    pub half_straight_mm: f64,
+}
+
 /// How a stiff yarn or filament may stay away from what it is bent over; without it, it lies on.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub enum Easing {
@@ -82,15 +106,12 @@ pub enum Easing {
         /// Turn at the contact, rad.
         turn_rad: f64,
     },
-    /// A crown of a wave: the inflection lies this far below and along.
-    Crown {
-        /// Drop from the crest to the inflection, mm.
-        drop_mm: f64,
-        /// Distance along the cloth, mm.
-        arm_mm: f64,
-        /// Which sides fall away.
-        flanks: Flanks,
-    },
+    /// Over a crest.
+    Crown(Crown),
+    /// Over a shoulder.
+    Shoulder(Shoulder),
+    /// Over an outline that turns from crest to shoulder without a corner: whichever bends it more.
+    Rounded(Crown, Shoulder),
 }
 
 /// A stretch of yarn of one curvature.
@@ -100,6 +121,8 @@ pub struct Stretch {
     pub length_mm: f64,
     /// Radius of what the yarn's inner side lies on, mm; zero is an edge, `None` a straight stretch.
     pub lies_on_mm: Option<f64>,
+    /// How it may ease away.
+    pub easing: Easing,
 }
 
 /// One bend a yarn meets.
@@ -113,8 +136,6 @@ pub struct Bend {
     pub system: SystemName,
     /// The stretches of the yarn, in order.
     pub profile: Vec<Stretch>,
-    /// How it may ease away.
-    pub easing: Easing,
     /// Curvature of a larger bend that comes on top in the same plane and sense, 1/mm.
     pub added_per_mm: f64,
     /// Whether the crest points to the face (+1) or to the back (-1).

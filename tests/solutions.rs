@@ -7,9 +7,9 @@
     reason = "helpers of tests"
 )]
 
-use lissom::bend::Flanks;
+use lissom::bend::{Crown, Flanks, Shoulder};
 use lissom::judge::{break_bend, kinked_section};
-use lissom::path::{Crest, crown_peak_per_mm, edge_peak_per_mm, tension_after};
+use lissom::path::{Crest, edge_peak_per_mm, tension_after};
 use lissom::pattern::{Pattern, parse_notation};
 use lissom::weave::{Closure, Wave, share};
 use lissom::yarn::{Outline, Shape};
@@ -202,11 +202,43 @@ fn taut_yarns_match_every_case() {
     }
 }
 
-/// The crown law of `path::rod`, with the outline's own curvature as the upper end, against the exact elastica.
-/// It is an approximation: never more than 5.5 % low, on round plain waves never more than 3 % high.
+/// How sharply a stiff yarn bends by the laws of `path::rod`, as the crown room and the judge put them together: at
+/// every rest the smaller of the outline's curvature and its easing, the largest of all rests.
+fn eased_peak(crest: &Crest, height: f64, ratio: f64, flanks: Flanks) -> f64 {
+    let passing = crest.pass(height).unwrap();
+    let crown = Crown {
+        drop_mm: height / 2.0,
+        arm_mm: crest.spacing_mm / 2.0,
+        flanks,
+    };
+    let half_straight_mm = passing.straight_mm / 2.0;
+    let back_mm = crown.arm_mm - half_straight_mm * passing.slope_rad.cos();
+    let (mut start_rad, mut peak) = (0.0, 0.0_f64);
+    for (index, rest) in passing.rests.iter().enumerate() {
+        let shoulder = Shoulder {
+            back_mm,
+            start_rad,
+            slope_rad: passing.slope_rad,
+            half_straight_mm,
+        };
+        let eased = match (index, crest.section.arcs()) {
+            (0, _) => crown.peak_per_mm(ratio),
+            (_, None) => crown.peak_per_mm(ratio).max(shoulder.peak_per_mm(ratio)),
+            _ => shoulder.peak_per_mm(ratio),
+        };
+        if let Some(radius) = rest.outline_radius_mm {
+            peak = peak.max(eased.min(1.0 / (radius + crest.half_thickness_mm)));
+        }
+        start_rad += rest.turn_rad;
+    }
+    peak
+}
+
+/// The crown and shoulder laws against the exact elastica. They are approximations: never more than 5.5 % low, on
+/// round plain waves never more than 3 % high.
 #[test]
-fn the_crown_law_stands_by_its_stated_accuracy() {
-    let mut rows = 0;
+fn the_easing_laws_stand_by_their_stated_accuracy() {
+    let (mut rows, mut most) = (0, 0.0_f64);
     for case in cases("d_yarn.json") {
         let of = |key: &str| number(&case, key);
         if of("B_Nmm2") == 0.0 {
@@ -223,35 +255,59 @@ fn the_crown_law_stands_by_its_stated_accuracy() {
         let isolated =
             (0..n).any(|i| over[i] != over[(i + 1) % n] && over[i] != over[(i + n - 1) % n]);
         let flanks = if isolated { Flanks::Both } else { Flanks::One };
-        let drop_mm = of("D_mm") / 2.0 - of("g_mm");
-        let free = crown_peak_per_mm(ratio, drop_mm, of("p_mm") / 2.0, flanks);
-        let half = of("yarn_thickness_mm") / 2.0;
         let crest = Crest {
             section: section(&case),
-            half_thickness_mm: half,
+            half_thickness_mm: of("yarn_thickness_mm") / 2.0,
             spacing_mm: of("p_mm"),
         };
-        let lying = crest
-            .pass(2.0 * drop_mm)
-            .unwrap()
-            .rests
-            .iter()
-            .filter_map(|rest| rest.outline_radius_mm)
-            .map(|radius| 1.0 / (radius + half))
-            .fold(0.0, f64::max);
-        let error = free.min(lying) / of("kappa_max_per_mm") - 1.0;
+        let ours = eased_peak(&crest, of("D_mm") - 2.0 * of("g_mm"), ratio, flanks);
+        let error = ours / of("kappa_max_per_mm") - 1.0;
         println!(
             "{} {} {:+.1} %",
             case["id"],
             case["sequence"],
             100.0 * error
         );
+        most = most.max(error);
         assert!(error > -0.055, "{} {error}", case["id"]);
         if case["sequence"] == "OU" && case["section"]["kind"] == "circle" {
             assert!(error < 0.03, "{} {error}", case["id"]);
         }
     }
-    assert!(rows >= 54, "{rows}");
+    assert_eq!(rows, 54);
+    println!("most on the safe side: {:+.0} %", 100.0 * most);
+}
+
+/// Lenses whose yarn turns at the tip: constrained elastica by finite elements (independent, Python, 80 elements,
+/// constraints met to 1e-13). Lens 1.0 x 0.1244 (136 tex of E-glass, 9 per cm, packing 0.65), own thickness the same.
+#[test]
+fn tips_of_lenses_stand_on_the_safe_side_of_finite_elements() {
+    let section = Outline::with_width(Shape::Lens, 1.0, 0.136 / 2.54 / 0.65).unwrap();
+    let crest = Crest {
+        section,
+        half_thickness_mm: section.thickness_mm() / 2.0,
+        spacing_mm: 10.0 / 9.0,
+    };
+    let whole = 2.0 * section.thickness_mm();
+    for (share, lambda, exact) in [
+        (0.60, 3.0, 0.492_283),
+        (0.60, 40.0, 0.544_524),
+        (0.65, 3.0, 1.249_397),
+        (0.65, 11.4, 2.857_130),
+        (0.69, 3.0, 1.672_916),
+        (0.69, 11.4, 4.654_116),
+        (0.74, 3.0, 2.245_923),
+        (0.74, 11.4, 7.183_112),
+        (0.74, 40.0, 14.425_352),
+    ] {
+        let ours = eased_peak(&crest, share * whole, lambda * lambda, Flanks::Both);
+        let error = ours / exact - 1.0;
+        println!("{share} {lambda} {:+.0} %", 100.0 * error);
+        assert!(
+            (-0.01..0.5).contains(&error),
+            "{share} {lambda} {ours} {exact}"
+        );
+    }
 }
 
 /// A rod over an edge, a free filament over an edge, a rod over a pin.

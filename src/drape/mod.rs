@@ -10,7 +10,7 @@
 //! inner face it takes off. The outer face is judged, at rest's pull. Left out: sliding of the yarns over
 //! the corner, more than one layer, the pull of laying.
 
-use crate::bend::{Bend, Stage, Stretch, SystemName};
+use crate::bend::{Bend, Stage, SystemName};
 use crate::spec::{Spec, Tool};
 use crate::weave::{Cloth, crowns};
 use std::f64::consts::FRAC_PI_2;
@@ -52,12 +52,6 @@ fn corner(tool: &Tool, crown: &Bend, cloth: &Cloth) -> Bend {
     bend.stage = Stage::Draping;
     bend.added_per_mm = normal_curvature_per_mm(tool.radius_mm + 0.5 * cloth.thickness_mm, angle);
     bend.governed_by = tool.radius_span.clone();
-    if bend.profile.is_empty() {
-        bend.profile.push(Stretch {
-            length_mm: 0.0,
-            lies_on_mm: None,
-        });
-    }
     bend
 }
 

@@ -1,9 +1,10 @@
 //! What the result hangs on that the spec did not say: every default used, in words with its value.
 
-use crate::bend::Stage;
+use crate::bend::{Stage, SystemName};
 use crate::fibre::FigureName;
+use crate::passage::chain;
 use crate::quantity::{plain, significant};
-use crate::spec::{DEFAULT_TENSION_N_TEX, Spec, System};
+use crate::spec::{DEFAULT_TENSION_N_TEX, Passage, Spec, System};
 use crate::weave::{Closure, Cloth, ClothYarn};
 use crate::yarn::{Basis, DEFAULT_PACKING, DEFAULT_WIDTH_SHARE, Followed, Yarn};
 
@@ -181,9 +182,13 @@ fn outline(word: &str, yarn: &Yarn, woven: &ClothYarn) -> String {
         }
     };
     let squeezed = if woven.laid.squeezed {
-        "; squeezed to its spacing"
+        let share = outline.width_mm() / woven.spacing_mm;
+        format!(
+            "; squeezed to {} of its spacing, all that the other system leaves",
+            significant(share, 3)
+        )
     } else {
-        ""
+        String::new()
     };
     format!("{word} yarn `{}`: {size} ({basis}{squeezed})", yarn.name)
 }
@@ -212,14 +217,34 @@ fn way(spec: &Spec) -> Vec<String> {
             guessed.join(", ")
         ));
     }
-    let elsewhere = |passage: &&crate::spec::Passage| {
-        passage.stage != Stage::Weaving && passage.tension_n.is_none()
-    };
+    let elsewhere =
+        |passage: &&Passage| passage.stage != Stage::Weaving && passage.tension_n.is_none();
     if let Some(passage) = spec.passages.iter().find(elsewhere) {
         said.push(format!(
             "pull while {} taken as that of weaving where no station gives one",
             passage.stage.word()
         ));
+    }
+    for (word, name, system) in [
+        ("warp", SystemName::Warp, &spec.weave.warp),
+        ("weft", SystemName::Weft, &spec.weave.weft),
+    ] {
+        let route: Vec<&Passage> = spec
+            .passages
+            .iter()
+            .filter(|passage| passage.system == name && passage.stage == Stage::Weaving)
+            .collect();
+        let ends = chain(&route, system.tension_n)
+            .last()
+            .copied()
+            .unwrap_or(system.tension_n);
+        if (ends / system.tension_n - 1.0).abs() > 0.05 {
+            said.push(format!(
+                "the {word}'s stations end at {} cN, the fell has {} cN: a station's tension or friction does not fit",
+                significant(100.0 * ends, 3),
+                significant(100.0 * system.tension_n, 3)
+            ));
+        }
     }
     if !spec.passages.is_empty() {
         said.push("straight arms on both sides of every station, long against the bend".to_owned());

@@ -5,6 +5,7 @@
 //!
 //! | file | what is in it |
 //! | --- | --- |
+//! | `easing` | how far a filament stays away by its own stiffness, elastic and past yield |
 //! | `filament` | how each filament through the yarn's thickness is bent and pulled at a bend |
 //! | `limits` | the limits of brittle, fibrillar and ductile fibres under pull and bending |
 //! | `kinked` | the kinked section: elastic in tension, yielding in compression |
@@ -13,6 +14,7 @@
 //! | `explain` | the method behind every code |
 
 mod code;
+mod easing;
 mod explain;
 mod filament;
 mod finding;

@@ -1,7 +1,7 @@
 //! The judge on bends made by hand.
 
 use super::*;
-use crate::bend::{Easing, Flanks, Meets, Stage, Stretch, SystemName};
+use crate::bend::{Crown, Easing, Flanks, Meets, Stage, Stretch, SystemName};
 use crate::fibre::{Fibre, library};
 use crate::yarn::{Count, CountGiven, Shape, Vary, YarnForm};
 
@@ -44,8 +44,8 @@ fn bend(radius_mm: f64, pull_n: f64) -> Bend {
         profile: vec![Stretch {
             length_mm: 1.0,
             lies_on_mm: Some(radius_mm),
+            easing: Easing::Held,
         }],
-        easing: Easing::Held,
         added_per_mm: 0.0,
         plane: 1,
         pull_n,
@@ -180,7 +180,7 @@ fn binding_moves_the_worst_filament_outwards() {
     let finding = judged(&bend(20.0, 0.0), bonded);
     let (k, y) = (1.0 / 20.1, 0.1 - 0.0035);
     let of_filament = k / (1.0 + k * y);
-    let stress = 230_000.0 * (0.0035 + y) * of_filament;
+    let stress = 230_000.0 * (0.0035 * of_filament + y * k);
     assert_eq!(finding.limit, Some(Limit::Fracture));
     let total = finding.filament.axial_stress_mpa + finding.bending_stress_mpa();
     assert!((total / stress - 1.0).abs() < 1e-9, "{total} {stress}");
@@ -194,7 +194,7 @@ fn binding_moves_the_worst_filament_outwards() {
 #[test]
 fn over_a_knife_edge_stiffness_caps_the_curvature() {
     let mut edge = bend(0.0, 3.0);
-    edge.easing = Easing::LongArms { turn_rad: 1.0 };
+    edge.profile[0].easing = Easing::LongArms { turn_rad: 1.0 };
     let glass = yarn("e-glass", 1000, 9.0);
     let strain = glass.axial_stress_mpa(3.0) / 73_000.0;
     let finding = judged(&edge, glass);
@@ -208,7 +208,7 @@ fn over_a_knife_edge_stiffness_caps_the_curvature() {
     );
     // A round guide larger than that is lain on.
     let mut guide = bend(5.0, 3.0);
-    guide.easing = Easing::LongArms { turn_rad: 1.0 };
+    guide.profile[0].easing = Easing::LongArms { turn_rad: 1.0 };
     assert!(
         (judged(&guide, yarn("e-glass", 1000, 9.0))
             .radius_mm()
@@ -223,11 +223,11 @@ fn over_a_knife_edge_stiffness_caps_the_curvature() {
 #[test]
 fn crowns_ease_and_corners_add() {
     let mut crown = bend(0.05, 0.5);
-    crown.easing = Easing::Crown {
+    crown.profile[0].easing = Easing::Crown(Crown {
         drop_mm: 0.05,
         arm_mm: 0.3,
         flanks: Flanks::Both,
-    };
+    });
     let wire = || yarn("stainless-annealed", 1, 100.0);
     let eased = judged(&crown, wire());
     assert!(eased.radius_mm().unwrap() > 0.1 && eased.filament.free_per_mm.unwrap() < 10.0);
@@ -289,4 +289,107 @@ fn states_rank_as_the_contract_says() {
         State::Breaks,
     ];
     assert!(order.windows(2).all(|pair| pair[0] < pair[1]));
+}
+
+/// Bonded and bent hard, the innermost aramid filament is pressed as a whole: all of it yields, none is in tension.
+#[test]
+fn a_bonded_inner_filament_is_pressed_as_a_whole() {
+    let mut bonded = yarn("aramid-std", 1000, 12.0);
+    bonded.binding = 1.0;
+    let finding = judged(&bend(3.0, 0.0), bonded);
+    assert_eq!(
+        (finding.state, finding.filament.position),
+        (State::Kinks, Position::Inside)
+    );
+    let kink = finding
+        .judged
+        .checks
+        .iter()
+        .flatten()
+        .find(|c| c.limit == Limit::Kink)
+        .unwrap();
+    // y = -0.094, centreline 1/3.1: 72 000 (0.006/3.006 + 0.094/3.1) = 2327 MPa (hand calculation).
+    assert!((kink.applied - 2326.9).abs() < 0.5, "{}", kink.applied);
+    assert!(
+        finding
+            .judged
+            .checks
+            .iter()
+            .flatten()
+            .all(|check| check.limit != Limit::Fracture)
+    );
+}
+
+/// A bonded twisted yarn meets the inside of the bend too: pitch carbon fails there in compression. The bonded strain
+/// comes of the yarn's own curvature, not of the helix: over a large guide it is small.
+#[test]
+fn a_bonded_twisted_yarn_meets_both_sides() {
+    let mut twisted = yarn("carbon-pitch-uhm", 1000, 10.0);
+    (twisted.binding, twisted.twist_per_mm) = (1.0, 0.01);
+    let finding = judged(&bend(10.0, 0.0), twisted.clone());
+    assert_eq!(finding.limit, Some(Limit::Compression));
+    twisted.twist_per_mm = 0.4;
+    let large = judged(&bend(500.0, 0.0), twisted);
+    let bonded = 780_000.0 * 0.095 / 500.1;
+    assert!((large.filament.axial_stress_mpa.abs() - bonded).abs() < 1e-6);
+}
+
+/// Easing has no jump where twist or binding begins.
+#[test]
+fn easing_is_continuous_at_no_twist_and_no_binding() {
+    let mut edge = bend(0.0, 3.0);
+    edge.profile[0].easing = Easing::LongArms { turn_rad: 1.0 };
+    let free = judged(&edge, yarn("e-glass", 1000, 9.0)).reserve().unwrap();
+    let mut twisted = yarn("e-glass", 1000, 9.0);
+    twisted.twist_per_mm = 1e-7;
+    assert!((judged(&edge, twisted).reserve().unwrap() / free - 1.0).abs() < 1e-6);
+    let mut bonded = yarn("e-glass", 1000, 9.0);
+    bonded.binding = 1e-9;
+    assert!((judged(&edge, bonded).reserve().unwrap() / free - 1.0).abs() < 1e-6);
+}
+
+/// The most loaded filament counts twice, in its own stress and in the pull that bends it round an edge.
+#[test]
+fn tension_spread_is_a_larger_pull_on_one_filament() {
+    let mut edge = bend(0.0, 3.0);
+    edge.profile[0].easing = Easing::LongArms { turn_rad: 1.0 };
+    for binding in [0.0, 0.3] {
+        let mut spread = yarn("e-glass", 1000, 9.0);
+        spread.binding = binding;
+        let mut doubled = edge.clone();
+        doubled.pull_n = 6.0;
+        let twice = judged(&doubled, spread.clone()).reserve().unwrap();
+        spread.tension_spread = 2.0;
+        assert!((judged(&edge, spread).reserve().unwrap() / twice - 1.0).abs() < 1e-12);
+    }
+}
+
+/// Past yield a wire does not stay away elastically: over a knife edge under 160 MPa it bends to more than half of the
+/// strain at break, and past the onset of kinks an aramid lies on.
+#[test]
+fn beyond_the_elastic_a_filament_follows_what_it_is_bent_over() {
+    let area = std::f64::consts::PI / 4.0 * 0.01;
+    let mut edge = bend(0.0, 160.0 * area);
+    edge.profile[0].easing = Easing::LongArms {
+        turn_rad: 60f64.to_radians(),
+    };
+    let wire = judged(&edge, yarn("stainless-annealed", 1, 100.0));
+    let strain = wire
+        .judged
+        .checks
+        .iter()
+        .flatten()
+        .find(|c| c.limit == Limit::Strain)
+        .unwrap();
+    // True stress at break 0.78 GPa at ln 1.3; E_t = 530/(0.2624 - 0.0013) = 2030 MPa; 4 sqrt(160/2030) sin 15 deg = 0.2907.
+    assert!(
+        (strain.applied - 0.2907 - 160.0 / 195_000.0).abs() < 2e-4,
+        "{}",
+        strain.applied
+    );
+    let mut guide = bend(0.05, 3.0);
+    guide.profile[0].easing = Easing::LongArms { turn_rad: 1.2 };
+    let aramid = judged(&guide, yarn("pbo", 1000, 12.0));
+    assert!((aramid.radius_mm().unwrap() - 0.056).abs() < 1e-9);
+    assert!(aramid.fails(false, false));
 }

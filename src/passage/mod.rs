@@ -2,7 +2,7 @@
 //!
 //! The pull grows along the route by friction (see `path::guide`). The tension given for the weave is the
 //! mean at the fell, so the stations before it in the same stage see less; a station with its own tension
-//! restarts the chain there (creel, beam, spool). Each station is judged behind its wrap, where the pull is
+//! restarts the chain there (creel, beam, spool); those before it end at that tension. Each station is judged behind its wrap, where the pull is
 //! largest, at the peak. Over a small turn a stiff strand does not close up to the guide: the edge law of
 //! `path::rod` caps the curvature, the judge takes the smaller.
 //!
@@ -15,19 +15,22 @@ use crate::weave::Cloth;
 
 /// Mean pull behind each of the stations of one yarn, N, in order: they share a stage.
 ///
-/// Without a restart the last station ends at `fell_n`; from a restart on the chain runs forward.
+/// Backwards from a known pull: in front of a station that restarts the chain, else at the fell. Forwards behind it.
 pub fn chain(stations: &[&Passage], fell_n: f64) -> Vec<f64> {
     let mut behind = vec![0.0; stations.len()];
     let first_restart = stations
         .iter()
         .position(|station| station.tension_n.is_some());
-    // Backwards from the fell, over the stations before any restart.
-    let mut pull = fell_n;
-    for index in (0..first_restart.unwrap_or(stations.len())).rev() {
+    let before_restart = first_restart.unwrap_or(stations.len());
+    let mut pull = stations
+        .get(before_restart)
+        .and_then(|station| station.tension_n)
+        .unwrap_or(fell_n);
+    for index in (0..before_restart).rev() {
         behind[index] = pull;
         pull = tension_after(pull, -stations[index].friction, stations[index].turn_rad);
     }
-    for index in first_restart.unwrap_or(stations.len())..stations.len() {
+    for index in before_restart..stations.len() {
         let station = stations[index];
         let before = station.tension_n.unwrap_or_else(|| behind[index - 1]);
         behind[index] = tension_after(before, station.friction, station.turn_rad);
@@ -55,7 +58,7 @@ pub fn stations(spec: &Spec, cloth: &Cloth) -> Vec<Bend> {
             let route: Vec<&Passage> = here.iter().map(|(_, passage)| *passage).collect();
             let pulls = chain(&route, mean_tension_n(weave, system));
             for ((index, passage), pull_n) in here.into_iter().zip(pulls) {
-                bends.push((index, station(passage, weave, cloth, weave.peak * pull_n)));
+                bends.push((index, station(passage, cloth, weave.peak * pull_n)));
             }
         }
     }
@@ -70,13 +73,12 @@ fn mean_tension_n(weave: &Weave, system: SystemName) -> f64 {
     }
 }
 
-fn station(passage: &Passage, weave: &Weave, cloth: &Cloth, pull_n: f64) -> Bend {
+fn station(passage: &Passage, cloth: &Cloth, pull_n: f64) -> Bend {
     let laid = match passage.system {
         SystemName::Warp => &cloth.warp.laid,
         SystemName::Weft => &cloth.weft.laid,
     };
     let centre_mm = passage.radius_mm + 0.5 * laid.outline.thickness_mm();
-    debug_assert!(weave.peak >= 1.0);
     Bend {
         place: passage.name.clone().into(),
         stage: passage.stage,
@@ -84,10 +86,10 @@ fn station(passage: &Passage, weave: &Weave, cloth: &Cloth, pull_n: f64) -> Bend
         profile: vec![Stretch {
             length_mm: centre_mm * passage.turn_rad,
             lies_on_mm: Some(passage.radius_mm),
+            easing: Easing::LongArms {
+                turn_rad: passage.turn_rad,
+            },
         }],
-        easing: Easing::LongArms {
-            turn_rad: passage.turn_rad,
-        },
         added_per_mm: 0.0,
         plane: 1,
         pull_n,
@@ -146,8 +148,8 @@ mod tests {
         let behind = chain(&route, 1.0);
         let factor = |mu: f64, deg: f64| (mu * deg.to_radians()).exp();
         assert!(
-            (behind[0] - 1.0).abs() < 1e-12,
-            "before a restart the chain ends at the fell's pull"
+            (behind[0] - 0.4).abs() < 1e-12,
+            "behind it is in front of the restart"
         );
         assert!((behind[1] - 0.4 * factor(0.3, 45.0)).abs() < 1e-12);
         assert!((behind[2] - behind[1] * factor(0.25, 180.0)).abs() < 1e-12);

@@ -3,7 +3,7 @@
 //! | file | what is in it |
 //! | --- | --- |
 //! | `taut` | a tight, flexible thread from the crest of one section to the trough under the next |
-//! | `rod` | the peak curvature of a stiff thread under pull: over an edge, over a pin, at a crown |
+//! | `rod` | the peak curvature of a stiff thread under pull: over an edge, at a crown, at a shoulder; wire past yield |
 //! | `helix` | curvature of a filament in a twisted, bent yarn |
 //! | `guide` | tension along a row of guides |
 
@@ -14,5 +14,5 @@ mod taut;
 
 pub use guide::tension_after;
 pub use helix::{bent_helix_curvature_per_mm, bent_helix_peak_per_mm, helix_curvature_per_mm};
-pub use rod::{crown_peak_per_mm, edge_peak_per_mm};
+pub use rod::{Hardening, edge_peak_per_mm};
 pub use taut::{Crest, Passing, Rest};

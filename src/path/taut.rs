@@ -108,6 +108,7 @@ impl Crest {
         let Some(arcs) = self.section.arcs() else {
             return self.slope_on_ellipse(depth_mm);
         };
+        let mut from_rad = 0.0;
         for arc in arcs {
             let x = half_spacing - arc.centre_x_mm;
             let z = depth_mm - arc.centre_z_mm;
@@ -116,13 +117,16 @@ impl Crest {
             let square = x * x + z * z - reach * reach;
             // At the exact jam s = 0, and rounding may put the square a hair below.
             if square < -1e-13 * reach * reach {
+                from_rad = arc.until_rad;
                 continue;
             }
             let straight = square.max(0.0).sqrt();
             let slope = (x * reach - z * straight).atan2(z * reach + x * straight);
-            if slope <= arc.until_rad {
+            // A root before the arc begins is none: the thread would have left the arc before (rounding aside).
+            if slope <= arc.until_rad && slope >= from_rad - 1e-12 {
                 return Some((slope.max(0.0), straight));
             }
+            from_rad = arc.until_rad;
         }
         None
     }

@@ -1,6 +1,6 @@
 //! Text for a terminal: the verdict first, the worst bend, then every bend, the cloth, what it hangs on.
 
-use super::check::{BendRow, CheckReport, SystemReport};
+use super::check::{BendRow, CheckReport, LimitRow, SystemReport};
 use super::table::{folded, table};
 use crate::quantity::{plain, significant};
 use anstyle::{AnsiColor, Style};
@@ -155,13 +155,20 @@ pub(super) fn bend_sentences(bend: &BendRow) -> Vec<String> {
         || "straight".to_owned(),
         |radius| format!("bent to {} mm", significant(radius, 3)),
     );
+    // Past yield a stress by the elastic formula means nothing to a reader: tell the strain.
+    let bending = match bend.limits.iter().find_map(|row| row.applied_strain) {
+        Some(strain) => format!(
+            "{} % of strain at the surface",
+            significant(100.0 * strain, 3)
+        ),
+        None => format!("{} MPa of bending", significant(bend.bending_stress_mpa, 3)),
+    };
     said.push(format!(
-        "{}: {limit} reserve {} [{}]; {} {radius}, {} MPa of bending on {} MPa of pull ({} cN)",
+        "{}: {limit} reserve {} [{}]; {} {radius}, {bending}, {} MPa of pull ({} cN)",
         bend.state,
         significant(reserve, 3),
         bend.code,
         bend.governs,
-        significant(bend.bending_stress_mpa, 3),
         significant(bend.axial_stress_mpa, 3),
         significant(100.0 * bend.tension_n, 3)
     ));
@@ -214,13 +221,25 @@ pub(super) const BEND_COLUMNS: [&str; 10] = [
     "bend MPa",
 ];
 
+/// The governing limit; where the fibre kinks or yields, also how far it is from breaking.
+fn limit_cell(bend: &BendRow) -> String {
+    let governs = bend.limit.unwrap_or("-");
+    let breaks = |row: &&LimitRow| ["fracture", "strain"].contains(&row.limit);
+    match bend.limits.iter().skip(1).find(breaks) {
+        Some(row) if ["kinks", "yields"].contains(&bend.state) => {
+            format!("{governs}; {} {}", row.limit, significant(row.reserve, 3))
+        }
+        _ => governs.to_owned(),
+    }
+}
+
 /// One bend as the cells of its row.
 pub(super) fn bend_cells(bend: &BendRow) -> [String; 10] {
     let number = |value: Option<f64>| value.map_or_else(|| "-".to_owned(), |v| significant(v, 3));
     [
         bend.state.to_owned(),
         number(bend.reserve),
-        bend.limit.unwrap_or("-").to_owned(),
+        limit_cell(bend),
         bend.place.clone(),
         bend.stage.to_owned(),
         bend.yarn.clone(),

@@ -90,6 +90,18 @@ fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
             SystemName::Weft => &weave.weft.yarn,
             _ => &weave.warp.yarn,
         });
+    if let (Some(yarn), Some(temperature)) = (yarn, &temperature)
+        && yarn.fibre.max_temp_c.is_none()
+    {
+        table.push(
+            Problem::at(
+                temperature.span.clone(),
+                format!("what fibre `{}` stands in air is not known", yarn.fibre.id),
+                "cannot be judged",
+            )
+            .help("give `max_temperature` under the fibre, or leave `temperature` out"),
+        );
+    }
     let tension_n = read_tension(table, yarn.map(|yarn| Some(&**yarn)));
     let (system, name, radius, turn) = (system?, name?, radius?, turn?);
     // More than a few full wraps is a slip of the unit: e to the power of friction times turn explodes.

@@ -275,7 +275,9 @@ pub fn read_tension(table: &Table<'_>, yarn: Option<Option<&Yarn>>) -> Option<f6
 
 fn lay_problem(error: &LayError, spec: &SpecYarn, yarn: &Yarn, sett: &Placed<f64>) -> Problem {
     let span = match error {
-        LayError::TooDense { .. } | LayError::NoOutline { .. } => spec.form_span.clone(),
+        LayError::TooDense { .. }
+        | LayError::NoOutline { .. }
+        | LayError::ThinnerThanFilament { .. } => spec.form_span.clone(),
         LayError::SolidTooWide { .. } | LayError::OnEdge { .. } => sett.span.clone(),
     };
     // The largest sett at which the yarn still lies beside its neighbours: a circle in the spacing.
@@ -286,7 +288,19 @@ fn lay_problem(error: &LayError, spec: &SpecYarn, yarn: &Yarn, sett: &Placed<f64
             yarn.form.packing.unwrap_or(CLOSEST_PACKING)
         };
     let largest_per_cm = 10.0 / (4.0 * area / std::f64::consts::PI).sqrt();
-    Problem::at(span, format!("yarn `{}`: {error}", yarn.name), "too close").help(format!(
+    let message = format!("yarn `{}`: {error}", yarn.name);
+    match error {
+        LayError::TooDense { .. } | LayError::NoOutline { .. } => {
+            return Problem::at(span, message, "does not fit")
+                .help("check linear density, width and thickness against each other");
+        }
+        LayError::ThinnerThanFilament { .. } => {
+            return Problem::at(span, message, "too thin")
+                .help("check width, thickness, flatness and packing");
+        }
+        LayError::SolidTooWide { .. } | LayError::OnEdge { .. } => {}
+    }
+    Problem::at(span, message, "too close").help(format!(
         "this yarn lies side by side up to {} /cm; interlacing needs more room still",
         floor_3_digits(largest_per_cm)
     ))

@@ -10,6 +10,9 @@ use crate::span::Span;
 use crate::yarn::{CLOSEST_PACKING, Count, CountError, CountGiven, Outline, Shape, Yarn, YarnForm};
 use std::sync::Arc;
 
+/// Steeper than any yarn is spun (common practice, no source).
+const STEEPEST_HELIX_DEG: f64 = 60.0;
+
 /// A yarn of the spec, and where it stands.
 #[derive(Debug, Clone)]
 pub struct SpecYarn {
@@ -105,7 +108,7 @@ fn read_one(name: &Placed<String>, table: &Table<'_>, fibres: &Fibres) -> Option
         bending_rigidity_n_mm2: rigidity.value(),
         tension_spread: spread.unwrap_or(1.0),
     };
-    form_agrees(table, &yarn).then_some(yarn)
+    (form_agrees(table, &yarn) && twist_holds(table, &yarn)).then_some(yarn)
 }
 
 fn read_twist(table: &Table<'_>) -> Option<(f64, Option<TwistDirection>)> {
@@ -159,6 +162,26 @@ fn read_packing(table: &Table<'_>) -> Option<f64> {
         return None;
     }
     Some(packing.value)
+}
+
+/// Whether the twist is one that a yarn can hold: a surface helix of at most 60 degrees.
+fn twist_holds(table: &Table<'_>, yarn: &Yarn) -> bool {
+    let surface_deg = yarn.surface_helix_rad().to_degrees();
+    if surface_deg <= STEEPEST_HELIX_DEG {
+        return true;
+    }
+    let span = table.place_of("twist").unwrap_or_else(|| table.span());
+    table.push(
+        Problem::at(
+            span,
+            format!("`twist` lays the surface filaments at {surface_deg:.0} deg to the yarn"),
+            "too much twist",
+        )
+        .help(format!(
+            "yarns hold up to about {STEEPEST_HELIX_DEG} deg; check the unit, \"60 /m Z\""
+        )),
+    );
+    false
 }
 
 /// Whether the sizes agree with each other and the yarn, whatever the spacing; problems are kept.

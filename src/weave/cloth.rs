@@ -210,7 +210,12 @@ fn closure(weave: &Weave) -> Closure {
         (Some(warp), Some(weft)) => Closure::BothCrimps(warp, weft),
         (Some(warp), None) => Closure::WarpCrimp(warp),
         (None, Some(weft)) => Closure::WeftCrimp(weft),
-        (None, None) if weave.warp.tension_given && weave.weft.tension_given => {
+        // Two slack systems balance at any split: nothing is known.
+        (None, None)
+            if weave.warp.tension_given
+                && weave.weft.tension_given
+                && weave.warp.tension_n + weave.weft.tension_n > 0.0 =>
+        {
             Closure::Tensions(weave.warp.tension_n, weave.weft.tension_n)
         }
         (None, None) => Closure::EqualHeights,
@@ -220,6 +225,9 @@ fn closure(weave: &Weave) -> Closure {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::pattern::Weaves;
+    use crate::span::SourceText;
+    use crate::spec::Spec;
     use geo::{Area, BooleanOps, MultiPolygon, Rect};
 
     /// Counted independently over one square metre: areal mass (g/m2), cover (point sampling of the plan view).
@@ -275,6 +283,48 @@ mod tests {
             let share = cover((width.0, 1.0 / n1), (width.1, 1.0 / n2));
             assert!((share - covered).abs() < 1e-12, "{share} {covered}");
         }
+    }
+
+    fn cloth(warp: &str, weft: &str) -> Cloth {
+        let text = format!(
+            "name = \"t\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"68 tex\"\n[weave]\npattern = \"plain\"\n\
+             warp = {{ yarn = \"y\", sett = \"12 /cm\"{warp} }}\nweft = {{ yarn = \"y\", sett = \"10 /cm\"{weft} }}\n"
+        );
+        let spec = Spec::read(SourceText::new("t", text), &Weaves::builtin()).unwrap();
+        Cloth::build(&spec.weave, 1.0).unwrap()
+    }
+
+    #[test]
+    fn the_spec_closes_the_height_of_its_own_system() {
+        let warp = cloth(", crimp = \"1.2 %\"", "");
+        assert!(
+            (warp.warp.crimp - 0.012).abs() < 1e-9,
+            "{}",
+            warp.warp.crimp
+        );
+        let weft = cloth("", ", crimp = \"0.4 %\"");
+        assert!(
+            (weft.weft.crimp - 0.004).abs() < 1e-9,
+            "{}",
+            weft.weft.crimp
+        );
+        // A taut warp and a slack weft: the weft takes the wave.
+        let pulled = cloth(", tension = \"90 cN\"", ", tension = \"30 cN\"");
+        assert!(pulled.warp.wave_height_mm < pulled.weft.wave_height_mm);
+        let both = cloth(", crimp = \"40 %\"", ", crimp = \"40 %\"");
+        assert!(both.closed.jam_limited, "no such crimps exist");
+        let slack = cloth(", tension = \"0 cN\"", ", tension = \"0 cN\"");
+        assert_eq!(slack.closed.by, Closure::EqualHeights);
+    }
+
+    /// By hand from the cloth's own crimp: 1.2 ends per mm of 68 tex, 1.0 picks, 2.54 g/cm3.
+    #[test]
+    fn mass_and_fibre_volume_count_the_crimp() {
+        let cloth = cloth(", crimp = \"1.2 %\"", "");
+        let mass = 1.2 * 68.0 * 1.012 + 1.0 * 68.0 * (1.0 + cloth.weft.crimp);
+        assert!((cloth.areal_mass_g_m2 - mass).abs() < 1e-6);
+        let volume = mass / 1e3 / 2.54 / cloth.thickness_mm;
+        assert!((cloth.fibre_volume_fraction - volume).abs() < 1e-9);
     }
 
     /// Cover by the union of rectangles over four repeats (geo): the formula's own definition, drawn.

@@ -5,7 +5,7 @@
 //! friction and set keep. Brittle fibres are worse off with the pull, fibres weak in compression without.
 
 use super::cloth::{Cloth, ClothYarn};
-use crate::bend::{Bend, Easing, Meets, Stage, Stretch, SystemName};
+use crate::bend::{Bend, Crown, Easing, Meets, Shoulder, Stage, Stretch, SystemName};
 use crate::spec::{System, Weave};
 
 /// One crown bend for each system and state, warp first.
@@ -32,10 +32,15 @@ fn crown(
     stage: Stage,
     pull_n: f64,
 ) -> Bend {
-    let profile = yarn.passing.rests.iter().map(|rest| Stretch {
-        length_mm: rest.length_mm,
-        lies_on_mm: rest.outline_radius_mm,
-    });
+    let mut profile = profile(yarn, crossed_spacing_mm);
+    if profile.is_empty() {
+        // A straight yarn still carries its pull, and its twist.
+        profile.push(Stretch {
+            length_mm: crossed_spacing_mm,
+            lies_on_mm: None,
+            easing: Easing::Held,
+        });
+    }
     // Each change has the half crown before it and the half crown behind it.
     let halves_per_mm =
         2.0 * yarn.wave.changes_per_crossing() / (crossed_spacing_mm * (1.0 + yarn.crimp));
@@ -46,12 +51,7 @@ fn crown(
         },
         stage,
         system: name,
-        profile: profile.collect(),
-        easing: Easing::Crown {
-            drop_mm: 0.5 * yarn.wave_height_mm,
-            arm_mm: 0.5 * crossed_spacing_mm,
-            flanks: yarn.wave.flanks(),
-        },
+        profile,
         added_per_mm: 0.0,
         plane: 1,
         pull_n,
@@ -59,5 +59,124 @@ fn crown(
         meets: Meets::TimesPerMetre(1e3 * halves_per_mm),
         governed_by: system.span.clone(),
         heated_by: None,
+    }
+}
+
+/// The half crown from the crest to the straight piece; every rest with the way in which it may ease.
+fn profile(yarn: &ClothYarn, crossed_spacing_mm: f64) -> Vec<Stretch> {
+    let crown = Crown {
+        drop_mm: 0.5 * yarn.wave_height_mm,
+        arm_mm: 0.5 * crossed_spacing_mm,
+        flanks: yarn.wave.flanks(),
+    };
+    let half_straight_mm = 0.5 * yarn.passing.straight_mm;
+    let slope_rad = yarn.passing.slope_rad;
+    let back_mm = crown.arm_mm - half_straight_mm * slope_rad.cos();
+    let rolls = yarn.wave.crest().section.arcs().is_none();
+    let mut start_rad = 0.0;
+    let mut from_crest = true;
+    let mut stretches = Vec::with_capacity(yarn.passing.rests.len());
+    for rest in &yarn.passing.rests {
+        let shoulder = Shoulder {
+            back_mm,
+            start_rad,
+            slope_rad,
+            half_straight_mm,
+        };
+        let easing = match (rest.outline_radius_mm, from_crest) {
+            (None, _) => Easing::Held,
+            (Some(_), true) => Easing::Crown(crown),
+            (Some(_), false) if rolls => Easing::Rounded(crown, shoulder),
+            (Some(_), false) => Easing::Shoulder(shoulder),
+        };
+        from_crest = false;
+        start_rad += rest.turn_rad;
+        stretches.push(Stretch {
+            length_mm: rest.length_mm,
+            lies_on_mm: rest.outline_radius_mm,
+            easing,
+        });
+    }
+    stretches
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::pattern::Weaves;
+    use crate::span::SourceText;
+    use crate::spec::Spec;
+
+    fn bends(pattern: &str, yarn: &str) -> (Spec, Cloth, Vec<Bend>) {
+        let text = format!(
+            "name = \"t\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"68 tex\"\n{yarn}\n[weave]\npattern = \"{pattern}\"\n\
+             rest = \"20 %\"\npeak = 3\nwarp = {{ yarn = \"y\", sett = \"12 /cm\", tension = \"50 cN\" }}\n\
+             weft = {{ yarn = \"y\", sett = \"8 /cm\", tension = \"50 cN\" }}\n"
+        );
+        let spec = Spec::read(SourceText::new("t", text), &Weaves::builtin()).unwrap();
+        let cloth = Cloth::build(&spec.weave, 1.0).unwrap();
+        let bends = crowns(&spec.weave, &cloth);
+        (spec, cloth, bends)
+    }
+
+    #[test]
+    fn crowns_carry_the_peak_on_the_loom_and_the_rest_at_rest() {
+        let (_, _, bends) = bends("plain", "");
+        let told: Vec<_> = bends.iter().map(|b| (b.system, b.stage)).collect();
+        use SystemName::{Warp, Weft};
+        assert_eq!(
+            told,
+            [
+                (Warp, Stage::Loom),
+                (Warp, Stage::Rest),
+                (Weft, Stage::Loom),
+                (Weft, Stage::Rest)
+            ]
+        );
+        for bend in &bends {
+            let pull = if bend.stage == Stage::Loom { 1.5 } else { 0.1 };
+            assert!((bend.pull_n - pull).abs() < 1e-12, "{bend:?}");
+        }
+    }
+
+    /// The warp crosses the picks: its inflection is half a pick spacing (0.625 mm) away, half its wave down.
+    #[test]
+    fn a_crown_reaches_to_the_inflection() {
+        let (_, cloth, bends) = bends("plain", "");
+        let Easing::Crown(crown) = bends[0].profile[0].easing else {
+            panic!("{:?}", bends[0].profile)
+        };
+        assert!((crown.arm_mm - 0.625).abs() < 1e-12);
+        assert!((crown.drop_mm - cloth.warp.wave_height_mm / 2.0).abs() < 1e-12);
+        assert_eq!(crown.flanks, crate::bend::Flanks::Both);
+        let (_, _, twill) = super::tests::bends("twill 2/2", "");
+        let Easing::Crown(crown) = twill[0].profile[0].easing else {
+            panic!("{:?}", twill[0].profile)
+        };
+        assert_eq!(crown.flanks, crate::bend::Flanks::One);
+    }
+
+    #[test]
+    fn a_flat_yarn_turns_at_its_shoulder() {
+        let (_, cloth, bends) = bends("plain", "shape = \"racetrack\"");
+        assert!(matches!(bends[0].profile[0].easing, Easing::Held));
+        let Easing::Shoulder(shoulder) = bends[0].profile[1].easing else {
+            panic!("{:?}", bends[0].profile)
+        };
+        assert_eq!(shoulder.start_rad, 0.0);
+        // Back to the crest and on to the inflection make half a spacing.
+        let reach = shoulder.back_mm + shoulder.half_straight_mm * shoulder.slope_rad.cos();
+        assert!((reach - 0.625).abs() < 1e-12);
+        assert!((shoulder.slope_rad - cloth.warp.slope_rad).abs() < 1e-12);
+    }
+
+    /// Plain: two half crowns for every crossing, 8 picks per cm of cloth, in 1 + crimp of yarn.
+    #[test]
+    fn crowns_are_counted_per_metre_of_yarn() {
+        let (_, cloth, bends) = bends("plain", "");
+        let Meets::TimesPerMetre(times) = bends[0].meets else {
+            panic!("{:?}", bends[0].meets)
+        };
+        assert!((times - 2.0 * 800.0 / (1.0 + cloth.warp.crimp)).abs() < 1e-9);
     }
 }

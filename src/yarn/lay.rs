@@ -112,6 +112,16 @@ pub enum LayError {
         /// Resulting packing.
         packing: f64,
     },
+    /// The size given is thinner than one filament.
+    #[error(
+        "a yarn {thickness_mm} mm thick is thinner than one of its filaments, {diameter_mm} mm"
+    )]
+    ThinnerThanFilament {
+        /// Thickness that follows.
+        thickness_mm: f64,
+        /// Filament diameter.
+        diameter_mm: f64,
+    },
     /// The sizes given make no outline of this shape.
     #[error("a {shape} cannot be {width_mm} mm wide and {thickness_mm} mm thick")]
     NoOutline {
@@ -128,16 +138,22 @@ impl Yarn {
     /// The shape given, or the default for the yarn's twist.
     pub fn shape(&self) -> Shape {
         self.form.shape.unwrap_or_else(|| {
-            let round_radius = (self.fibre_area_mm2()
-                / (PI * self.form.packing.unwrap_or(DEFAULT_PACKING)))
-            .sqrt();
-            let surface = helix_angle_rad(round_radius, self.twist_per_mm);
-            if self.is_monofilament() || surface.to_degrees() > ROUND_HELIX_DEG {
+            let twisted = self.surface_helix_rad().to_degrees() > ROUND_HELIX_DEG;
+            if self.is_monofilament() || twisted {
                 Shape::Round
             } else {
                 Shape::Lens
             }
         })
+    }
+
+    /// Angle of the surface filaments to the axis of the yarn, were it round at its packing, rad.
+    pub fn surface_helix_rad(&self) -> f64 {
+        let packing = self.form.packing.unwrap_or(DEFAULT_PACKING);
+        helix_angle_rad(
+            (self.fibre_area_mm2() / (PI * packing)).sqrt(),
+            self.twist_per_mm,
+        )
     }
 
     /// Lays the yarn beside its neighbours, `spacing_mm` apart.
@@ -150,12 +166,26 @@ impl Yarn {
         }
         let (outline, basis) = self.free_outline(spacing_mm, vary.packing)?;
         let area_mm2 = outline.area_mm2();
+        let diameter_mm = self.count.filament_diameter_mm;
         let varied = match basis {
             Basis::OneSize | Basis::Assumed if vary.flatness != 1.0 => {
                 let flatness = (outline.flatness() * vary.flatness).max(1.0);
                 Outline::with_flatness(outline.shape(), flatness, area_mm2).unwrap_or(outline)
             }
             _ => outline,
+        };
+        // No yarn is thinner than one filament: an assumed one is as much narrower.
+        let varied = match basis {
+            _ if varied.thickness_mm() >= diameter_mm => varied,
+            Basis::Assumed => Outline::with_thickness(varied.shape(), diameter_mm, area_mm2)
+                .or_else(|| Outline::round((4.0 * area_mm2 / PI).sqrt()))
+                .unwrap_or(varied),
+            _ => {
+                return Err(LayError::ThinnerThanFilament {
+                    thickness_mm: varied.thickness_mm(),
+                    diameter_mm,
+                });
+            }
         };
         let room_mm = vary.room * spacing_mm;
         let squeezed = varied.width_mm() > room_mm * (1.0 + 1e-12);
@@ -385,6 +415,21 @@ mod tests {
         assert!(matches!(
             yarn.laid_at(0.2, Vary::default()),
             Err(LayError::OnEdge { .. })
+        ));
+    }
+
+    /// Two filaments of 0.14 mm lie side by side at the thinnest, not as a film across the spacing.
+    #[test]
+    fn no_yarn_is_thinner_than_one_filament() {
+        let mut few = glass(66.0, Some(2), 0.0, YarnForm::default());
+        let d = few.count.filament_diameter_mm;
+        let laid = few.laid_at(2.5, Vary::default()).unwrap();
+        assert!((laid.outline.thickness_mm() - d).abs() < 1e-12);
+        assert!((laid.outline.area_mm2() * 0.65 - few.fibre_area_mm2()).abs() < 1e-9);
+        few.form.width_mm = Some(2.0);
+        assert!(matches!(
+            few.laid_at(2.5, Vary::default()),
+            Err(LayError::ThinnerThanFilament { .. })
         ));
     }
 

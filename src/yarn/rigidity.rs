@@ -36,11 +36,12 @@ impl Yarn {
     /// Pull over rigidity of the thing that bends on its own, 1/mm2: a single free filament (its share of the
     /// pull over its own rigidity), or with binding the yarn as a whole.
     pub fn pull_over_rigidity_per_mm2(&self, pull_n: f64, laid: &Laid) -> f64 {
-        if self.binding > 0.0 {
-            pull_n / self.rigidity_n_mm2(laid)
+        let rigidity_n_mm2 = if self.binding > 0.0 {
+            self.rigidity_n_mm2(laid)
         } else {
-            pull_n * self.tension_spread / self.free_rigidity_n_mm2()
-        }
+            self.free_rigidity_n_mm2()
+        };
+        pull_n * self.tension_spread / rigidity_n_mm2
     }
 
     /// Axial stress of the filament that carries most, MPa: pull over fibre area times the tension spread.

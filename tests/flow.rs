@@ -1,0 +1,110 @@
+//! The whole flow on small specs, each number by hand: what the stations, the corners and the worst finding are.
+
+#![allow(clippy::unwrap_used, clippy::panic, reason = "helpers of tests")]
+
+mod common;
+
+use common::outcome;
+use lissom::judge::{Finding, State};
+
+const CLOTH: &str = "name = \"t\"\n[yarn.a]\nfibre = \"e-glass\"\nlinear_density = \"68 tex\"\n\
+    [yarn.b]\nfibre = \"carbon-pan-sm\"\nlinear_density = \"198 tex\"\n[weave]\npattern = \"plain\"\n\
+    warp = { yarn = \"a\", sett = \"8 /cm\", tension = \"50 cN\" }\nweft = { yarn = \"b\", sett = \"6 /cm\", tension = \"80 cN\" }\n";
+
+fn finding<'o>(outcome: &'o lissom::flow::Outcome, place: &str) -> &'o Finding {
+    outcome
+        .findings
+        .iter()
+        .find(|finding| finding.place == place)
+        .unwrap_or_else(|| panic!("{place}"))
+}
+
+/// Behind its wrap, at twice the mean: each system's own pull at the fell.
+#[test]
+fn stations_are_judged_at_their_peak_behind_the_wrap() {
+    let text = format!(
+        "{CLOTH}[[passage]]\nyarn = \"warp\"\nname = \"first\"\nradius = \"20 mm\"\nturn = \"90 deg\"\nfriction = 0.2\n\
+         [[passage]]\nyarn = \"warp\"\nname = \"last\"\nradius = \"20 mm\"\nturn = \"60 deg\"\nfriction = 0.3\n\
+         [[passage]]\nyarn = \"weft\"\nname = \"eyelet\"\nradius = \"2 mm\"\nturn = \"60 deg\"\nfriction = 0.3\n"
+    );
+    let outcome = outcome(&text);
+    let near = |place: &str, pull: f64| {
+        let ours = finding(&outcome, place).tension_n;
+        assert!((ours / pull - 1.0).abs() < 1e-12, "{place} {ours} {pull}");
+    };
+    near("last", 1.0);
+    near("first", 1.0 / (0.3 * 60f64.to_radians()).exp());
+    near("eyelet", 1.6);
+    assert_eq!(finding(&outcome, "eyelet").yarn.name, "b");
+}
+
+/// An edge along the warp bends the weft fully and the warp not at all, on top of the crowns at rest, twist or not.
+#[test]
+fn corners_add_to_the_crowns_of_the_system_they_bend() {
+    let tool = |axis: &str| {
+        format!("[[tool]]\nname = \"edge\"\nradius = \"4 mm\"\nbend_axis = \"{axis}\"\n")
+    };
+    for twist in ["", "twist = \"40 /m Z\"\n"] {
+        let base = CLOTH.replace(
+            "linear_density = \"198 tex\"\n",
+            &format!("linear_density = \"198 tex\"\n{twist}"),
+        );
+        for (axis, warp, weft) in [
+            ("0 deg", 0.0, 1.0),
+            ("90 deg", 1.0, 0.0),
+            ("30 deg", 0.25, 0.75),
+        ] {
+            let outcome = outcome(&format!("{base}{}", tool(axis)));
+            let full = 1.0 / (4.0 + outcome.cloth.thickness_mm / 2.0);
+            for (system, share) in [("warp", warp), ("weft", weft)] {
+                let corner = finding(&outcome, &format!("edge, {system} crown on the outer face"));
+                let crown = outcome
+                    .findings
+                    .iter()
+                    .find(|f| f.stage == lissom::bend::Stage::Rest && f.system == corner.system)
+                    .unwrap();
+                let added = corner.filament.curvature_per_mm - crown.filament.curvature_per_mm;
+                assert!(
+                    (added - share * full).abs() < 1e-9,
+                    "{axis} {system} {added}"
+                );
+                assert_eq!(corner.tension_n, crown.tension_n);
+            }
+        }
+    }
+}
+
+/// Each yarn is judged in its own outline: the innermost filament of the thicker weft lies as near as that of the warp.
+#[test]
+fn every_system_is_judged_as_it_lies() {
+    let outcome = outcome(&format!(
+        "{CLOTH}[[passage]]\nyarn = \"weft\"\nname = \"bar\"\nradius = \"3 mm\"\nturn = \"90 deg\"\n"
+    ));
+    let bar = finding(&outcome, "bar");
+    assert!((bar.radius_mm().unwrap() - 3.0035).abs() < 1e-9);
+    let length = outcome.cloth.weft.laid.outline.thickness_mm();
+    assert!(length > outcome.cloth.warp.laid.outline.thickness_mm());
+}
+
+#[test]
+fn the_worst_finding_is_the_worst_state_then_the_smallest_reserve() {
+    let text = format!(
+        "{CLOTH}[[passage]]\nyarn = \"warp\"\nname = \"hot\"\nstage = \"finishing\"\nradius = \"50 mm\"\nturn = \"90 deg\"\ntemperature = \"900 degC\"\n\
+         [[passage]]\nyarn = \"warp\"\nname = \"near\"\nradius = \"0.2 mm\"\nturn = \"170 deg\"\n"
+    );
+    let outcome = outcome(&text);
+    let worst = outcome.worst().unwrap();
+    assert_eq!(
+        (worst.place.as_ref(), worst.state),
+        ("hot", State::Overheats)
+    );
+    assert_eq!(outcome.verdict(), State::Overheats);
+    let cool = common::outcome(&text.replace("temperature = \"900 degC\"\n", ""));
+    let worst = cool.worst().unwrap();
+    assert_eq!(worst.place, "near");
+    assert!(
+        cool.findings
+            .iter()
+            .all(|f| f.reserve().unwrap() >= worst.reserve().unwrap())
+    );
+}
