@@ -3,9 +3,8 @@
 //! The rooms that know geometry make [`Bend`]s and know no strength; the room that judges sees only these.
 //! A new source of bends is one new room that makes them.
 //!
-//! Sign: curvature is positive where the bend's inside is the side the yarn lies on. All bends of a cloth and
-//! of a corner lie in the plane of the yarn's own path; `plane` tells crowns on the face from crowns on the
-//! back, so that two bends of opposite sign can load opposite sides of a filament.
+//! Sign: curvature is positive where the bend's inside is the side the yarn lies on. All bends of a cloth and of a
+//! corner lie in the plane of the yarn's own path; which side of a filament a bend loads is not told yet.
 
 use crate::span::Span;
 use std::borrow::Cow;
@@ -138,8 +137,6 @@ pub struct Bend {
     pub profile: Vec<Stretch>,
     /// Curvature of a larger bend that comes on top in the same plane and sense, 1/mm.
     pub added_per_mm: f64,
-    /// Whether the crest points to the face (+1) or to the back (-1).
-    pub plane: i8,
     /// Pull on the yarn, N, at its peak.
     pub pull_n: f64,
     /// Temperature of the yarn there, degrees C, where known.

@@ -31,6 +31,10 @@ fn every_example_is_as_its_snapshots_say() {
     for name in &names {
         for format in ["text", "markdown", "json"] {
             let (text, status) = check(name, format);
+            assert!(
+                !text.contains("null") && !text.contains("NaN") && !text.contains("inf"),
+                "{name}"
+            );
             let seen = format!("exit status {}\n\n{text}", status.unwrap());
             insta::assert_snapshot!(format!("{name}.{format}"), seen);
         }

@@ -93,18 +93,39 @@ fn the_worst_finding_is_the_worst_state_then_the_smallest_reserve() {
          [[passage]]\nyarn = \"warp\"\nname = \"near\"\nradius = \"0.2 mm\"\nturn = \"170 deg\"\n"
     );
     let outcome = outcome(&text);
-    let worst = outcome.worst().unwrap();
+    let worst = outcome.worst_finding(false).unwrap();
     assert_eq!(
         (worst.place.as_ref(), worst.state),
         ("hot", State::Overheats)
     );
     assert_eq!(outcome.verdict(), State::Overheats);
     let cool = common::outcome(&text.replace("temperature = \"900 degC\"\n", ""));
-    let worst = cool.worst().unwrap();
+    let worst = cool.worst_finding(false).unwrap();
     assert_eq!(worst.place, "near");
     assert!(
         cool.findings
             .iter()
             .all(|f| f.reserve().unwrap() >= worst.reserve().unwrap())
+    );
+}
+
+/// A crushed aramid fails the spec, a kinked one at another edge does not: the one that fails decides.
+#[test]
+fn what_fails_decides_before_what_does_not() {
+    let edge = |name: &str, radius: &str| {
+        format!(
+            "[[passage]]\nyarn = \"warp\"\nname = \"{name}\"\nradius = \"{radius}\"\nturn = \"90 deg\"\ntension = \"200 cN\"\n"
+        )
+    };
+    let cloth = CLOTH.replace("\"e-glass\"", "\"aramid-std\"");
+    let outcome = outcome(&format!(
+        "{cloth}{}{}",
+        edge("kinking", "0.25 mm"),
+        edge("crushing", "0.1 mm")
+    ));
+    let worst = outcome.worst_finding(false).unwrap();
+    assert_eq!(
+        (worst.place.as_ref(), worst.fails(false, false)),
+        ("crushing", true)
     );
 }

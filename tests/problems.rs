@@ -181,6 +181,32 @@ const CASES: &[(&str, &str, &str)] = &[
         "pattern = \"plain\"",
         "pattern = \"plain\"\nthickness = \"0.01 mm\"",
     ),
+    ("out of reach", "\"9 /cm\"", "\"1e-100 /cm\""),
+    (
+        "friction of another unit",
+        "radius = \"2 mm\"",
+        "radius = \"2 mm\"\nfriction = 250",
+    ),
+    (
+        "temperature that cannot be judged",
+        "like = \"alumina\"\nfilament_diameter = \"12 um\"",
+        "kind = \"brittle\"\nfilament_diameter = \"12 um\"\nmodulus = \"370 GPa\"\nstrength = \"2.8 GPa\"\ndensity = \"3.9 g/cm3\"\n#",
+    ),
+    (
+        "too much twist",
+        "width = \"0.5 mm\"",
+        "twist = \"9000 /m Z\"",
+    ),
+    (
+        "thinner than a filament",
+        "linear_density = \"68 tex\"\nwidth = \"0.5 mm\"",
+        "filaments = 2\nwidth = \"0.9 mm\"",
+    ),
+    (
+        "two fibres of one name",
+        "[yarn.face]",
+        "[fibre.O-wn]\nlike = \"alumina\"\n[yarn.face]",
+    ),
     ("no TOML", "[weave]", "[weave"),
     (
         "key twice",
@@ -191,9 +217,16 @@ const CASES: &[(&str, &str, &str)] = &[
 
 #[test]
 fn every_wrong_spec_gets_its_message() {
-    assert!(CASES.len() >= 54, "the number of cases never falls");
+    assert!(CASES.len() >= 60, "the number of cases never falls");
     for (name, from, to) in CASES {
-        let spoilt = GOOD.replacen(from, to, 1);
+        let mut spoilt = GOOD.replacen(from, to, 1);
+        if name.starts_with("temperature") {
+            spoilt = spoilt.replacen(
+                "turn = \"12 deg\"",
+                "turn = \"12 deg\"\ntemperature = \"900 degC\"",
+                1,
+            );
+        }
         assert_ne!(spoilt, GOOD, "{name}");
         insta::assert_snapshot!(
             format!("problem {name}").replace(' ', "-"),

@@ -84,7 +84,7 @@ fn a_dense_annealed_mesh_is_said_to_break_though_it_is_woven() {
         "100 /in",
     );
     let outcome = outcome(&text);
-    let worst = outcome.worst().unwrap();
+    let worst = outcome.worst_finding(false).unwrap();
     assert_eq!(
         (worst.state, worst.limit),
         (State::Breaks, Some(Limit::Strain))

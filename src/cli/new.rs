@@ -1,8 +1,9 @@
 //! `new`: a commented spec to start from.
 
 use super::Status;
-use super::out::{Streams, write_whole};
+use super::out::{Streams, write_new};
 use clap::Args;
+use std::io::ErrorKind;
 use std::path::PathBuf;
 
 /// The starter spec; a test checks it.
@@ -20,20 +21,20 @@ impl New {
         let Some(path) = self.file else {
             return streams.give(STARTER, None, Status::Fine);
         };
-        if path.exists() {
-            streams.complain(format_args!(
-                "error: {} is there already; name a new file\n",
-                path.display()
-            ));
-            return Status::WrongInput;
-        }
-        match write_whole(&path, STARTER.as_bytes()) {
+        match write_new(&path, STARTER.as_bytes()) {
             Ok(()) => {
                 streams.complain(format_args!(
                     "wrote {path}; check it with `lissom check {path}`\n",
                     path = path.display()
                 ));
                 Status::Fine
+            }
+            Err(error) if error.kind() == ErrorKind::AlreadyExists => {
+                streams.complain(format_args!(
+                    "error: {} is there already; name a new file\n",
+                    path.display()
+                ));
+                Status::WrongInput
             }
             Err(error) => {
                 streams.complain(format_args!(

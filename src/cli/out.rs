@@ -73,35 +73,48 @@ impl Streams {
     }
 }
 
-/// Writes a file whole or not at all: beside it first, then moved over it.
-pub(super) fn write_whole(path: &Path, bytes: &[u8]) -> io::Result<()> {
+/// Writes a file whole or not at all: beside it first, then moved over it. A link is followed; what is no file (a
+/// pipe, a device) is written to.
+fn write_whole(path: &Path, bytes: &[u8]) -> io::Result<()> {
+    let target = match fs::metadata(path) {
+        Ok(there) if !there.is_file() => {
+            return fs::OpenOptions::new()
+                .write(true)
+                .open(path)?
+                .write_all(bytes);
+        }
+        Ok(_) => fs::canonicalize(path)?,
+        Err(_) => path.to_path_buf(),
+    };
+    let beside = beside(&target, bytes)?;
+    if let Ok(old) = fs::metadata(&target) {
+        fs::set_permissions(beside.path(), old.permissions())?;
+    }
+    beside.persist(target)?;
+    Ok(())
+}
+
+/// Writes a new file whole or not at all; refuses where there is one.
+pub(super) fn write_new(path: &Path, bytes: &[u8]) -> io::Result<()> {
+    beside(path, bytes)?.persist_noclobber(path)?;
+    Ok(())
+}
+
+/// A file beside `path` with the rights any new file gets.
+fn beside(path: &Path, bytes: &[u8]) -> io::Result<tempfile::NamedTempFile> {
     let folder = match path.parent() {
         Some(folder) if !folder.as_os_str().is_empty() => folder,
         _ => Path::new("."),
     };
-    let mut beside = tempfile::NamedTempFile::new_in(folder)?;
-    beside.write_all(bytes)?;
-    beside.as_file().sync_all()?;
-    // A new file gets the rights any other would; one that is replaced keeps its own.
-    let rights = match fs::metadata(path) {
-        Ok(old) => Some(old.permissions()),
-        Err(_) => default_rights(),
-    };
-    if let Some(rights) = rights {
-        fs::set_permissions(beside.path(), rights)?;
+    let mut options = tempfile::Builder::new();
+    #[cfg(unix)]
+    {
+        use std::os::unix::fs::PermissionsExt;
+        // The process's mask takes off what others may not.
+        options.permissions(fs::Permissions::from_mode(0o666));
     }
-    beside.persist(path)?;
-    Ok(())
-}
-
-/// Read by all, written by the owner; temporary files are made for the owner alone.
-#[cfg(unix)]
-fn default_rights() -> Option<fs::Permissions> {
-    use std::os::unix::fs::PermissionsExt;
-    Some(fs::Permissions::from_mode(0o644))
-}
-
-#[cfg(not(unix))]
-fn default_rights() -> Option<fs::Permissions> {
-    None
+    let mut file = options.tempfile_in(folder)?;
+    file.write_all(bytes)?;
+    file.as_file().sync_all()?;
+    Ok(file)
 }

@@ -39,6 +39,7 @@ pub fn assumptions(spec: &Spec, cloth: &Cloth) -> Vec<String> {
         if !yarns.contains(&system.yarn.name.as_str()) {
             yarns.push(&system.yarn.name);
             said.extend(count(&system.yarn));
+            said.extend(bundle(&system.yarn));
         }
     }
     for (word, system, woven) in [
@@ -158,6 +159,28 @@ fn count(yarn: &Yarn) -> Option<String> {
     Some(format!("yarn `{}`: {text}", yarn.name))
 }
 
+/// How the filaments hang together.
+fn bundle(yarn: &Yarn) -> Option<String> {
+    if yarn.is_monofilament() || yarn.binding > 0.0 {
+        return None;
+    }
+    let measured = if yarn.bending_rigidity_n_mm2.is_some() {
+        "; the measured rigidity is of no account then"
+    } else {
+        ""
+    };
+    let twist = if yarn.twist_per_mm == 0.0 {
+        ", untwisted"
+    } else {
+        ""
+    };
+    Some(format!(
+        "yarn `{}`: filaments slide freely over each other (binding 0){twist}, pull spread {}{measured}",
+        yarn.name,
+        plain(yarn.tension_spread, 3)
+    ))
+}
+
 fn outline(word: &str, yarn: &Yarn, woven: &ClothYarn) -> String {
     let outline = &woven.laid.outline;
     let size = format!(
@@ -205,15 +228,15 @@ fn tension(word: &str, system: &System) -> Option<String> {
 
 fn way(spec: &Spec) -> Vec<String> {
     let mut said = Vec::new();
-    let guessed: Vec<&str> = spec
+    let guessed: Vec<String> = spec
         .passages
         .iter()
         .filter(|passage| !passage.friction_given)
-        .map(|passage| passage.name.as_str())
+        .map(|passage| format!("{} {}", passage.name, plain(passage.friction, 3)))
         .collect();
     if !guessed.is_empty() {
         said.push(format!(
-            "friction from the fibre's record at: {}",
+            "friction of the fibre, or 0.25 where it has none, at: {}",
             guessed.join(", ")
         ));
     }

@@ -54,19 +54,32 @@ pub fn run(spec: &Spec, flatness: f64) -> Result<Outcome, ClothError> {
 }
 
 impl Outcome {
-    /// The finding that decides: worst state, then smallest reserve.
-    pub fn worst(&self) -> Option<&Finding> {
-        self.findings.iter().max_by(|a, b| {
-            let reserve = |finding: &Finding| finding.reserve().unwrap_or(f64::INFINITY);
-            a.state
-                .cmp(&b.state)
-                .then(reserve(b).total_cmp(&reserve(a)))
-        })
+    /// Place among the findings of the one that decides: one that fails before one that does not, then worst state,
+    /// then smallest reserve; the first of equals.
+    pub fn worst(&self, refuse_kinks: bool) -> usize {
+        let rank = |index: &usize| {
+            let finding = &self.findings[*index];
+            (
+                finding.fails(refuse_kinks, false),
+                finding.state,
+                finding.judged.rank(),
+            )
+        };
+        (0..self.findings.len()).rev().max_by_key(rank).unwrap_or(0)
+    }
+
+    /// The finding that decides.
+    pub fn worst_finding(&self, refuse_kinks: bool) -> Option<&Finding> {
+        self.findings.get(self.worst(refuse_kinks))
     }
 
     /// The spec's verdict: its worst state.
     pub fn verdict(&self) -> State {
-        self.worst().map_or(State::Holds, |finding| finding.state)
+        self.findings
+            .iter()
+            .map(|finding| finding.state)
+            .max()
+            .unwrap_or(State::Holds)
     }
 
     /// Whether a check fails.

@@ -40,7 +40,7 @@ pub fn explain(code: Code) -> Explanation {
         Code::KinkStrain => Explanation {
             title: "compressive strain of a kinked filament over 3 %",
             text: "A high-modulus para-aramid lost about 10 % of its strength after 3 % of compressive strain (DeTeresa et al. 1984, J. Mater. Sci. 19, 57-72, abstract read). Beyond, nothing is known, so more than 3 % fails.\n\n\
-                The strain is that of the kinked section (see kink-onset): half the diameter times the curvature, less what the shifted neutral axis takes off, which makes it larger than the elastic formula says.",
+                The strain is that of the kinked section (see kink-onset): half the diameter times the curvature, and what the shift of the neutral axis adds.",
         },
         Code::YieldOnset => Explanation {
             title: "yield of a ductile filament",

@@ -14,8 +14,8 @@
 //! yarn's filaments lie on a helix: `path::helix`, the exact form for the centreline's radius R + t/2; eased, at most
 //! the straight helix's curvature and k_free together. A larger bend on top (a corner of a tool) adds its curvature.
 //!
-//! All filaments are judged at the ends of e and in the middle: in between, the stresses are fractions linear in y,
-//! so their largest lies at an end. Left out: pressure of the upper filaments on the lower, migration, and in flat
+//! Free filaments carry the same pull and the innermost is bent most, so it stands for all. In a bonded yarn the
+//! stresses are fractions linear in y, so their largest lies at one of both ends, and both are judged. Left out: pressure of the upper filaments on the lower, migration, and in flat
 //! twisted yarns the helix's change over the width.
 
 use super::easing::free_curvature_per_mm;
@@ -30,8 +30,8 @@ pub enum Position {
     Single,
     /// Next to what the yarn lies on.
     Inside,
-    /// On the centreline.
-    Middle,
+    /// Any: the yarn is straight.
+    Any,
     /// Farthest from what the yarn lies on.
     Outside,
     /// On the surface of a twisted yarn.
@@ -44,7 +44,7 @@ impl Position {
         match self {
             Self::Single => "the single filament",
             Self::Inside => "innermost filament",
-            Self::Middle => "middle filament",
+            Self::Any => "every filament",
             Self::Outside => "outermost filament",
             Self::Surface => "surface filament",
         }
@@ -70,7 +70,7 @@ impl Filament {
     /// A filament that is pulled and not bent.
     pub fn straight(axial_stress_mpa: f64) -> Self {
         Self {
-            position: Position::Middle,
+            position: Position::Any,
             curvature_per_mm: 0.0,
             lying_per_mm: 0.0,
             free_per_mm: None,
@@ -130,8 +130,8 @@ fn on_stretch(
         0.5 * diameter,
         (thickness - 0.5 * diameter).max(0.5 * diameter),
     );
-    let found: [Option<Filament>; 3] = if yarn.is_monofilament() {
-        [Some(at(Position::Single, inside)), None, None]
+    let found: [Option<Filament>; 2] = if yarn.is_monofilament() {
+        [Some(at(Position::Single, inside)), None]
     } else if yarn.twist_per_mm > 0.0 {
         let r = (0.5 * (thickness - diameter)).max(0.0);
         let straight = helix_curvature_per_mm(r, yarn.twist_per_mm);
@@ -148,12 +148,13 @@ fn on_stretch(
                 straight + eased(-r),
             ))
         };
-        [of(-r), of(r), None]
+        [of(-r), of(r).filter(|_| yarn.binding > 0.0)]
     } else {
+        // Free filaments all carry the same pull, and none is bent more than the innermost.
+        let bonded = yarn.binding > 0.0;
         [
             Some(at(Position::Inside, inside)),
-            Some(at(Position::Middle, 0.5 * thickness)),
-            Some(at(Position::Outside, outside)),
+            bonded.then(|| at(Position::Outside, outside)),
         ]
     };
     found.into_iter().flatten()

@@ -3,7 +3,8 @@
 use super::code::{Code, Limit, State};
 use super::filament::Filament;
 use super::limits::Check;
-use crate::bend::{Bend, Stage, SystemName};
+use crate::bend::{Bend, Meets, Stage, SystemName};
+use crate::fibre::Kind;
 use crate::span::Span;
 use crate::yarn::Yarn;
 use std::borrow::Cow;
@@ -22,7 +23,8 @@ impl Judged {
     /// Ranks the limits: worst state first, then smallest reserve.
     pub fn of(mut checks: [Option<Check>; 3], required: f64) -> Self {
         let state_of = |check: &Check| match check.reserve() {
-            reserve if reserve < 1.0 => check.limit.failed(),
+            // A reserve that is no number fails.
+            reserve if reserve.is_nan() || reserve < 1.0 => check.limit.failed(),
             // The strain of a kinked fibre counts only once it is passed; its onset has been judged already.
             _ if check.limit == Limit::KinkStrain => State::Holds,
             reserve if reserve < required => State::Close,
@@ -44,7 +46,7 @@ impl Judged {
     }
 
     /// Sorts judgements from best to worst: state, then crushed past the kink strain, then smallest reserve.
-    pub(super) fn rank(&self) -> (State, bool, std::cmp::Reverse<Ordered>) {
+    pub fn rank(&self) -> (State, bool, std::cmp::Reverse<Ordered>) {
         let leading = self.checks[0];
         let crushed = leading.is_some_and(|check| check.limit == Limit::KinkStrain);
         let reserve = leading.map_or(f64::INFINITY, |check| check.reserve());
@@ -54,7 +56,7 @@ impl Judged {
 
 /// A number that sorts.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub(super) struct Ordered(f64);
+pub struct Ordered(f64);
 
 impl Eq for Ordered {}
 
@@ -85,6 +87,8 @@ pub struct Finding {
     pub filament: Filament,
     /// Pull on the yarn, N.
     pub tension_n: f64,
+    /// How much of the yarn meets it.
+    pub meets: Meets,
     /// The limits, the governing one first.
     pub judged: Judged,
     /// What governs.
@@ -109,6 +113,7 @@ impl Finding {
             yarn,
             filament,
             tension_n: bend.pull_n,
+            meets: bend.meets,
             judged,
             limit,
             state: judged.state,
@@ -165,6 +170,11 @@ impl Finding {
     pub fn limit_radius_mm(&self) -> Option<f64> {
         let check = self.judged.checks[0]?;
         let fibre = &self.yarn.fibre;
+        let kinked = fibre.kind() == Kind::Fibrillar && check.limit == Limit::Fracture;
+        // Past kinking the section is not elastic, and binding makes the axial stress go with the radius.
+        if kinked || self.yarn.binding > 0.0 {
+            return None;
+        }
         let half = fibre.modulus_mpa * self.yarn.count.filament_diameter_mm / 2.0;
         let axial = self.filament.axial_stress_mpa;
         let allowed = match check.limit {

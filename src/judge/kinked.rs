@@ -24,7 +24,7 @@ pub struct Section {
     pub outer: f64,
     /// Strain times E on the compressed side, as a positive number: 1 at the onset.
     pub inner_strain: f64,
-    /// Place of the neutral axis, from -1 to 1 of the radius.
+    /// Place of the neutral axis over the radius, positive to the tension side; outside of -1 to 1 nothing is compressed.
     pub neutral_axis: f64,
     /// Whether the compressed side has yielded.
     pub kinked: bool,

@@ -32,8 +32,13 @@ pub struct Check {
 }
 
 impl Check {
+    #[expect(
+        clippy::neg_cmp_op_on_partial_ord,
+        reason = "what is no number must not pass"
+    )]
     fn new(limit: Limit, applied: f64, allowed: f64) -> Option<Self> {
-        (applied > 0.0).then_some(Self {
+        // Written so that a value that is no number stays and fails.
+        (!(applied <= 0.0)).then_some(Self {
             limit,
             applied,
             allowed,
@@ -71,9 +76,11 @@ pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 3] {
             let tension = Check::new(Limit::Fracture, section.outer * onset, fibre.strength_mpa);
             let kink = Check::new(Limit::Kink, bending - axial, onset);
             let strain = section.kinked.then(|| {
+                // The pull is balanced by the section; what binding imposes on the axis is not.
+                let imposed = (bending - axial) / modulus;
                 Check::new(
                     Limit::KinkStrain,
-                    section.inner_strain * onset / modulus,
+                    (section.inner_strain * onset / modulus).max(imposed),
                     KINK_STRAIN_LIMIT,
                 )
             });

@@ -47,7 +47,6 @@ fn bend(radius_mm: f64, pull_n: f64) -> Bend {
             easing: Easing::Held,
         }],
         added_per_mm: 0.0,
-        plane: 1,
         pull_n,
         temperature_c: None,
         meets: Meets::All,
@@ -392,4 +391,26 @@ fn beyond_the_elastic_a_filament_follows_what_it_is_bent_over() {
     let aramid = judged(&guide, yarn("pbo", 1000, 12.0));
     assert!((aramid.radius_mm().unwrap() - 0.056).abs() < 1e-9);
     assert!(aramid.fails(false, false));
+}
+
+/// Binding imposes its strain on the axis: half bonded aramid at R 1 mm, past 3 % though the section alone is not.
+#[test]
+fn binding_counts_in_the_kink_strain() {
+    let mut bonded = yarn("aramid-std", 1000, 12.0);
+    bonded.binding = 0.5;
+    let finding = judged(&bend(1.0, 0.0), bonded);
+    // Inside: 0.006/1.006 + 0.5 x 0.094/1.1 = 4.87 % (hand calculation).
+    let strain = finding
+        .judged
+        .checks
+        .iter()
+        .flatten()
+        .find(|c| c.limit == Limit::KinkStrain)
+        .unwrap();
+    assert!(
+        (strain.applied - 0.048_69).abs() < 1e-4,
+        "{}",
+        strain.applied
+    );
+    assert!(finding.fails(false, false));
 }

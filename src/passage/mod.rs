@@ -6,9 +6,9 @@
 //! largest, at the peak. Over a small turn a stiff strand does not close up to the guide: the edge law of
 //! `path::rod` caps the curvature, the judge takes the smaller.
 //!
-//! Left out: bending of the strand as a whole taking up some pull; guides that roll; speed.
+//! Left out: the outline a yarn has on a guide (it is judged in that of the cloth), bending of the strand as a whole taking up some pull; guides that roll; speed.
 
-use crate::bend::{Bend, Easing, Meets, Stage, Stretch, SystemName};
+use crate::bend::{Bend, Easing, Meets, Stretch, SystemName};
 use crate::path::tension_after;
 use crate::spec::{Passage, Spec, Weave};
 use crate::weave::Cloth;
@@ -40,30 +40,24 @@ pub fn chain(stations: &[&Passage], fell_n: f64) -> Vec<f64> {
 
 /// One bend for each station of the spec, in its order.
 pub fn stations(spec: &Spec, cloth: &Cloth) -> Vec<Bend> {
-    let weave = &spec.weave;
-    let mut bends: Vec<(usize, Bend)> = Vec::with_capacity(spec.passages.len());
-    for system in [SystemName::Warp, SystemName::Weft] {
-        for stage in [
-            Stage::Winding,
-            Stage::Warping,
-            Stage::Weaving,
-            Stage::Finishing,
-        ] {
-            let here: Vec<(usize, &Passage)> = spec
+    let same_route = |a: &Passage, b: &Passage| a.system == b.system && a.stage == b.stage;
+    spec.passages
+        .iter()
+        .enumerate()
+        .map(|(index, passage)| {
+            let route: Vec<&Passage> = spec
                 .passages
                 .iter()
-                .enumerate()
-                .filter(|(_, passage)| passage.system == system && passage.stage == stage)
+                .filter(|other| same_route(other, passage))
                 .collect();
-            let route: Vec<&Passage> = here.iter().map(|(_, passage)| *passage).collect();
-            let pulls = chain(&route, mean_tension_n(weave, system));
-            for ((index, passage), pull_n) in here.into_iter().zip(pulls) {
-                bends.push((index, station(passage, cloth, weave.peak * pull_n)));
-            }
-        }
-    }
-    bends.sort_by_key(|(index, _)| *index);
-    bends.into_iter().map(|(_, bend)| bend).collect()
+            let place = spec.passages[..index]
+                .iter()
+                .filter(|other| same_route(other, passage))
+                .count();
+            let pulls = chain(&route, mean_tension_n(&spec.weave, passage.system));
+            station(passage, cloth, spec.weave.peak * pulls[place])
+        })
+        .collect()
 }
 
 fn mean_tension_n(weave: &Weave, system: SystemName) -> f64 {
@@ -91,7 +85,6 @@ fn station(passage: &Passage, cloth: &Cloth, pull_n: f64) -> Bend {
             },
         }],
         added_per_mm: 0.0,
-        plane: 1,
         pull_n,
         temperature_c: passage.temperature_c,
         meets: Meets::All,
@@ -103,6 +96,7 @@ fn station(passage: &Passage, cloth: &Cloth, pull_n: f64) -> Bend {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::bend::Stage;
 
     fn station(friction: f64, turn_deg: f64, tension_n: Option<f64>) -> Passage {
         Passage {

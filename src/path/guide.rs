@@ -15,7 +15,7 @@ pub fn tension_after(tension_before: f64, friction: f64, turn_rad: f64) -> f64 {
 mod tests {
     use super::tension_after;
 
-    /// Independent step-by-step integration (Runge-Kutta) of dT = mu T d theta, three routes.
+    /// Independent step-by-step integration (Runge-Kutta) of dT = mu T d theta, two routes (all three in `tests/solutions.rs`).
     #[test]
     fn follows_the_independent_solution() {
         let routes: [(f64, &[f64], &[f64], f64); 2] = [

@@ -158,6 +158,25 @@ impl Dimension {
         }
     }
 
+    /// What a yarn, cloth, machine or fibre can have, in the internal unit, beside zero: far outside of it is a slip
+    /// of the unit, and nothing can be computed.
+    pub fn plausible(self) -> (f64, f64) {
+        match self {
+            Self::Length => (1e-6, 1e6),
+            Self::LinearDensity => (1e-6, 1e8),
+            Self::Sett => (1e-5, 1e4),
+            Self::Force => (1e-9, 1e7),
+            Self::SpecificForce => (1e-9, 1e3),
+            Self::Stress => (1e-6, 1e8),
+            Self::Angle => (1e-6, 1e3),
+            Self::Temperature => (1e-6, 1e4),
+            Self::Twist => (1e-9, 1e3),
+            Self::Share => (1e-9, 1e3),
+            Self::Rigidity => (1e-15, 1e9),
+            Self::Density => (1e-3, 1e2),
+        }
+    }
+
     /// The symbols that would do, in the order of use.
     pub fn symbols(self) -> impl Iterator<Item = &'static str> {
         UNITS

@@ -1,15 +1,25 @@
 //! What every report warns of: by the hazard of the fibres in it, and always what the results are not.
 
-use crate::fibre::Hazard;
+use crate::fibre::{Fibre, Hazard, library};
 
-/// The cautions for a cloth of fibres with these hazards, in a stable order.
-pub fn cautions(hazards: &[Hazard]) -> Vec<String> {
+/// The cautions for a cloth of these fibres, in a stable order.
+pub fn cautions(fibres: &[&Fibre]) -> Vec<String> {
     let mut said = Vec::new();
     for &hazard in Hazard::ALL {
-        if hazards.contains(&hazard)
+        if fibres.iter().any(|fibre| fibre.hazard == hazard)
             && let Some(text) = of(hazard)
         {
             said.push(text.to_owned());
+        }
+    }
+    for fibre in fibres {
+        let unknown = fibre.hazard == Hazard::NoHazard && library().find(&fibre.id).is_err();
+        let caution = format!(
+            "The hazards of fibre `{}` are not known here: look them up.",
+            fibre.id
+        );
+        if unknown && !said.contains(&caution) {
+            said.push(caution);
         }
     }
     said.push(

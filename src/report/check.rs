@@ -4,7 +4,7 @@
 //! significant digits.
 
 use super::cautions::cautions;
-use crate::fibre::Hazard;
+use crate::bend::Meets;
 use crate::flow::{Outcome, Variation, assumptions};
 use crate::judge::{Finding, Limit, State};
 use crate::quantity::rounded;
@@ -31,6 +31,8 @@ pub struct CheckReport {
     pub bends: Vec<BendRow>,
     /// Index in `bends` of the one that decides.
     pub worst: usize,
+    /// Whether the state changes with the assumed outlines.
+    pub hangs_on_width: bool,
     /// The worst at other flatnesses of the assumed outlines.
     pub sensitivity: Vec<SensitivityRow>,
     /// What would hold instead.
@@ -129,6 +131,9 @@ pub struct BendRow {
     #[serde(skip_serializing_if = "Option::is_none")]
     pub free_curvature_per_mm: Option<f64>,
     pub governs: &'static str,
+    /// Half crowns per metre of yarn; absent where all of it travels over the bend.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub half_crowns_per_m: Option<f64>,
     pub tension_n: f64,
     pub axial_stress_mpa: f64,
     pub bending_stress_mpa: f64,
@@ -204,16 +209,9 @@ pub struct Advice {
 impl CheckReport {
     /// The report of a spec's outcome.
     pub fn new(spec: &Spec, outcome: &Outcome, variations: &[Variation], strict: bool) -> Self {
-        let hazards: Vec<Hazard> = [&spec.weave.warp, &spec.weave.weft]
-            .map(|system| system.yarn.fibre.hazard)
-            .to_vec();
-        let worst = outcome.worst().map_or(0, |worst| {
-            outcome
-                .findings
-                .iter()
-                .position(|finding| std::ptr::eq(finding, worst))
-                .unwrap_or(0)
-        });
+        let fibres = [&spec.weave.warp, &spec.weave.weft].map(|system| &system.yarn.fibre);
+        let sensitivity: Vec<SensitivityRow> = variations.iter().map(SensitivityRow::new).collect();
+        let verdict = outcome.verdict().word();
         Self {
             lissom: env!("CARGO_PKG_VERSION"),
             spec: SpecReport {
@@ -222,7 +220,11 @@ impl CheckReport {
                 sha256: sha256(&spec.source.text),
                 file: spec.source.name.clone(),
             },
-            verdict: outcome.verdict().word(),
+            // An outline that cannot be woven changes nothing.
+            hangs_on_width: sensitivity
+                .iter()
+                .any(|row| row.state != verdict && row.state != JAMMED),
+            verdict,
             fails: outcome.fails(spec, strict),
             cloth: ClothReport::new(spec, &outcome.cloth),
             bends: outcome
@@ -230,24 +232,17 @@ impl CheckReport {
                 .iter()
                 .map(|finding| BendRow::new(spec, finding, strict))
                 .collect(),
-            worst,
-            sensitivity: variations.iter().map(SensitivityRow::new).collect(),
+            worst: outcome.worst(spec.require.refuse_kinks),
+            sensitivity,
             advice: Vec::new(),
             assumptions: assumptions(spec, &outcome.cloth),
-            cautions: cautions(&hazards),
+            cautions: cautions(&fibres),
         }
     }
 
     /// The bend that decides.
     pub fn worst_bend(&self) -> Option<&BendRow> {
         self.bends.get(self.worst)
-    }
-
-    /// Whether the state changes with the assumed outlines. An outline that cannot be woven changes nothing.
-    pub fn hangs_on_width(&self) -> bool {
-        self.sensitivity
-            .iter()
-            .any(|row| row.state != self.verdict && row.state != JAMMED)
     }
 }
 
@@ -335,6 +330,10 @@ impl BendRow {
             lying_curvature_per_mm: rounded(finding.filament.lying_per_mm),
             free_curvature_per_mm: finding.filament.free_per_mm.map(rounded),
             governs: finding.filament.position.word(),
+            half_crowns_per_m: match finding.meets {
+                Meets::TimesPerMetre(times) => Some(rounded(times)),
+                Meets::All => None,
+            },
             tension_n: rounded(finding.tension_n),
             axial_stress_mpa: rounded(finding.filament.axial_stress_mpa),
             bending_stress_mpa: rounded(finding.bending_stress_mpa()),

@@ -1,7 +1,8 @@
 //! The fibre library for people and programs.
 
 use super::table::{folded, table};
-use crate::fibre::{Fibre, Figure, How, Record, Statement, source_id, sources};
+use crate::fibre::{Fibre, Figure, How, Mechanism, Record, Statement, source_id, sources};
+use crate::judge::break_bend;
 use crate::quantity::{plain, rounded, significant};
 use serde_json::{Map, Value, json};
 use std::fmt::Write as _;
@@ -191,7 +192,17 @@ fn write_fibre(out: &mut String, record: &Record, fibre: &Fibre) -> std::fmt::Re
     if let Some(mm) = fibre.yield_radius_mm() {
         radius(out, "yields at", mm)?;
     }
-    radius(out, "whole to", fibre.bend_radius_mm())?;
+    if let Mechanism::Fibrillar { compression, .. } = fibre.mechanism {
+        let onset = compression.in_bending_mpa();
+        let bend = break_bend(fibre.strength_mpa / onset, 0.0);
+        radius(
+            out,
+            "kinked, breaks at",
+            fibre.radius_at_stress_mm(bend * onset),
+        )?;
+    } else {
+        radius(out, "whole to", fibre.bend_radius_mm())?;
+    }
     writeln!(out, "\nFigures: typical, range")?;
     for (key, figure) in record.figures() {
         write_figure(out, key, figure)?;

@@ -74,7 +74,7 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
             bend.line, bend.quoted
         )?;
     }
-    if report.hangs_on_width() {
+    if report.hangs_on_width {
         writeln!(
             out,
             "\nThe verdict hangs on the yarn's width: measure it in the cloth and give `width`."

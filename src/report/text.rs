@@ -51,7 +51,7 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
             )?;
         }
     }
-    if report.hangs_on_width() {
+    if report.hangs_on_width {
         writeln!(out)?;
         writeln!(
             out,

@@ -5,7 +5,8 @@ use super::keys::FIBRE;
 use super::problem::{Problem, nearest_of};
 use super::reader::Table;
 use crate::fibre::{
-    CompressionBasis, Fibre, FibreOverrides, FibreProblem, FindError, Kind, StrengthBasis, library,
+    CompressionBasis, Fibre, FibreOverrides, FibreProblem, FindError, Hazard, Kind, StrengthBasis,
+    library,
 };
 use crate::quantity::Dimension;
 
@@ -29,6 +30,20 @@ impl Fibres {
         let mut fibres = Self::default();
         for (name, table) in spec.named_tables("fibre", FIBRE) {
             let fibre = read_one(&name, &table);
+            if fibres
+                .own
+                .iter()
+                .any(|(other, _)| bare(other) == bare(&name.value))
+            {
+                table.push(
+                    Problem::at(
+                        name.span.clone(),
+                        format!("two fibres are called `{}`", name.value),
+                        "again",
+                    )
+                    .help("case, blanks and hyphens aside; give one of them another name"),
+                );
+            }
             fibres.own.push((name.value, fibre));
         }
         fibres
@@ -124,6 +139,10 @@ fn read_one(name: &Placed<String>, table: &Table<'_>) -> Option<Fibre> {
         ("uniaxial", CompressionBasis::Uniaxial),
         ("bending", CompressionBasis::Bending),
     ];
+    let hazards: Vec<(&'static str, Hazard)> = Hazard::ALL
+        .iter()
+        .map(|hazard| (hazard.word(), *hazard))
+        .collect();
     let given = FibreOverrides {
         id: Some(name.value.clone()),
         kind: table.word("kind", &kinds).value(),
@@ -136,9 +155,10 @@ fn read_one(name: &Placed<String>, table: &Table<'_>) -> Option<Fibre> {
         compression_basis: table.word("compression_basis", &tests).value(),
         yield_mpa: stress("yield_stress"),
         strain_at_break: measure("strain_at_break", Dimension::Share, Bound::Positive),
+        hazard: table.word("hazard", &hazards).value(),
         kink_strength_loss: share("kink_strength_loss"),
         max_temp_c: measure("max_temperature", Dimension::Temperature, Bound::Any),
-        friction_on_guide: table.number("friction", Bound::NotNegative).value(),
+        friction_on_guide: table.number("friction", Bound::Within(0.0, 2.0)).value(),
         ..FibreOverrides::default()
     };
     match like {

@@ -153,6 +153,12 @@ pub const FIBRE: &[Key] = &[
         "limit for handling in air",
     ),
     key(
+        "hazard",
+        "\"conductive-carbon\", \"glass\", \"ceramic\", \"wire\", \"organic-dust\" or \"none\"",
+        "from `like`, else not known",
+        "the caution the report carries",
+    ),
+    key(
         "friction",
         "number, 0.25",
         "from `like`, else 0.25",
@@ -232,7 +238,7 @@ pub const YARN: &[Key] = &[
         "bending_rigidity",
         "rigidity, \"0.05 N mm2\"",
         "from filaments and binding",
-        "measured rigidity of the yarn",
+        "measured rigidity of the yarn; counts with a binding above 0",
     ),
     key(
         "tension_spread",
@@ -275,7 +281,7 @@ pub const WEAVE: &[Key] = &[
         "peak",
         "number, 1 or more",
         "2.0",
-        "peak over mean tension while weaving",
+        "peak over mean tension, on the loom and at every station",
     ),
 ];
 

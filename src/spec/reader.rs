@@ -195,6 +195,17 @@ impl<'a> Table<'a> {
             _ => return self.wrong_type(key, found, "a text with a unit"),
         };
         match parse(text, wanted) {
+            Ok(quantity) if !plausible(&quantity) => {
+                self.push(
+                    Problem::at(
+                        span,
+                        format!("`{key}` is out of any reach"),
+                        "check the unit",
+                    )
+                    .help(units()),
+                );
+                Field::Wrong
+            }
             Ok(quantity) => match bound.broken_by(quantity.value) {
                 None => Field::Given(Placed {
                     value: quantity,
@@ -376,6 +387,12 @@ impl<'a> Table<'a> {
         }
         tables
     }
+}
+
+/// Whether a quantity is zero or of a size that can be.
+fn plausible(quantity: &Quantity) -> bool {
+    let (least, most) = quantity.dimension.plausible();
+    quantity.value == 0.0 || (least..=most).contains(&quantity.value.abs())
 }
 
 /// The problem of a text that is no quantity.

@@ -76,7 +76,7 @@ fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
     let radius = table.required(radius, "radius", "\"1.5 mm\"");
     let turn = table.measure("turn", Dimension::Angle, Bound::Positive);
     let turn = table.required(turn, "turn", "\"12 deg\"");
-    let friction = table.number("friction", Bound::NotNegative).value();
+    let friction = table.number("friction", Bound::Within(0.0, 2.0)).value();
     let temperature = table
         .measure(
             "temperature",
@@ -88,7 +88,7 @@ fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
         .zip(system.as_ref())
         .map(|(weave, system)| match system.value {
             SystemName::Weft => &weave.weft.yarn,
-            _ => &weave.warp.yarn,
+            SystemName::Warp => &weave.warp.yarn,
         });
     if let (Some(yarn), Some(temperature)) = (yarn, &temperature)
         && yarn.fibre.max_temp_c.is_none()

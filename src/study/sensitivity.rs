@@ -31,7 +31,9 @@ fn toward(spec: &Spec, flatness_factor: f64) -> Vec<Variation> {
         let worst = |outcome: Outcome| {
             (
                 outcome.verdict(),
-                outcome.worst().and_then(|finding| finding.reserve()),
+                outcome
+                    .worst_finding(spec.require.refuse_kinks)
+                    .and_then(|finding| finding.reserve()),
             )
         };
         Variation {

@@ -3,8 +3,7 @@
 //! A measured cloth thickness scales the thicknesses of both yarns by one factor until the larger of wave
 //! height + thickness meets it.
 //!
-//! Yarns in dense cloth press each other together. Two things may give, and only where the spec did not fix
-//! them, in this order:
+//! Yarns in dense cloth press each other together. Two things may give, in this order:
 //!
 //! 1. a yarn squeezed to its spacing touches its neighbours and leaves the other system no way between: it
 //!    becomes as much narrower as lets it through, down to 0.8 of the spacing;
@@ -12,7 +11,7 @@
 //!    dense satin is packed closer than an open plain weave.
 //!
 //! Both are named in the report. What still does not pass is jammed. That assumed packings give way is common
-//! sense of the trade without a source; measured sizes never do.
+//! sense of the trade without a source; a packing given, or two sizes, never do.
 
 use super::cloth::{Cloth, ClothError};
 use crate::root::rising_root;

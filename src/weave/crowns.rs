@@ -53,7 +53,6 @@ fn crown(
         system: name,
         profile,
         added_per_mm: 0.0,
-        plane: 1,
         pull_n,
         temperature_c: None,
         meets: Meets::TimesPerMetre(1e3 * halves_per_mm),
