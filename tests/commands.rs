@@ -105,6 +105,52 @@ fn out_writes_the_report_whole_and_without_colour() {
     );
 }
 
+/// A report must not overwrite its spec, nor a link or device become a file.
+#[cfg(unix)]
+#[test]
+fn out_spares_specs_links_and_devices() {
+    let folder = tempfile::tempdir().unwrap();
+    let spec = folder.path().join("spec.toml");
+    std::fs::write(&spec, SMALL).unwrap();
+    let path = spec.to_str().unwrap();
+    assert_eq!(
+        lissom(&["check", path, "--out", path], "").status.code(),
+        Some(2)
+    );
+    assert_eq!(std::fs::read_to_string(&spec).unwrap(), SMALL);
+    let (file, link) = (
+        folder.path().join("real.txt"),
+        folder.path().join("link.txt"),
+    );
+    std::fs::write(&file, "old").unwrap();
+    std::os::unix::fs::symlink(&file, &link).unwrap();
+    assert_eq!(
+        lissom(&["check", path, "--out", link.to_str().unwrap()], "")
+            .status
+            .code(),
+        Some(0)
+    );
+    assert!(link.is_symlink() && std::fs::read_to_string(&file).unwrap().starts_with("HOLDS"));
+    assert_eq!(
+        lissom(&["check", path, "--out", "/dev/null"], "")
+            .status
+            .code(),
+        Some(0)
+    );
+    assert!(!std::fs::metadata("/dev/null").unwrap().is_file());
+}
+
+/// Time must not grow with the square of what is wrong or long.
+#[test]
+fn a_flood_of_wrong_keys_is_cut_short() {
+    let keys: String = (0..3000).map(|index| format!("key{index} = 1\n")).collect();
+    let output = lissom(&["check", "-"], &format!("{keys}{SMALL}"));
+    assert_eq!(output.status.code(), Some(2));
+    assert!(
+        err(&output).contains("and 2950 more like these") && err(&output).contains("3000 problems")
+    );
+}
+
 #[test]
 fn no_colour_in_a_pipe_unless_asked_for() {
     let plain = lissom(&["check", "-"], SMALL);

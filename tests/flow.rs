@@ -57,7 +57,7 @@ fn corners_add_to_the_crowns_of_the_system_they_bend() {
             let outcome = outcome(&format!("{base}{}", tool(axis)));
             let full = 1.0 / (4.0 + outcome.cloth.thickness_mm / 2.0);
             for (system, share) in [("warp", warp), ("weft", weft)] {
-                let corner = finding(&outcome, &format!("edge, {system} crown on the outer face"));
+                let corner = finding(&outcome, &format!("edge, outer {system} crown"));
                 let crown = outcome
                     .findings
                     .iter()

@@ -181,6 +181,17 @@ const CASES: &[(&str, &str, &str)] = &[
         "pattern = \"plain\"",
         "pattern = \"plain\"\nthickness = \"0.01 mm\"",
     ),
+    (
+        "hidden characters",
+        "\"Good\"",
+        "\"Good\\nHOLDS\\u001b[2J\"",
+    ),
+    (
+        "yarn without a name",
+        "[yarn.face]\nfibre = \"own\"\nlinear_density = \"200 tex\"\nfilaments = 450\n\n[yarn.back]",
+        "[yarn]",
+    ),
+    ("too many passages", "[[passage]]", "PASSAGES[[passage]]"),
     ("out of reach", "\"9 /cm\"", "\"1e-100 /cm\""),
     (
         "friction of another unit",
@@ -217,9 +228,15 @@ const CASES: &[(&str, &str, &str)] = &[
 
 #[test]
 fn every_wrong_spec_gets_its_message() {
-    assert!(CASES.len() >= 60, "the number of cases never falls");
+    assert!(CASES.len() >= 63, "the number of cases never falls");
     for (name, from, to) in CASES {
         let mut spoilt = GOOD.replacen(from, to, 1);
+        if name.starts_with("too many") {
+            let many =
+                "[[passage]]\nyarn = \"warp\"\nname = \"p\"\nradius = \"2 mm\"\nturn = \"1 deg\"\n"
+                    .repeat(501);
+            spoilt = spoilt.replacen("PASSAGES", &many, 1);
+        }
         if name.starts_with("temperature") {
             spoilt = spoilt.replacen(
                 "turn = \"12 deg\"",

@@ -4,7 +4,7 @@ use super::Status;
 use super::out::Streams;
 use clap::{Args, ValueEnum};
 use lissom::flow;
-use lissom::pattern::Weaves;
+use lissom::pattern::{WeaveFileError, Weaves};
 use lissom::report::{self, CheckReport};
 use lissom::span::SourceText;
 use lissom::spec::{Problem, Spec};
@@ -53,6 +53,18 @@ pub(super) struct Check {
 
 impl Check {
     pub(super) fn run(self, streams: &Streams) -> Status {
+        // A report must not take the place of what it is about.
+        let same = |spec: &&PathBuf| {
+            let out = self.out.as_ref().and_then(|out| out.canonicalize().ok());
+            out.is_some() && spec.canonicalize().ok() == out
+        };
+        if let Some(spec) = self.specs.iter().find(same) {
+            streams.complain(format_args!(
+                "error: --out would overwrite the spec {}; name another file\n",
+                spec.display()
+            ));
+            return Status::WrongInput;
+        }
         let weaves = match load_weaves(self.weaves.as_deref(), streams) {
             Ok(weaves) => weaves,
             Err(status) => return status,
@@ -117,10 +129,15 @@ pub(super) fn load_weaves(folder: Option<&Path>, streams: &Streams) -> Result<We
     match folder {
         None => Ok(Weaves::builtin()),
         Some(folder) => Weaves::with_folder(folder).map_err(|errors| {
+            let unread = |problem: &WeaveFileError| matches!(problem, WeaveFileError::Io { .. });
             for problem in &errors.problems {
-                streams.complain(format_args!("error: {problem}\n"));
+                streams.complain(format_args!("error: --weaves {problem}\n"));
             }
-            Status::WrongInput
+            if errors.problems.iter().all(unread) {
+                Status::Machine
+            } else {
+                Status::WrongInput
+            }
         }),
     }
 }

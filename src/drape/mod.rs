@@ -43,12 +43,7 @@ fn corner(tool: &Tool, crown: &Bend, cloth: &Cloth) -> Bend {
         (Some(axis), SystemName::Weft) => FRAC_PI_2 - axis,
     };
     let mut bend = crown.clone();
-    bend.place = format!(
-        "{}, {} crown on the outer face",
-        tool.name,
-        crown.system.word()
-    )
-    .into();
+    bend.place = format!("{}, outer {} crown", tool.name, crown.system.word()).into();
     bend.stage = Stage::Draping;
     bend.added_per_mm = normal_curvature_per_mm(tool.radius_mm + 0.5 * cloth.thickness_mm, angle);
     bend.governed_by = tool.radius_span.clone();

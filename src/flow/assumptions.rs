@@ -1,8 +1,7 @@
 //! What the result hangs on that the spec did not say: every default used, in words with its value.
 
-use crate::bend::{Stage, SystemName};
+use crate::bend::Stage;
 use crate::fibre::FigureName;
-use crate::passage::chain;
 use crate::quantity::{plain, significant};
 use crate::spec::{DEFAULT_TENSION_N_TEX, Passage, Spec, System};
 use crate::weave::{Closure, Cloth, ClothYarn};
@@ -46,7 +45,12 @@ pub fn assumptions(spec: &Spec, cloth: &Cloth) -> Vec<String> {
         ("warp", &weave.warp, &cloth.warp),
         ("weft", &weave.weft, &cloth.weft),
     ] {
-        said.push(outline(word, &system.yarn, woven));
+        said.push(outline(
+            word,
+            &system.yarn,
+            woven,
+            cloth.thickness_factor.is_some(),
+        ));
         said.extend(tension(word, system));
     }
     if !weave.peak_given {
@@ -139,7 +143,7 @@ fn count(yarn: &Yarn) -> Option<String> {
     let count = &yarn.count;
     let um = significant(1e3 * count.filament_diameter_mm, 3);
     let library = if count.library_diameter {
-        " (the library's diameter)"
+        " (the fibre's diameter)"
     } else {
         ""
     };
@@ -181,7 +185,7 @@ fn bundle(yarn: &Yarn) -> Option<String> {
     ))
 }
 
-fn outline(word: &str, yarn: &Yarn, woven: &ClothYarn) -> String {
+fn outline(word: &str, yarn: &Yarn, woven: &ClothYarn, scaled: bool) -> String {
     let outline = &woven.laid.outline;
     let size = format!(
         "{} {} x {} mm, packing {}",
@@ -190,10 +194,10 @@ fn outline(word: &str, yarn: &Yarn, woven: &ClothYarn) -> String {
         significant(outline.thickness_mm(), 3),
         significant(woven.laid.packing, 2)
     );
-    let packing = if yarn.form.packing.is_some() {
-        "as given"
-    } else {
-        "assumed"
+    let packing = match yarn.form.packing {
+        _ if scaled => "from the measured thickness of the cloth",
+        Some(_) => "as given",
+        None => "assumed",
     };
     let basis = match woven.laid.basis {
         Basis::Solid => "a single filament".to_owned(),
@@ -247,27 +251,6 @@ fn way(spec: &Spec) -> Vec<String> {
             "pull while {} taken as that of weaving where no station gives one",
             passage.stage.word()
         ));
-    }
-    for (word, name, system) in [
-        ("warp", SystemName::Warp, &spec.weave.warp),
-        ("weft", SystemName::Weft, &spec.weave.weft),
-    ] {
-        let route: Vec<&Passage> = spec
-            .passages
-            .iter()
-            .filter(|passage| passage.system == name && passage.stage == Stage::Weaving)
-            .collect();
-        let ends = chain(&route, system.tension_n)
-            .last()
-            .copied()
-            .unwrap_or(system.tension_n);
-        if (ends / system.tension_n - 1.0).abs() > 0.05 {
-            said.push(format!(
-                "the {word}'s stations end at {} cN, the fell has {} cN: a station's tension or friction does not fit",
-                significant(100.0 * ends, 3),
-                significant(100.0 * system.tension_n, 3)
-            ));
-        }
     }
     if !spec.passages.is_empty() {
         said.push("straight arms on both sides of every station, long against the bend".to_owned());

@@ -3,8 +3,10 @@
 //! Every command and study runs this and nothing else. It takes no decisions of its own.
 
 mod assumptions;
+mod warnings;
 
 pub use assumptions::assumptions;
+pub use warnings::warnings;
 
 use crate::bend::{Bend, SystemName};
 use crate::judge::{Finding, State, judge};

@@ -79,7 +79,7 @@ pub(super) const UNITS: &[Unit] = {
         unit("ktex", &[], LinearDensity, 1e3),
         unit("den", &["denier"], LinearDensity, 1.0 / 9.0),
         unit("/cm", &["1/cm"], Sett, 0.1),
-        unit("/in", &["1/in"], Sett, 1.0 / INCH_MM),
+        unit("/in", &["1/in", "/inch", "epi", "ppi"], Sett, 1.0 / INCH_MM),
         unit("/m", &["1/m"], Sett, 1e-3),
         unit("N", &[], Force, 1.0),
         unit("cN", &[], Force, 1e-2),

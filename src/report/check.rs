@@ -5,7 +5,7 @@
 
 use super::cautions::cautions;
 use crate::bend::Meets;
-use crate::flow::{Outcome, Variation, assumptions};
+use crate::flow::{Outcome, Variation, assumptions, warnings};
 use crate::judge::{Finding, Limit, State};
 use crate::quantity::rounded;
 use crate::spec::Spec;
@@ -35,6 +35,8 @@ pub struct CheckReport {
     pub hangs_on_width: bool,
     /// The worst at other flatnesses of the assumed outlines.
     pub sensitivity: Vec<SensitivityRow>,
+    /// What a reader must not miss.
+    pub warnings: Vec<String>,
     /// What would hold instead.
     pub advice: Vec<Advice>,
     /// What the result hangs on that the spec did not say.
@@ -234,6 +236,7 @@ impl CheckReport {
                 .collect(),
             worst: outcome.worst(spec.require.refuse_kinks),
             sensitivity,
+            warnings: warnings(spec, outcome),
             advice: Vec::new(),
             assumptions: assumptions(spec, &outcome.cloth),
             cautions: cautions(&fibres),

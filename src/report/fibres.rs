@@ -10,16 +10,8 @@ use std::fmt::Write as _;
 /// The listing, in the order given.
 pub fn fibres_text(fibres: &[(&Record, Fibre)]) -> String {
     let head = [
-        "fibre",
-        "kind",
-        "d um",
-        "E GPa",
-        "strength GPa",
-        "g/cm3",
-        "E/rho",
-        "strength/rho",
-        "whole to mm",
-        "unmarked to mm",
+        "fibre", "kind", "d um", "E GPa", "s GPa", "g/cm3", "E/rho", "s/rho", "whole mm",
+        "clean mm",
     ];
     let rows = fibres.iter().map(|(record, fibre)| {
         vec![
@@ -37,8 +29,9 @@ pub fn fibres_text(fibres: &[(&Record, Fibre)]) -> String {
     });
     format!(
         "{}\n\n\
-         Sorted by the smallest radius at which one filament of the usual diameter stays whole without pull.\n\
-         unmarked: smallest radius without kink bands or yield. E/rho, strength/rho in MJ/kg (GPa per g/cm3, N/tex).\n\
+         whole: smallest radius at which one filament of the usual diameter stays whole without pull; the list is\n\
+         sorted by it. clean: smallest radius without kink bands or yield. s: tensile strength. E/rho and s/rho in\n\
+         MJ/kg (GPa per g/cm3, N/tex).\n\
          `lissom fibres NAME` shows everything known of a fibre, with sources.\n",
         table(head, rows, &[2, 3, 4, 5, 6, 7, 8, 9])
     )

@@ -2,7 +2,8 @@
 
 use super::check::CheckReport;
 use super::text::{
-    BEND_COLUMNS, bend_cells, bend_sentences, cloth_lines, pattern_line, system_rows,
+    BEND_COLUMNS, HANGS_ON_WIDTH, bend_cells, bend_sentences, cloth_lines, pattern_line,
+    system_rows,
 };
 use crate::quantity::{plain, significant};
 use std::fmt::Write as _;
@@ -52,7 +53,17 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
         writeln!(out, "- reference: {}", escaped(reference))?;
     }
     writeln!(out, "- weave: {}", escaped(&pattern_line(report)))?;
-    writeln!(out, "- spec: SHA-256 {}", report.spec.sha256)?;
+    let file = std::path::Path::new(&report.spec.file).file_name();
+    let file = file.map_or_else(
+        || report.spec.file.clone(),
+        |name| name.to_string_lossy().into_owned(),
+    );
+    writeln!(
+        out,
+        "- spec: {}, SHA-256 {}",
+        escaped(&file),
+        report.spec.sha256
+    )?;
     writeln!(out, "- checked by: lissom {}", report.lissom)?;
     let failing = report.bends.iter().filter(|bend| bend.fails);
     let worst = report.worst_bend().filter(|bend| !bend.fails);
@@ -74,11 +85,13 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
             bend.line, bend.quoted
         )?;
     }
-    if report.hangs_on_width {
-        writeln!(
-            out,
-            "\nThe verdict hangs on the yarn's width: measure it in the cloth and give `width`."
-        )?;
+    let hangs = report.hangs_on_width.then(|| HANGS_ON_WIDTH.to_owned());
+    let mut warned = report.warnings.iter().chain(&hangs).peekable();
+    if warned.peek().is_some() {
+        writeln!(out, "\n## Mind\n")?;
+    }
+    for warning in warned {
+        writeln!(out, "- {}", escaped(warning))?;
     }
     writeln!(out, "\n## Bends, in the order of the way\n")?;
     head(out, &BEND_COLUMNS)?;

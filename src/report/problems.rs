@@ -6,11 +6,14 @@ use crate::spec::{Problem, Spec};
 use crate::weave::{ClothError, Jammed};
 use annotate_snippets::{AnnotationKind, Group, Level, Renderer, Snippet};
 
-/// Draws every problem of a text, with colour codes: print them through a stream that knows its terminal.
+/// Beyond these a person mends first and asks again.
+const MOST_SHOWN: usize = 50;
+
+/// Draws the problems of a text, with colour codes: print them through a stream that knows its terminal.
 pub fn problems(source: &SourceText, problems: &[Problem]) -> String {
     let renderer = Renderer::styled();
     let mut drawn = String::new();
-    for problem in problems {
+    for problem in problems.iter().take(MOST_SHOWN) {
         let group: Group<'_> = Level::ERROR
             .primary_title(problem.message.as_str())
             .element(
@@ -28,6 +31,13 @@ pub fn problems(source: &SourceText, problems: &[Problem]) -> String {
             .map(|help| Level::HELP.message(help.as_str()));
         drawn.push_str(&renderer.render(&[group.elements(helps)]));
         drawn.push_str("\n\n");
+    }
+    if let Some(more) = problems
+        .len()
+        .checked_sub(MOST_SHOWN)
+        .filter(|more| *more > 0)
+    {
+        drawn.push_str(&format!("and {more} more like these\n\n"));
     }
     let count = match problems.len() {
         1 => "1 problem".to_owned(),

@@ -27,7 +27,7 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
         report.verdict.to_uppercase(),
         report.spec.name
     )?;
-    writeln!(out, "{}", pattern_line(report))?;
+    writeln!(out, "{}; {}", pattern_line(report), report.spec.file)?;
     if let Some(worst) = report.worst_bend() {
         writeln!(out)?;
         write_bend(out, report, worst, "Worst bend")?;
@@ -37,26 +37,25 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
             let reserve = bend
                 .reserve
                 .map_or_else(String::new, |r| format!(" reserve {}", significant(r, 3)));
-            writeln!(
-                out,
-                "Also fails: {} ({}): {}, {}{reserve} [{}]\n  {}:{}: {}",
+            let line = format!(
+                "Also fails: {} ({}): {}, {}{reserve} [{}]",
                 bend.place,
                 bend.stage,
                 bend.state,
                 bend.limit.unwrap_or("no limit"),
-                bend.code,
-                report.spec.file,
-                bend.line,
-                bend.quoted
-            )?;
+                bend.code
+            );
+            writeln!(out, "{}", folded(&line, "", "  "))?;
+            writeln!(out, "  {}:{}: {}", report.spec.file, bend.line, bend.quoted)?;
         }
     }
-    if report.hangs_on_width {
-        writeln!(out)?;
-        writeln!(
-            out,
-            "The verdict hangs on the yarn's width: measure it in the cloth and give `width`."
-        )?;
+    let hangs = report.hangs_on_width.then(|| HANGS_ON_WIDTH.to_owned());
+    let mut warned = report.warnings.iter().chain(&hangs).peekable();
+    if warned.peek().is_some() {
+        heading(out, "Mind")?;
+    }
+    for warning in warned {
+        writeln!(out, "{}", folded(warning, "- ", "  "))?;
     }
     heading(out, "Bends, in the order of the way")?;
     writeln!(out, "{}", bend_table(&report.bends))?;
@@ -93,6 +92,10 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     heading(out, "Cautions")?;
     list(out, &report.cautions)
 }
+
+/// Where the state changes with the assumed outlines.
+pub(super) const HANGS_ON_WIDTH: &str =
+    "the verdict hangs on the yarn's width: measure it in the cloth and give `width`";
 
 fn verdict_style(verdict: &str) -> Style {
     let colour = match verdict {
@@ -208,16 +211,15 @@ pub(super) fn bend_sentences(bend: &BendRow) -> Vec<String> {
 }
 
 /// Columns of the table of bends: head and value; shared by text and Markdown.
-pub(super) const BEND_COLUMNS: [&str; 10] = [
+pub(super) const BEND_COLUMNS: [&str; 9] = [
     "state",
     "reserve",
     "limit",
     "place",
     "stage",
-    "yarn",
+    "of",
     "radius mm",
     "pull cN",
-    "pull MPa",
     "bend MPa",
 ];
 
@@ -233,20 +235,27 @@ fn limit_cell(bend: &BendRow) -> String {
     }
 }
 
-/// One bend as the cells of its row.
-pub(super) fn bend_cells(bend: &BendRow) -> [String; 10] {
-    let number = |value: Option<f64>| value.map_or_else(|| "-".to_owned(), |v| significant(v, 3));
+/// One bend as the cells of its row. Heat bends nothing: its row tells the temperatures.
+pub(super) fn bend_cells(bend: &BendRow) -> [String; 9] {
+    let heat = bend.temperature_c.zip(bend.max_temperature_c);
+    let number = |value: Option<f64>| {
+        let shown = value.filter(|_| heat.is_none());
+        shown.map_or_else(|| "-".to_owned(), |v| significant(v, 3))
+    };
+    let limit = match heat {
+        Some((here, limit)) => format!("{} over {} degC", plain(here, 4), plain(limit, 4)),
+        None => limit_cell(bend),
+    };
     [
         bend.state.to_owned(),
         number(bend.reserve),
-        limit_cell(bend),
+        limit,
         bend.place.clone(),
         bend.stage.to_owned(),
-        bend.yarn.clone(),
+        bend.system.to_owned(),
         number(bend.radius_mm),
-        significant(100.0 * bend.tension_n, 3),
-        significant(bend.axial_stress_mpa, 3),
-        significant(bend.bending_stress_mpa, 3),
+        number(Some(100.0 * bend.tension_n)),
+        number(Some(bend.bending_stress_mpa)),
     ]
 }
 
@@ -254,7 +263,7 @@ fn bend_table(bends: &[BendRow]) -> String {
     table(
         BEND_COLUMNS,
         bends.iter().map(|bend| bend_cells(bend).to_vec()),
-        &[1, 6, 7, 8, 9],
+        &[1, 6, 7, 8],
     )
 }
 
@@ -288,7 +297,7 @@ pub(super) fn system_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[Stri
         row("crimp %", &|s| significant(100.0 * s.crimp, 3)),
         row("wave height mm", &|s| significant(s.wave_height_mm, 3)),
         row("slope deg", &|s| significant(s.wrap_angle_deg, 3)),
-        row("smallest radius mm", &|s| {
+        row("taut radius mm", &|s| {
             s.min_radius_mm
                 .map_or_else(|| "straight".to_owned(), |r| significant(r, 3))
         }),

@@ -15,6 +15,7 @@ use crate::span::Span;
 pub struct Table<'a> {
     problems: &'a Problems,
     table: &'a Branch,
+    keys: &'static [Key],
     span: Span,
     what: String,
 }
@@ -31,6 +32,7 @@ impl<'a> Table<'a> {
         let this = Self {
             problems,
             table,
+            keys,
             span,
             what: what.into(),
         };
@@ -78,8 +80,21 @@ impl<'a> Table<'a> {
         self.problems.push(problem);
     }
 
+    /// Whether an unknown key of this table looks like a known one: it has been reported, and what it should have
+    /// been is not missing.
+    pub fn has_misspelt(&self, key: &str) -> bool {
+        let known = || self.keys.iter().map(|known| known.name);
+        self.table
+            .iter()
+            .filter(|(name, _)| !known().any(|known| known == name.value))
+            .any(|(name, _)| nearest_of(&name.value, known()) == Some(key))
+    }
+
     /// Reports a missing key; `takes` says what would do.
     pub fn missing(&self, key: &str, takes: &str) {
+        if self.has_misspelt(key) {
+            return;
+        }
         self.push(
             Problem::at(
                 self.span(),
@@ -103,11 +118,16 @@ impl<'a> Table<'a> {
     }
 
     fn wrong_type<T>(&self, key: &str, found: &Placed<Value>, wanted: &str) -> Field<T> {
-        self.push(Problem::at(
+        let word = found.value.digits().unwrap_or_else(|| found.value.word());
+        let mut problem = Problem::at(
             found.span.clone(),
-            format!("`{key}` takes {wanted}, not {}", found.value.word()),
+            format!("`{key}` takes {wanted}, not {word}"),
             format!("{wanted} needed"),
-        ));
+        );
+        if wanted == "a table" {
+            problem = problem.help(format!("write `[{key}]`"));
+        }
+        self.push(problem);
         Field::Wrong
     }
 
@@ -123,6 +143,17 @@ impl<'a> Table<'a> {
                     format!("`{key}` is empty"),
                     "empty",
                 ));
+                Field::Wrong
+            }
+            Value::Text(text) if text.chars().any(hidden) => {
+                self.push(
+                    Problem::at(
+                        found.span.clone(),
+                        format!("`{key}` has a line end or another character that is not shown"),
+                        "not shown",
+                    )
+                    .help("write it in one line of plain text"),
+                );
                 Field::Wrong
             }
             Value::Text(text) => Field::Given(Placed {
@@ -155,7 +186,7 @@ impl<'a> Table<'a> {
                 self.push(
                     Problem::at(
                         text.span,
-                        format!("`{}` is no `{key}`", text.value),
+                        format!("`{key}` takes one of some words, not `{}`", text.value),
                         "unknown word",
                     )
                     .nearest(nearest_of(&text.value, words.iter().map(|(word, _)| *word)))
@@ -214,8 +245,8 @@ impl<'a> Table<'a> {
                 Some(broken) => {
                     self.push(Problem::at(
                         span,
-                        format!("`{key}` {broken}"),
-                        format!("{text}"),
+                        format!("`{key}` {broken}{}", in_unit(quantity.dimension)),
+                        text.as_str(),
                     ));
                     Field::Wrong
                 }
@@ -336,6 +367,18 @@ impl<'a> Table<'a> {
             self.wrong_type::<()>(key, found, &format!("tables, `[{key}.NAME]`"));
             return Vec::new();
         };
+        let is_table = |found: &Placed<Value>| matches!(found.value, Value::Table(_));
+        if !outer.iter().any(|(_, value)| is_table(value)) {
+            self.push(
+                Problem::at(
+                    found.span.clone(),
+                    format!("`[{key}]` has no name"),
+                    "no name",
+                )
+                .help(format!("write `[{key}.NAME]`, with a name of your own")),
+            );
+            return Vec::new();
+        }
         let mut tables = Vec::new();
         for (name, value) in outer.iter() {
             let text = name.value.clone();
@@ -387,6 +430,21 @@ impl<'a> Table<'a> {
         }
         tables
     }
+}
+
+/// How the bound of a quantity is told: in the internal unit of its dimension.
+fn in_unit(dimension: Dimension) -> &'static str {
+    match dimension {
+        Dimension::Temperature => " degC",
+        Dimension::Share => " (as a share: 1 is 100 %)",
+        _ => "",
+    }
+}
+
+/// Characters that move or hide text on a terminal: controls, and the marks that turn the direction of writing.
+fn hidden(c: char) -> bool {
+    c.is_control()
+        || matches!(c, '\u{200e}' | '\u{200f}' | '\u{202a}'..='\u{202e}' | '\u{2066}'..='\u{2069}')
 }
 
 /// Whether a quantity is zero or of a size that can be.

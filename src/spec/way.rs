@@ -12,6 +12,9 @@ use crate::span::Span;
 /// Friction where neither spec nor fibre has one (common practice, no source).
 pub const DEFAULT_FRICTION: f64 = 0.25;
 
+/// More stations than any way has.
+const MOST_PASSAGES: usize = 500;
+
 /// One station on a yarn's way.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Passage {
@@ -54,8 +57,20 @@ pub struct Tool {
 
 /// Reads every `[[passage]]`.
 pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
+    let tables = spec.tables("passage", PASSAGE);
+    if let Some(one_too_many) = tables.get(MOST_PASSAGES) {
+        spec.push(
+            Problem::at(
+                one_too_many.span(),
+                format!("more than {MOST_PASSAGES} passages"),
+                "too many",
+            )
+            .help("leave out those that bend the yarn least"),
+        );
+        return Vec::new();
+    }
     let mut passages = Vec::new();
-    for table in spec.tables("passage", PASSAGE) {
+    for table in tables {
         passages.extend(read_passage(&table, weave));
     }
     passages

@@ -90,7 +90,7 @@ pub fn read_weave(spec: &Table<'_>, yarns: &[SpecYarn], weaves: &Weaves) -> Opti
     let rest = table
         .measure("rest", Dimension::Share, Bound::Within(0.0, 1.0))
         .value();
-    let peak = table.number("peak", Bound::Within(1.0, f64::MAX)).value();
+    let peak = table.number("peak", Bound::Within(1.0, 100.0)).value();
     let span = thickness
         .clone()
         .given()

@@ -57,7 +57,7 @@ fn read_one(name: &Placed<String>, table: &Table<'_>, fibres: &Fibres) -> Option
     let binding = table.number("binding", Bound::Within(0.0, 1.0)).value();
     let rigidity = table.measure("bending_rigidity", Dimension::Rigidity, Bound::Positive);
     let spread = table
-        .number("tension_spread", Bound::Within(1.0, f64::MAX))
+        .number("tension_spread", Bound::Within(1.0, 1e3))
         .value();
     let fibre = fibre?;
     let places = [
@@ -74,6 +74,12 @@ fn read_one(name: &Placed<String>, table: &Table<'_>, fibres: &Fibres) -> Option
     }
     let count = match Count::resolve(given, fibre.diameter_mm, fibre.density_g_cm3) {
         Ok(count) => count,
+        // A misspelt key has been reported; it is no count that is missing.
+        Err(CountError::TooLittle)
+            if table.has_misspelt("linear_density") || table.has_misspelt("filaments") =>
+        {
+            return None;
+        }
         Err(error) => {
             let span = places
                 .into_iter()

@@ -107,7 +107,9 @@ pub fn share(warp: &Wave, weft: &Wave, whole_mm: f64, by: Closure) -> Option<Sha
         }
         Closure::EqualHeights => (0.5 * whole_mm, true),
     };
+    // A wave lower than the accuracy of its height is none.
     let warp_mm = asked.clamp(low, high);
+    let warp_mm = if warp_mm < slack { 0.0 } else { warp_mm };
     let moved = (warp_mm - asked).abs() > 1e-9 * whole_mm;
     Some(Share {
         warp_mm,

@@ -1,0 +1,73 @@
+//! What a reader must not miss: where the result is not what the spec asked for, or is known to mislead.
+
+use super::Outcome;
+use crate::bend::{Stage, SystemName};
+use crate::judge::{Limit, State};
+use crate::passage::chain;
+use crate::quantity::significant;
+use crate::spec::{Passage, Spec};
+
+/// Everything to be said beside the verdict, in a stable order.
+pub fn warnings(spec: &Spec, outcome: &Outcome) -> Vec<String> {
+    let mut said = Vec::new();
+    said.extend(crimps(spec, outcome));
+    said.extend(chains(spec));
+    if let Some(packing) = outcome.cloth.raised_packing {
+        said.push(format!(
+            "packing had to be raised to {} before these yarns could interlace: measure their width and thickness",
+            significant(packing, 3)
+        ));
+    }
+    let broken_wire = outcome
+        .findings
+        .iter()
+        .any(|finding| finding.state == State::Breaks && finding.limit == Some(Limit::Strain));
+    if broken_wire {
+        said.push(
+            "breaks by elongation: soft wire often bends further than its elongation at break, which leaves out necking (`lissom explain strain-at-break`)"
+                .to_owned(),
+        );
+    }
+    said
+}
+
+/// Measured crimps that the cloth does not have.
+fn crimps(spec: &Spec, outcome: &Outcome) -> Vec<String> {
+    let (weave, cloth) = (&spec.weave, &outcome.cloth);
+    [("warp", &weave.warp, &cloth.warp), ("weft", &weave.weft, &cloth.weft)]
+        .into_iter()
+        .filter_map(|(word, system, woven)| {
+            let given = system.crimp?;
+            let off = (woven.crimp - given).abs() > 0.02 * given.max(woven.crimp);
+            let percent = |crimp: f64| significant(100.0 * crimp, 3);
+            off.then(|| {
+                format!(
+                    "measured {word} crimp {} %, the cloth computed has {} %: crimp, sett or yarn thickness does not fit",
+                    percent(given),
+                    percent(woven.crimp)
+                )
+            })
+        })
+        .collect()
+}
+
+/// Routes whose pull does not arrive at the fell's.
+fn chains(spec: &Spec) -> Vec<String> {
+    [("warp", SystemName::Warp, &spec.weave.warp), ("weft", SystemName::Weft, &spec.weave.weft)]
+        .into_iter()
+        .filter_map(|(word, name, system)| {
+            let here = |passage: &&Passage| passage.system == name && passage.stage == Stage::Weaving;
+            let route: Vec<&Passage> = spec.passages.iter().filter(here).collect();
+            let ends = chain(&route, system.tension_n).last().copied()?;
+            let off = (ends - system.tension_n).abs() > 0.05 * system.tension_n;
+            let cn = |newton: f64| significant(100.0 * newton, 3);
+            off.then(|| {
+                format!(
+                    "the {word}'s stations end at a mean of {} cN, the fell has {} cN: tensions or frictions do not fit",
+                    cn(ends),
+                    cn(system.tension_n)
+                )
+            })
+        })
+        .collect()
+}
