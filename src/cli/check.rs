@@ -143,7 +143,7 @@ pub(super) fn load_weaves(folder: Option<&Path>, streams: &Streams) -> Result<We
 }
 
 /// Reads a spec's text; `-` is standard input.
-fn read_source(path: &Path, streams: &Streams) -> Result<SourceText, Status> {
+pub(super) fn read_source(path: &Path, streams: &Streams) -> Result<SourceText, Status> {
     let (name, bytes) = if path.as_os_str() == "-" {
         let mut bytes = Vec::new();
         (

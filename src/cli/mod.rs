@@ -1,6 +1,7 @@
 //! The command line: one file per command; each joins studies and reports.
 
 mod check;
+mod compare;
 mod explain;
 mod fibres;
 mod new;
@@ -43,6 +44,8 @@ struct Arguments {
 enum Command {
     /// Check one or several specs: what breaks, kinks or yields, by what margin, where
     Check(check::Check),
+    /// Lay specs side by side, or one over a grid of values of its keys
+    Compare(compare::Compare),
     /// List the fibres, or show everything known of one
     Fibres(fibres::Fibres),
     /// List the named weaves, or draw one on point paper
@@ -71,6 +74,7 @@ pub(crate) fn run() -> ExitCode {
     let streams = out::Streams::new(arguments.color);
     let status = match arguments.command {
         Command::Check(command) => command.run(&streams),
+        Command::Compare(command) => command.run(&streams),
         Command::Fibres(command) => command.run(&streams),
         Command::Weaves(command) => command.run(&streams),
         Command::New(command) => command.run(&streams),

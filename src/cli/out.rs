@@ -6,7 +6,7 @@ use clap::ValueEnum;
 use std::fmt::Display;
 use std::fs;
 use std::io::{self, ErrorKind, Write};
-use std::path::Path;
+use std::path::{Path, PathBuf};
 
 /// When to colour.
 #[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
@@ -73,35 +73,68 @@ impl Streams {
     }
 }
 
-/// Writes a file whole or not at all: beside it first, then moved over it. A link is followed; what is no file (a
-/// pipe, a device) is written to.
+/// Writes a file whole or not at all.
 fn write_whole(path: &Path, bytes: &[u8]) -> io::Result<()> {
-    let target = match fs::metadata(path) {
-        Ok(there) if !there.is_file() => {
-            return fs::OpenOptions::new()
-                .write(true)
-                .open(path)?
-                .write_all(bytes);
+    let file = NewFile::beside(path)?;
+    file.writer()?.write_all(bytes)?;
+    file.keep()
+}
+
+/// What is being written in place of a file: beside it first, then moved over it. A link is followed; what is no file
+/// (a pipe, a device) is written to.
+#[derive(Debug)]
+pub(super) enum NewFile {
+    /// Written beside, to be moved.
+    Beside(tempfile::NamedTempFile, PathBuf),
+    /// Written to as it is.
+    There(fs::File),
+}
+
+impl NewFile {
+    pub(super) fn beside(path: &Path) -> io::Result<Self> {
+        let target = match fs::metadata(path) {
+            Ok(there) if !there.is_file() => {
+                return Ok(Self::There(fs::OpenOptions::new().write(true).open(path)?));
+            }
+            Ok(_) => fs::canonicalize(path)?,
+            Err(_) => path.to_path_buf(),
+        };
+        let file = beside(&target)?;
+        if let Ok(old) = fs::metadata(&target) {
+            fs::set_permissions(file.path(), old.permissions())?;
         }
-        Ok(_) => fs::canonicalize(path)?,
-        Err(_) => path.to_path_buf(),
-    };
-    let beside = beside(&target, bytes)?;
-    if let Ok(old) = fs::metadata(&target) {
-        fs::set_permissions(beside.path(), old.permissions())?;
+        Ok(Self::Beside(file, target))
     }
-    beside.persist(target)?;
-    Ok(())
+
+    /// Where to write.
+    pub(super) fn writer(&self) -> io::Result<fs::File> {
+        match self {
+            Self::Beside(file, _) => file.as_file().try_clone(),
+            Self::There(file) => file.try_clone(),
+        }
+    }
+
+    /// Puts it in its place, when all of it is written.
+    pub(super) fn keep(self) -> io::Result<()> {
+        if let Self::Beside(file, target) = self {
+            file.as_file().sync_all()?;
+            file.persist(target)?;
+        }
+        Ok(())
+    }
 }
 
 /// Writes a new file whole or not at all; refuses where there is one.
 pub(super) fn write_new(path: &Path, bytes: &[u8]) -> io::Result<()> {
-    beside(path, bytes)?.persist_noclobber(path)?;
+    let mut file = beside(path)?;
+    file.write_all(bytes)?;
+    file.as_file().sync_all()?;
+    file.persist_noclobber(path)?;
     Ok(())
 }
 
 /// A file beside `path` with the rights any new file gets.
-fn beside(path: &Path, bytes: &[u8]) -> io::Result<tempfile::NamedTempFile> {
+fn beside(path: &Path) -> io::Result<tempfile::NamedTempFile> {
     let folder = match path.parent() {
         Some(folder) if !folder.as_os_str().is_empty() => folder,
         _ => Path::new("."),
@@ -113,8 +146,5 @@ fn beside(path: &Path, bytes: &[u8]) -> io::Result<tempfile::NamedTempFile> {
         // The process's mask takes off what others may not.
         options.permissions(fs::Permissions::from_mode(0o666));
     }
-    let mut file = options.tempfile_in(folder)?;
-    file.write_all(bytes)?;
-    file.as_file().sync_all()?;
-    Ok(file)
+    options.tempfile_in(folder)
 }

@@ -216,12 +216,7 @@ impl CheckReport {
         let verdict = outcome.verdict().word();
         Self {
             lissom: env!("CARGO_PKG_VERSION"),
-            spec: SpecReport {
-                name: spec.name.clone(),
-                reference: spec.reference.clone(),
-                sha256: sha256(&spec.source.text),
-                file: spec.source.name.clone(),
-            },
+            spec: SpecReport::new(spec),
             // An outline that cannot be woven changes nothing.
             hangs_on_width: sensitivity
                 .iter()
@@ -259,8 +254,21 @@ fn sha256(text: &str) -> String {
         })
 }
 
+impl SpecReport {
+    /// Which spec it is.
+    pub fn new(spec: &Spec) -> Self {
+        Self {
+            name: spec.name.clone(),
+            reference: spec.reference.clone(),
+            sha256: sha256(&spec.source.text),
+            file: spec.source.name.clone(),
+        }
+    }
+}
+
 impl ClothReport {
-    fn new(spec: &Spec, cloth: &Cloth) -> Self {
+    /// The numbers of a spec's cloth.
+    pub fn new(spec: &Spec, cloth: &Cloth) -> Self {
         let weave = &spec.weave;
         Self {
             pattern: weave.pattern_name.clone(),

@@ -17,7 +17,7 @@ pub fn markdown(report: &CheckReport) -> String {
 }
 
 /// A user's text so that it cannot become markup.
-fn escaped(text: &str) -> String {
+pub(super) fn escaped(text: &str) -> String {
     let mut safe = String::with_capacity(text.len());
     for c in text.chars() {
         match c {

@@ -3,6 +3,7 @@
 //! | file | what is in it |
 //! | --- | --- |
 //! | `check` | the one report of `check`, from which all formats are printed; its fields are the JSON contract |
+//! | `compare` | the report of a comparison, in all formats |
 //! | `text`, `markdown`, `json` | the formats |
 //! | `table` | tables in text |
 //! | `cautions` | what every report warns of, by fibre |
@@ -11,6 +12,7 @@
 
 mod cautions;
 mod check;
+mod compare;
 mod fibres;
 mod json;
 mod markdown;
@@ -20,7 +22,12 @@ mod text;
 mod weaves;
 
 pub use cautions::cautions;
-pub use check::{BendRow, CheckReport, ClothReport, LimitRow, SensitivityRow, SystemReport};
+pub use check::{
+    BendRow, CheckReport, ClothReport, LimitRow, SensitivityRow, SpecReport, SystemReport,
+};
+pub use compare::{
+    BriefRow, CompareCsv, CompareReport, Merit, VariantRow, VaryCell, VaryColumn, WovenRow,
+};
 pub use fibres::{fibre_text, fibres_json, fibres_text};
 pub use json::to_json;
 pub use markdown::markdown;

@@ -4,7 +4,7 @@ use comfy_table::{CellAlignment, ContentArrangement, LineStyle, Table, TableStyl
 
 /// A table as lines without blanks at their ends; `right` columns are set to the right.
 pub(super) fn table(
-    head: impl IntoIterator<Item = &'static str>,
+    head: impl IntoIterator<Item = impl Into<String>>,
     rows: impl IntoIterator<Item = Vec<String>>,
     right: &[usize],
 ) -> String {
@@ -12,7 +12,7 @@ pub(super) fn table(
     table
         .load_style(TableStyle::new().header_separator(LineStyle::new('-', '-', '-', '-')))
         .set_content_arrangement(ContentArrangement::Disabled)
-        .set_header(head.into_iter().collect::<Vec<_>>());
+        .set_header(head.into_iter().map(Into::into).collect::<Vec<String>>());
     for row in rows {
         table.add_row(row);
     }

@@ -13,6 +13,8 @@ pub struct Problem {
     pub label: String,
     /// What would be right; each a line of its own.
     pub help: Vec<String>,
+    /// Whether the spec is well written and its yarns only do not fit beside each other: what a study tells as jammed.
+    pub crowded: bool,
 }
 
 impl Problem {
@@ -23,7 +25,15 @@ impl Problem {
             span,
             label: label.into(),
             help: Vec::new(),
+            crowded: false,
         }
+    }
+
+    /// The same problem, told as yarns that do not fit beside each other.
+    #[must_use]
+    pub fn crowded(mut self) -> Self {
+        self.crowded = true;
+        self
     }
 
     /// With a line of what would be right.

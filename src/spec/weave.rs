@@ -300,10 +300,12 @@ fn lay_problem(error: &LayError, spec: &SpecYarn, yarn: &Yarn, sett: &Placed<f64
         }
         LayError::SolidTooWide { .. } | LayError::OnEdge { .. } => {}
     }
-    Problem::at(span, message, "too close").help(format!(
-        "this yarn lies side by side up to {} /cm; interlacing needs more room still",
-        floor_3_digits(largest_per_cm)
-    ))
+    Problem::at(span, message, "too close")
+        .crowded()
+        .help(format!(
+            "this yarn lies side by side up to {} /cm; interlacing needs more room still",
+            floor_3_digits(largest_per_cm)
+        ))
 }
 
 /// Rounded down to three digits, for a limit a person may set.
