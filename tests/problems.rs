@@ -53,6 +53,8 @@ fn the_good_spec_is_good() {
 
 /// Name of the case, what is replaced, by what.
 const CASES: &[(&str, &str, &str)] = &[
+    ("wrong designation", "\"68 tex\"", "\"ECX 75 1/0\""),
+    ("wrong ISO code", "\"plain\"", "\"30-07 01-01-02\""),
     ("bare number", "\"200 tex\"", "200"),
     ("bare real number", "\"0.5 mm\"", "0.5"),
     ("no unit", "\"200 tex\"", "\"200\""),
@@ -228,7 +230,7 @@ const CASES: &[(&str, &str, &str)] = &[
 
 #[test]
 fn every_wrong_spec_gets_its_message() {
-    assert!(CASES.len() >= 63, "the number of cases never falls");
+    assert!(CASES.len() >= 65, "the number of cases never falls");
     for (name, from, to) in CASES {
         let mut spoilt = GOOD.replacen(from, to, 1);
         if name.starts_with("too many") {

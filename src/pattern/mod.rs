@@ -18,6 +18,7 @@
 //! - `hanging`: whether it is one cloth or falls apart ([`Layers`]; Clapham 1980);
 //! - `family`: plain, ribs, hopsack, twills, satins built from their numbers;
 //! - `words`, `notation`: the same asked for in a weaver's words ([`parse_notation`]);
+//! - `iso`: ISO 9354 codes, read and written ([`parse_iso_9354`]);
 //! - `library`, `weave_file`, `builtin`: named weaves, one TOML each, in `weaves/` and in a user's own folder ([`Weaves`]);
 //! - `woven`: a pattern with what follows from it, worked out once ([`Woven`]);
 //! - `draw`: point paper for the terminal ([`draw()`]).
@@ -30,6 +31,7 @@ mod draw;
 mod family;
 mod hanging;
 mod interlacing;
+mod iso;
 mod library;
 mod matrix;
 mod notation;
@@ -47,6 +49,7 @@ pub use family::{
 };
 pub use hanging::{Layer, Layers};
 pub use interlacing::{Float, FloatLength, Interlacing, Side, SystemInterlacing, YarnInterlacing};
+pub use iso::{IsoError, parse_iso_9354};
 pub use library::{Weave, Weaves};
 pub use matrix::{MAX_REPEAT, Pattern, PatternError};
 pub use notation::{NotationError, parse_notation};

@@ -2,12 +2,13 @@
 //!
 //! In this order, so that a name always means the file it stands for:
 //! 1. a name of the library, loosely: case, blanks, hyphens and underscores aside (`Satin 8`, `hopsack_2-2`);
-//! 2. (the place of ISO 9354 codes, which are digits, hyphens and blanks only, as no name and no words are);
+//! 2. ISO 9354 codes, which are digits, hyphens and blanks only, as no name and no words are (`iso`);
 //! 3. words (`twill 2/2 z`); a test holds the library's regular weaves to what the words give.
 //!
 //! A text that is none of them is answered with the nearest text that is: the same words with the misspelt ones put right,
 //! if that reads as a weave, else the nearest name.
 
+use super::iso::{IsoError, looks_like_code, parse_iso_9354};
 use super::{FamilyError, Pattern, Weaves, words};
 use thiserror::Error;
 
@@ -55,6 +56,9 @@ pub enum NotationError {
     /// Words in order, numbers that make no such weave.
     #[error(transparent)]
     Family(#[from] FamilyError),
+    /// Digits that are no ISO 9354 code.
+    #[error(transparent)]
+    Iso(#[from] IsoError),
 }
 
 impl NotationError {
@@ -90,6 +94,9 @@ impl Weaves {
         }
         if let Some(weave) = self.find(text) {
             return Ok(weave.pattern);
+        }
+        if looks_like_code(text) {
+            return Ok(parse_iso_9354(text)?);
         }
         words::parse(text).map_err(|error| match error {
             NotationError::Unknown {

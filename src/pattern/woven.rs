@@ -16,6 +16,8 @@ pub struct Woven {
     pub interlacing: Interlacing,
     /// Absent where it hangs together.
     pub layers: Option<Layers>,
+    /// Its ISO 9354 code, where it has one.
+    pub iso_9354: Option<String>,
 }
 
 impl Woven {
@@ -25,6 +27,7 @@ impl Woven {
         Self {
             interlacing: pattern.interlacing(),
             layers: pattern.falls_apart(),
+            iso_9354: pattern.iso_9354(),
             pattern,
         }
     }

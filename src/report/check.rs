@@ -68,6 +68,8 @@ pub struct SpecReport {
 )]
 pub struct ClothReport {
     pub pattern: String,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub iso_9354: Option<String>,
     pub ends: usize,
     pub picks: usize,
     pub jam_limited: bool,
@@ -272,6 +274,7 @@ impl ClothReport {
         let weave = &spec.weave;
         Self {
             pattern: weave.pattern_name.clone(),
+            iso_9354: weave.woven.iso_9354.clone(),
             ends: weave.woven.pattern.ends(),
             picks: weave.woven.pattern.picks(),
             jam_limited: cloth.closed.jam_limited,

@@ -316,7 +316,14 @@ fn system_table(warp: &SystemReport, weft: &SystemReport) -> String {
 /// The line that names the weave.
 pub(super) fn pattern_line(report: &CheckReport) -> String {
     let cloth = &report.cloth;
-    format!("{}, repeat {} x {}", cloth.pattern, cloth.ends, cloth.picks)
+    let code = cloth
+        .iso_9354
+        .as_ref()
+        .map_or_else(String::new, |code| format!(", ISO 9354 {code}"));
+    format!(
+        "{}, repeat {} x {}{code}",
+        cloth.pattern, cloth.ends, cloth.picks
+    )
 }
 
 /// The cloth's own numbers: name and value; shared by text and Markdown.

@@ -48,7 +48,7 @@ pub fn weave_text(weave: &Weave, marks: Marks) -> String {
     format!(
         "{}: {}\n{}\n\n{}\nrepeat           {} ends x {} picks\n\
          longest float    warp {}\n                 weft {}\n\
-         interlacings     {} in the repeat\nhangs together   {together}\n",
+         interlacings     {} in the repeat\nhangs together   {together}\nISO 9354         {}\n",
         weave.name,
         weave.title,
         folded(&weave.sentence, "", ""),
@@ -58,6 +58,7 @@ pub fn weave_text(weave: &Weave, marks: Marks) -> String {
         floats(&woven.warp),
         floats(&woven.weft),
         woven.total_changes(),
+        weave.pattern.iso_9354().as_deref().unwrap_or("none"),
     )
 }
 
@@ -69,6 +70,7 @@ pub fn weaves_json(weaves: &[Weave]) -> Value {
             "name": weave.name,
             "title": weave.title,
             "sentence": weave.sentence,
+            "iso_9354": weave.pattern.iso_9354().unwrap_or_default(),
             "ends": weave.pattern.ends(),
             "picks": weave.pattern.picks(),
             "rows": weave.pattern.rows(),

@@ -176,7 +176,7 @@ pub const YARN: &[Key] = &[
     ),
     key(
         "linear_density",
-        "linear density, \"200 tex\"",
+        "linear density, \"200 tex\", or a glass yarn's designation, \"ECG 75 1/0\", \"EC9 68\"",
         "from filaments and diameter",
         "mass per length",
     ),
@@ -252,7 +252,7 @@ pub const YARN: &[Key] = &[
 pub const WEAVE: &[Key] = &[
     key(
         "pattern",
-        "name or words, \"satin-8\", \"twill 2/2 z\"",
+        "name, words or ISO 9354 code, \"satin-8\", \"twill 2/2 z\", \"30-07 01-01-03\"",
         "required, or `rows`",
         "the weave",
     ),

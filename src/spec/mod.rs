@@ -209,6 +209,26 @@ kinks = "refuse"
         assert!(spec.source.text[spec.weave.weft.span.clone()].starts_with("{ yarn = \"back\""));
     }
 
+    /// G 75 by its yield is 66.14 tex of 9 um; with the count given, tex and count fix the diameter (9.1 um at 2.54 g/cm3).
+    #[test]
+    fn a_glass_designation_gives_tex_and_filament() {
+        let text = "name = \"n\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"ECG 75 1/0\"\n[weave]\n\
+            pattern = \"30-07 01-01-03\"\nwarp = { yarn = \"y\", sett = \"10 /cm\" }\nweft = { yarn = \"y\", sett = \"10 /cm\" }\n";
+        let count = |text: &str| {
+            let spec = Spec::read(SourceText::new("n", text), &Weaves::builtin()).unwrap();
+            assert_eq!(spec.weave.woven.iso_9354.as_deref(), Some("30-07 01-01-03"));
+            spec.weave.warp.yarn.count
+        };
+        let by_letter = count(text);
+        assert!((by_letter.linear_density_tex - 66.14).abs() < 0.005);
+        assert_eq!(
+            (by_letter.filaments, by_letter.filament_diameter_mm),
+            (409, 0.009)
+        );
+        let counted = count(&text.replace("1/0\"", "1/0\"\nfilaments = 400"));
+        assert!((1e3 * counted.filament_diameter_mm - 9.104).abs() < 0.001);
+    }
+
     #[test]
     fn what_is_left_out_takes_the_default_of_the_trade() {
         let text = "name = \"n\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"68 tex\"\n[weave]\n\

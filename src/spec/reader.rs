@@ -131,6 +131,18 @@ impl<'a> Table<'a> {
         Field::Wrong
     }
 
+    /// The text under a key as it stands, if it is one.
+    pub fn peek_text(&self, key: &str) -> Option<Placed<String>> {
+        let found = self.raw(key)?;
+        match &found.value {
+            Value::Text(text) => Some(Placed {
+                value: text.clone(),
+                span: found.span.clone(),
+            }),
+            _ => None,
+        }
+    }
+
     /// A text that is not empty.
     pub fn text(&self, key: &str) -> Field<String> {
         let Some(found) = self.raw(key) else {

@@ -7,7 +7,9 @@ use super::problem::Problem;
 use super::reader::{Table, quantity_problem};
 use crate::quantity::{Dimension, TwistDirection, parse_twist, plain, significant};
 use crate::span::Span;
-use crate::yarn::{CLOSEST_PACKING, Count, CountError, CountGiven, Outline, Shape, Yarn, YarnForm};
+use crate::yarn::{
+    CLOSEST_PACKING, Count, CountError, CountGiven, Designation, Outline, Shape, Yarn, YarnForm,
+};
 use std::sync::Arc;
 
 /// Steeper than any yarn is spun (common practice, no source).
@@ -45,7 +47,7 @@ pub fn read_yarns(spec: &Table<'_>, fibres: &Fibres) -> Vec<SpecYarn> {
 fn read_one(name: &Placed<String>, table: &Table<'_>, fibres: &Fibres) -> Option<Yarn> {
     let fibre_name = table.required(table.text("fibre"), "fibre", "\"e-glass\"");
     let fibre = fibre_name.and_then(|name| fibres.find(table, &name));
-    let tex = table.measure("linear_density", Dimension::LinearDensity, Bound::Positive);
+    let (tex, nominal_diameter_mm) = read_linear_density(table);
     let filaments = table.count("filaments");
     let diameter = table.measure("filament_diameter", Dimension::Length, Bound::Positive);
     let counted = [
@@ -72,7 +74,11 @@ fn read_one(name: &Placed<String>, table: &Table<'_>, fibres: &Fibres) -> Option
     if counted.contains(&true) {
         return None;
     }
-    let count = match Count::resolve(given, fibre.diameter_mm, fibre.density_g_cm3) {
+    let count = match Count::resolve(
+        given,
+        nominal_diameter_mm.unwrap_or(fibre.diameter_mm),
+        fibre.density_g_cm3,
+    ) {
         Ok(count) => count,
         // A misspelt key has been reported; it is no count that is missing.
         Err(CountError::TooLittle)
@@ -115,6 +121,33 @@ fn read_one(name: &Placed<String>, table: &Table<'_>, fibres: &Fibres) -> Option
         tension_spread: spread.unwrap_or(1.0),
     };
     (form_agrees(table, &yarn) && twist_holds(table, &yarn)).then_some(yarn)
+}
+
+/// The linear density, and the nominal filament diameter where a glass yarn's designation tells one, mm.
+fn read_linear_density(table: &Table<'_>) -> (Field<f64>, Option<f64>) {
+    let key = "linear_density";
+    let designation = table
+        .peek_text(key)
+        .filter(|text| Designation::begins(&text.value));
+    let Some(text) = designation else {
+        return (
+            table.measure(key, Dimension::LinearDensity, Bound::Positive),
+            None,
+        );
+    };
+    match Designation::parse(&text.value) {
+        Ok(read) => {
+            let tex = Placed {
+                value: read.linear_density_tex,
+                span: text.span,
+            };
+            (Field::Given(tex), Some(read.filament_diameter_mm))
+        }
+        Err(error) => {
+            table.push(Problem::at(text.span, error.to_string(), "no designation"));
+            (Field::Wrong, None)
+        }
+    }
 }
 
 fn read_twist(table: &Table<'_>) -> Option<(f64, Option<TwistDirection>)> {

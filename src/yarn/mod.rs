@@ -5,16 +5,19 @@
 //! | `outline` | the four outlines: area, second moment, polygon |
 //! | `touch` | where a tight thread touches an outline and leaves it |
 //! | `count` | linear density, filaments and filament diameter: two fix the third |
+//! | `designation` | designations of glass yarns, `ECG 75 1/0`, as linear density |
 //! | `lay` | a yarn laid at its spacing: width, thickness and packing from what is given |
 //! | `rigidity` | bending rigidity of the yarn and pull on one filament |
 
 mod count;
+mod designation;
 mod lay;
 mod outline;
 mod rigidity;
 mod touch;
 
 pub use count::{Count, CountError, CountGiven, Followed};
+pub use designation::{Designation, DesignationError};
 pub use lay::{
     Basis, CLOSEST_PACKING, DEFAULT_PACKING, DEFAULT_WIDTH_SHARE, Laid, LayError, ROUND_HELIX_DEG,
     Vary,
