@@ -275,7 +275,9 @@ fn explain_tells_every_code() {
 
 #[test]
 fn help_is_as_its_snapshots_say() {
-    for command in ["", "check", "compare", "fibres", "weaves", "new", "explain"] {
+    for command in [
+        "", "check", "compare", "limits", "fibres", "weaves", "new", "explain",
+    ] {
         let arguments = [command, "--help"];
         let from = usize::from(command.is_empty());
         let name = if command.is_empty() {

@@ -53,7 +53,9 @@ fn the_readme_names_every_example_code_and_command() {
             code.word()
         );
     }
-    for command in ["check", "compare", "fibres", "weaves", "new", "explain"] {
+    for command in [
+        "check", "compare", "limits", "fibres", "weaves", "new", "explain",
+    ] {
         assert!(readme.contains(&format!("`lissom {command}")), "{command}");
     }
     assert!(readme.contains("cargo run --release -- check examples/radome-skin.toml"));

@@ -3,12 +3,12 @@
 use super::Status;
 use super::out::Streams;
 use clap::{Args, ValueEnum};
-use lissom::flow;
+use lissom::flow::{self, Outcome};
 use lissom::pattern::{WeaveFileError, Weaves};
-use lissom::report::{self, CheckReport};
+use lissom::report::{self, Advice, CheckReport, Setting};
 use lissom::span::SourceText;
-use lissom::spec::{Problem, Spec};
-use lissom::study::sensitivity;
+use lissom::spec::{Document, Problem, Spec};
+use lissom::study::{advice, sensitivity};
 use lissom::weave::Jammed;
 use std::io::{self, Read};
 use std::path::{Path, PathBuf};
@@ -103,20 +103,50 @@ impl Check {
         weaves: &Weaves,
         streams: &Streams,
     ) -> Result<CheckReport, Status> {
-        let source = read_source(path, streams)?;
-        let wrong = |source: &SourceText, problems: &[Problem]| {
-            streams.complain(report::problems(source, problems));
-            Status::WrongInput
-        };
-        let spec =
-            Spec::read(source.clone(), weaves).map_err(|problems| wrong(&source, &problems))?;
-        let outcome = flow::run(&spec, 1.0).map_err(|why| {
-            let jammed = Jammed::new(&spec.weave, why);
-            wrong(&source, &[report::jammed(&spec, &jammed)])
-        })?;
+        let (document, spec, outcome) = read_checked(path, weaves, streams)?;
         let variations = sensitivity(&spec, &outcome.cloth);
-        Ok(CheckReport::new(&spec, &outcome, &variations, self.strict))
+        let proposals = advice(&document, weaves, &spec, &outcome)
+            .into_iter()
+            .map(|proposal| Advice {
+                place: proposal.place,
+                text: proposal.text,
+                set: settings(proposal.set),
+            });
+        Ok(CheckReport::new(
+            &spec,
+            &outcome,
+            &variations,
+            proposals.collect(),
+            self.strict,
+        ))
     }
+}
+
+/// Keys and values as the report has them.
+pub(super) fn settings(set: Vec<(String, String)>) -> Vec<Setting> {
+    set.into_iter()
+        .map(|(key, value)| Setting { key, value })
+        .collect()
+}
+
+/// Reads a spec and runs it; what is wrong with it has been said.
+pub(super) fn read_checked(
+    path: &Path,
+    weaves: &Weaves,
+    streams: &Streams,
+) -> Result<(Document, Spec, Outcome), Status> {
+    let source = read_source(path, streams)?;
+    let wrong = |problems: &[Problem]| {
+        streams.complain(report::problems(&source, problems));
+        Status::WrongInput
+    };
+    let document = Document::parse(source.clone()).map_err(|problems| wrong(&problems))?;
+    let spec = document.spec(weaves).map_err(|problems| wrong(&problems))?;
+    let outcome = flow::run(&spec, 1.0).map_err(|why| {
+        let jammed = Jammed::new(&spec.weave, why);
+        wrong(&[report::jammed(&spec, &jammed)])
+    })?;
+    Ok((document, spec, outcome))
 }
 
 fn joined(reports: &[CheckReport], print: impl Fn(&CheckReport) -> String) -> String {

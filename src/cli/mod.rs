@@ -4,6 +4,7 @@ mod check;
 mod compare;
 mod explain;
 mod fibres;
+mod limits;
 mod new;
 mod out;
 mod weaves;
@@ -46,6 +47,8 @@ enum Command {
     Check(check::Check),
     /// Lay specs side by side, or one over a grid of values of its keys
     Compare(compare::Compare),
+    /// How far a spec may go: smallest radii, largest tensions, tightest setts that still hold
+    Limits(limits::Limits),
     /// List the fibres, or show everything known of one
     Fibres(fibres::Fibres),
     /// List the named weaves, or draw one on point paper
@@ -75,6 +78,7 @@ pub(crate) fn run() -> ExitCode {
     let status = match arguments.command {
         Command::Check(command) => command.run(&streams),
         Command::Compare(command) => command.run(&streams),
+        Command::Limits(command) => command.run(&streams),
         Command::Fibres(command) => command.run(&streams),
         Command::Weaves(command) => command.run(&streams),
         Command::New(command) => command.run(&streams),

@@ -208,11 +208,29 @@ pub struct Advice {
     pub place: String,
     /// In words.
     pub text: String,
+    /// Keys and their new values as the spec would have them; absent where nothing is in reach.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub set: Vec<Setting>,
+}
+
+/// A key of the spec and its new value.
+#[derive(Debug, Clone, PartialEq, Eq, Serialize)]
+pub struct Setting {
+    /// The key's path.
+    pub key: String,
+    /// The value as TOML.
+    pub value: String,
 }
 
 impl CheckReport {
     /// The report of a spec's outcome.
-    pub fn new(spec: &Spec, outcome: &Outcome, variations: &[Variation], strict: bool) -> Self {
+    pub fn new(
+        spec: &Spec,
+        outcome: &Outcome,
+        variations: &[Variation],
+        advice: Vec<Advice>,
+        strict: bool,
+    ) -> Self {
         let fibres = [&spec.weave.warp, &spec.weave.weft].map(|system| &system.yarn.fibre);
         let sensitivity: Vec<SensitivityRow> = variations.iter().map(SensitivityRow::new).collect();
         let verdict = outcome.verdict().word();
@@ -234,7 +252,7 @@ impl CheckReport {
             worst: outcome.worst(spec.require.refuse_kinks),
             sensitivity,
             warnings: warnings(spec, outcome),
-            advice: Vec::new(),
+            advice,
             assumptions: assumptions(spec, &outcome.cloth),
             cautions: cautions(&fibres),
         }

@@ -93,6 +93,28 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     for warning in warned {
         writeln!(out, "- {}", escaped(warning))?;
     }
+    if !report.advice.is_empty() {
+        writeln!(out, "\n## What would hold, one at a time\n")?;
+    }
+    for advice in &report.advice {
+        let set: Vec<String> = advice
+            .set
+            .iter()
+            .map(|set| format!("{} = {}", set.key, set.value))
+            .collect();
+        let set = if set.is_empty() {
+            String::new()
+        } else {
+            format!("; {}", set.join(", "))
+        };
+        writeln!(
+            out,
+            "- {}: {}{}",
+            escaped(&advice.place),
+            escaped(&advice.text),
+            escaped(&set)
+        )?;
+    }
     writeln!(out, "\n## Bends, in the order of the way\n")?;
     head(out, &BEND_COLUMNS)?;
     for bend in &report.bends {

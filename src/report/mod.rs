@@ -3,6 +3,7 @@
 //! | file | what is in it |
 //! | --- | --- |
 //! | `check` | the one report of `check`, from which all formats are printed; its fields are the JSON contract |
+//! | `limits` | how far a spec may go |
 //! | `compare` | the report of a comparison, in all formats |
 //! | `text`, `markdown`, `json` | the formats |
 //! | `table` | tables in text |
@@ -15,6 +16,7 @@ mod check;
 mod compare;
 mod fibres;
 mod json;
+mod limits;
 mod markdown;
 mod problems;
 mod table;
@@ -23,13 +25,15 @@ mod weaves;
 
 pub use cautions::cautions;
 pub use check::{
-    BendRow, CheckReport, ClothReport, LimitRow, SensitivityRow, SpecReport, SystemReport,
+    Advice, BendRow, CheckReport, ClothReport, LimitRow, SensitivityRow, Setting, SpecReport,
+    SystemReport,
 };
 pub use compare::{
     BriefRow, CompareCsv, CompareReport, Merit, VariantRow, VaryCell, VaryColumn, WovenRow,
 };
 pub use fibres::{fibre_text, fibres_json, fibres_text};
 pub use json::to_json;
+pub use limits::{LimitsReport, LimitsRow};
 pub use markdown::markdown;
 pub use problems::{jammed, problems};
 pub use text::text;

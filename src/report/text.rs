@@ -1,6 +1,6 @@
 //! Text for a terminal: the verdict first, the worst bend, then every bend, the cloth, what it hangs on.
 
-use super::check::{BendRow, CheckReport, LimitRow, SystemReport};
+use super::check::{Advice, BendRow, CheckReport, LimitRow, SystemReport};
 use super::table::{folded, table};
 use crate::quantity::{plain, significant};
 use anstyle::{AnsiColor, Style};
@@ -57,6 +57,23 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     for warning in warned {
         writeln!(out, "{}", folded(warning, "- ", "  "))?;
     }
+    if !report.advice.is_empty() {
+        heading(out, "What would hold, one at a time")?;
+    }
+    for place in places(&report.advice) {
+        writeln!(out, "{place}")?;
+        let here = || report.advice.iter().filter(|advice| advice.place == place);
+        for advice in here().filter(|advice| !advice.text.ends_with(OUT_OF_REACH)) {
+            writeln!(out, "{}", folded(&advice.text, "- ", "  "))?;
+        }
+        let no_use: Vec<&str> = here()
+            .filter_map(|advice| advice.text.strip_suffix(OUT_OF_REACH))
+            .collect();
+        if !no_use.is_empty() {
+            let line = format!("nothing in reach of: {}", no_use.join(", "));
+            writeln!(out, "{}", folded(&line, "- ", "  "))?;
+        }
+    }
     heading(out, "Bends, in the order of the way")?;
     writeln!(out, "{}", bend_table(&report.bends))?;
     heading(out, "Cloth")?;
@@ -96,6 +113,20 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
 /// Where the state changes with the assumed outlines.
 pub(super) const HANGS_ON_WIDTH: &str =
     "the verdict hangs on the yarn's width: measure it in the cloth and give `width`";
+
+/// How a lever that does not reach ends its sentence.
+const OUT_OF_REACH: &str = ": nothing in reach of this lever";
+
+/// The places with advice, each once.
+fn places(advice: &[Advice]) -> Vec<&str> {
+    let mut places: Vec<&str> = Vec::new();
+    for one in advice {
+        if !places.contains(&one.place.as_str()) {
+            places.push(&one.place);
+        }
+    }
+    places
+}
 
 fn verdict_style(verdict: &str) -> Style {
     let colour = match verdict {

@@ -4,12 +4,25 @@
 //! | --- | --- |
 //! | `vary` | a key of the spec and the values it takes |
 //! | `compare` | specs side by side and grids of values |
+//! | `lever`, `margin`, `solve` | what can be changed, how far a place is from holding, where it begins to hold |
+//! | `advice` | what would hold instead, the cheapest first |
+//! | `limits` | how far a spec may go |
 //! | `sensitivity` | how much the verdict hangs on the yarns' assumed outlines |
 
+mod advice;
 mod compare;
+mod lever;
+mod limits;
+mod margin;
 mod sensitivity;
+mod solve;
 mod vary;
 
+pub use advice::{Proposal, advice};
 pub use compare::{Grid, GridError, Place, Told};
+pub use lever::{Better, Lever};
+pub use limits::{Bound, limits};
+pub use margin::{Target, margin, margin_of};
 pub use sensitivity::{FLATNESS_FACTORS, sensitivity};
+pub use solve::{Found, solve};
 pub use vary::{Axis, AxisValue, MOST_VALUES, VaryError};

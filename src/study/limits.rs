@@ -1,0 +1,117 @@
+//! How far a spec may go before something stops holding: for each place the smallest radius, the largest turn and
+//! tension; for the cloth the tightest setts, the thickest filament, the largest binding. Each is run, and one step
+//! beyond it does not hold.
+
+use super::advice::{filament_diameters, setts, station, tension};
+use super::lever::{Better, Lever};
+use super::margin::Target;
+use super::solve::{Found, solve};
+use crate::flow::Outcome;
+use crate::pattern::Weaves;
+use crate::spec::{Document, Spec};
+
+/// One limit.
+#[derive(Debug, Clone, PartialEq)]
+pub struct Bound {
+    /// The place it is for.
+    pub place: String,
+    /// What is bounded, such as `smallest radius`.
+    pub what: String,
+    /// Its value today, with its unit.
+    pub today: String,
+    /// Keys and values at the limit, as the spec would have them; empty where there is none.
+    pub set: Vec<(String, String)>,
+    /// What was found.
+    pub found: Found,
+}
+
+/// Every limit of a spec, in the order of the way, the cloth's last.
+pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outcome) -> Vec<Bound> {
+    let mut targets: Vec<Target> = Vec::new();
+    for target in outcome.findings.iter().map(Target::of) {
+        if target != Target::Crowns && !targets.contains(&target) {
+            targets.push(target);
+        }
+    }
+    let mut bounds = Vec::new();
+    let mut bound = |target: &Target, lever: Lever| {
+        let found = solve(document, weaves, &lever, target);
+        let side = match lever.better {
+            Better::Up => "smallest",
+            Better::Down => "largest",
+        };
+        bounds.push(Bound {
+            place: target.name(),
+            what: if lever.name == "both setts" {
+                "tightest setts".to_owned()
+            } else {
+                format!("{side} {}", lever.name)
+            },
+            today: format!("{} {}", lever.digits(lever.today), lever.unit)
+                .trim_end()
+                .to_owned(),
+            set: match found {
+                Found::Holds { value, .. } => lever.settings(value),
+                Found::Everywhere | Found::Nowhere => Vec::new(),
+            },
+            found,
+        });
+    };
+    let weave = &spec.weave;
+    for target in &targets {
+        let Target::Place { place, system, .. } = target else {
+            continue;
+        };
+        for lever in station(spec, place).into_iter().flatten() {
+            bound(target, lever);
+        }
+        let (system, word) = match system {
+            crate::bend::SystemName::Warp => (&weave.warp, "warp"),
+            crate::bend::SystemName::Weft => (&weave.weft, "weft"),
+        };
+        if let Some(lever) = tension(system, word) {
+            bound(target, lever);
+        }
+    }
+    let cloth = [
+        setts(spec),
+        tension(&weave.warp, "warp"),
+        tension(&weave.weft, "weft"),
+    ];
+    let levers = cloth
+        .into_iter()
+        .chain(filament_diameters(spec))
+        .chain(bindings(spec));
+    for lever in levers.flatten() {
+        bound(&Target::Crowns, lever);
+    }
+    bounds
+}
+
+/// Binding of the yarns of several filaments.
+fn bindings(spec: &Spec) -> Vec<Option<Lever>> {
+    let mut levers: Vec<Option<Lever>> = Vec::new();
+    for yarn in [&spec.weave.warp.yarn, &spec.weave.weft.yarn] {
+        let key = format!("yarn.{}.binding", yarn.name);
+        let known = |lever: &Option<Lever>| {
+            lever
+                .as_ref()
+                .is_some_and(|lever| lever.keys[0].0.text == key)
+        };
+        if !yarn.is_monofilament() && !levers.iter().any(known) {
+            levers.push(
+                Lever::of_key(
+                    "binding",
+                    &key,
+                    "",
+                    yarn.binding,
+                    Better::Down,
+                    (0.0, 1.0),
+                    0.001,
+                )
+                .map(Lever::fine),
+            );
+        }
+    }
+    levers
+}

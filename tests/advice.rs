@@ -1,0 +1,155 @@
+//! Advice and limits have been run: each holds when it is put into the spec, and one step beyond it does not.
+
+#![allow(clippy::unwrap_used, clippy::panic, reason = "helpers of tests")]
+
+mod common;
+
+use common::{examples, lissom, root};
+use lissom::flow::run;
+use lissom::pattern::Weaves;
+use lissom::span::SourceText;
+use lissom::spec::{Document, KeyPath, NewValue};
+use lissom::study::{Better, Found, Lever, Target, advice, limits, margin_of, solve};
+use proptest::prelude::*;
+use serde_json::Value;
+
+fn put(document: &mut Document, set: &[(String, String)]) {
+    for (key, value) in set {
+        let value = match value.strip_prefix('"') {
+            Some(text) => NewValue::Text(text.trim_end_matches('"').to_owned()),
+            None => NewValue::Number(value.clone()),
+        };
+        document.set(&KeyPath::parse(key).unwrap(), &value).unwrap();
+    }
+}
+
+/// What is proposed, as its own text says it, makes the place hold in a fresh run.
+#[test]
+fn every_proposal_of_the_examples_holds_when_it_is_set() {
+    let weaves = Weaves::builtin();
+    let mut proposals = 0;
+    for path in examples() {
+        let text = std::fs::read_to_string(&path).unwrap();
+        let document = Document::parse(SourceText::new("t", text)).unwrap();
+        let spec = document.spec(&weaves).unwrap();
+        let outcome = run(&spec, 1.0).unwrap();
+        let targets: Vec<Target> = outcome.findings.iter().map(Target::of).collect();
+        for proposal in advice(&document, &weaves, &spec, &outcome) {
+            if proposal.set.is_empty() {
+                continue;
+            }
+            proposals += 1;
+            let mut changed = document.clone();
+            put(&mut changed, &proposal.set);
+            let target = targets
+                .iter()
+                .find(|target| target.name() == proposal.place)
+                .unwrap();
+            assert!(
+                margin_of(&changed, &weaves, target) >= 0.0,
+                "{path:?} {proposal:?}"
+            );
+        }
+    }
+    assert!(proposals >= 8, "{proposals}");
+}
+
+/// The advice's `set` stands in the JSON, and a spec so changed checks as holding there.
+#[test]
+fn a_person_can_follow_the_advice() {
+    let kiln = std::fs::read_to_string(root().join("examples/kiln-curtain.toml")).unwrap();
+    let output = lissom(
+        &["check", "examples/kiln-curtain.toml", "--format", "json"],
+        "",
+    );
+    let report: Value = serde_json::from_slice(&output.stdout).unwrap();
+    assert_eq!(report["verdict"], "close");
+    let proposals = report["advice"].as_array().unwrap();
+    let setts = proposals
+        .iter()
+        .find(|p| p["text"].as_str().unwrap().starts_with("both setts"))
+        .unwrap();
+    let value = |index: usize| setts["set"][index]["value"].as_str().unwrap().to_owned();
+    let changed = kiln
+        .replace("\"16 /cm\"", &value(0))
+        .replace("\"14 /cm\"", &value(1));
+    assert_ne!(kiln, changed);
+    let after = lissom(&["check", "-", "--strict"], &changed);
+    assert_eq!(
+        after.status.code(),
+        Some(0),
+        "{}",
+        String::from_utf8_lossy(&after.stdout)
+    );
+}
+
+#[test]
+fn limits_are_shown_in_every_format() {
+    let run = |format: &str| {
+        let output = lissom(
+            &["limits", "examples/fin-skin.toml", "--format", format],
+            "",
+        );
+        assert_eq!(output.status.code(), Some(0));
+        String::from_utf8(output.stdout).unwrap()
+    };
+    insta::assert_snapshot!("limits-fin-skin.text", run("text"));
+    insta::assert_snapshot!("limits-fin-skin.markdown", run("markdown"));
+    let report: Value = serde_json::from_str(&run("json")).unwrap();
+    assert!(report["limits"].as_array().unwrap().len() > 8);
+    assert_eq!(lissom(&["limits", "-"], "name = 1").status.code(), Some(2));
+}
+
+fn spec(fibre: &str, pattern: &str, tex: f64, sett: (f64, f64), radius: f64, turn: f64) -> String {
+    format!(
+        "name = \"n\"\n[yarn.y]\nfibre = \"{fibre}\"\nlinear_density = \"{tex} tex\"\n[weave]\npattern = \"{pattern}\"\n\
+         warp = {{ yarn = \"y\", sett = \"{} /cm\" }}\nweft = {{ yarn = \"y\", sett = \"{} /cm\" }}\n\
+         [[passage]]\nyarn = \"warp\"\nname = \"eye\"\nradius = \"{radius} mm\"\nturn = \"{turn} deg\"\n",
+        sett.0, sett.1
+    )
+}
+
+proptest! {
+    #![proptest_config(ProptestConfig { failure_persistence: None, cases: 40, ..ProptestConfig::default() })]
+
+    /// Over random valid specs: every limit holds as told, and one step to the worse side it does not.
+    #[test]
+    fn limits_hold_and_fail_one_step_beyond(
+        fibre in prop::sample::select(vec!["e-glass", "carbon-pan-sm", "alumina", "carbon-pitch-hm", "quartz"]),
+        pattern in prop::sample::select(vec!["plain", "twill-2-2", "satin-5"]),
+        tex in 30.0..300.0f64,
+        open in 0.35..0.9f64,
+        skew in 0.7..1.3f64,
+        radius in 0.02..4.0f64,
+        turn in 5.0..170.0f64,
+    ) {
+        let weaves = Weaves::builtin();
+        // About as tight as a lens of 0.9 of the spacing lets this yarn lie.
+        let sett = open * 16.0 * (68.0 / tex).sqrt();
+        let text = spec(fibre, pattern, tex, (sett, sett * skew), radius, turn);
+        let document = Document::parse(SourceText::new("t", text)).unwrap();
+        let Ok(valid) = document.spec(&weaves) else { return Ok(()); };
+        let Ok(outcome) = run(&valid, 1.0) else { return Ok(()); };
+        let targets: Vec<Target> = outcome.findings.iter().map(Target::of).collect();
+        for bound in limits(&document, &weaves, &valid, &outcome) {
+            if let Found::Holds { .. } = bound.found {
+                let target = targets.iter().find(|target| target.name() == bound.place).unwrap();
+                let mut changed = document.clone();
+                put(&mut changed, &bound.set);
+                prop_assert!(margin_of(&changed, &weaves, target) >= 0.0, "{:?}", bound);
+            }
+        }
+        let eye = targets.iter().find(|target| target.name().starts_with("eye")).unwrap();
+        for (key, unit, better, today) in [
+            ("passage.1.radius", "mm", Better::Up, radius),
+            ("passage.1.turn", "deg", Better::Down, turn),
+        ] {
+            let lever = Lever::of_key("lever", key, unit, today, better, (0.0, 360.0), 0.01).unwrap();
+            if let Found::Holds { value, .. } = solve(&document, &weaves, &lever, eye) {
+                let mut beyond = document.clone();
+                lever.put(&mut beyond, lever.tightened(value).max(0.0), false).unwrap();
+                prop_assert!(margin_of(&beyond, &weaves, eye) < 0.0, "{} {}", key, value);
+            }
+        }
+    }
+}
