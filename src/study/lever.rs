@@ -37,7 +37,6 @@ pub struct Lever {
 
 impl Lever {
     /// A lever of one key; `None` where no spec has that key.
-    #[expect(clippy::too_many_arguments, reason = "a lever is just these")]
     pub fn of_key(
         name: &'static str,
         key: &str,
