@@ -23,6 +23,10 @@ pub struct Bound {
     pub set: Vec<(String, String)>,
     /// What was found.
     pub found: Found,
+    /// The lever it was found with.
+    pub lever: Lever,
+    /// The place it was found for.
+    pub target: Target,
 }
 
 /// Every limit of a spec, in the order of the way, the cloth's last.
@@ -55,6 +59,8 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
                 Found::Everywhere | Found::Nowhere => Vec::new(),
             },
             found,
+            lever,
+            target: target.clone(),
         });
     };
     let weave = &spec.weave;

@@ -3,7 +3,7 @@
 //! From today's value the lever is moved in steps of a fifth, to the better side where the place does not hold and to
 //! the worse side where it does, until the margin changes sign or the reach ends. In that bracket `root` finds the
 //! zero on the whole flow. The value is rounded to the lever's steps on the better side and run again; where rounding
-//! several keys at once misses by a hair it is eased by up to ten steps.
+//! several keys at once misses by a hair it is eased by up to ten steps, and tightened where a step further holds too.
 
 use super::lever::{Better, Lever};
 use super::margin::{Target, margin_of};
@@ -85,16 +85,27 @@ pub fn solve(document: &Document, weaves: &Weaves, lever: &Lever, target: &Targe
         high,
         1e-3 * lever.step_at(high),
     );
+    let told = |value: f64| {
+        let within = value >= least && value <= most;
+        Some(at(value, true)).filter(|margin| within && *margin >= 0.0)
+    };
     let mut value = lever.rounded(edge);
     for _ in 0..10 {
-        let margin = at(value, true);
-        if margin >= 0.0 && value >= least && value <= most {
-            return Found::Holds {
-                value,
-                ratio: margin.exp(),
+        let Some(mut margin) = told(value) else {
+            value = lever.eased(value);
+            continue;
+        };
+        // Rounded keys may reach a step further than the exact ones did.
+        for _ in 0..10 {
+            let Some(beyond) = told(lever.tightened(value)) else {
+                break;
             };
+            (value, margin) = (lever.tightened(value), beyond);
         }
-        value = lever.eased(value);
+        return Found::Holds {
+            value,
+            ratio: margin.exp(),
+        };
     }
     Found::Nowhere
 }
