@@ -34,9 +34,9 @@ const WORTH_A_BAR: usize = 20_000;
 
 const AFTER_HELP: &str = "\
 Values: a list `5,7,9,11 um`, words `plain,twill-2-2`, or a range `10..24 /cm step 2`.
-Keys: weave.pattern, weave.warp.sett, weave.thickness, yarn.NAME.width, fibre.NAME.filament_diameter,
-passage.NAME.radius, tool.NAME.radius, require.reserve and all others a spec may have. A varied filament
-diameter keeps the linear density and frees the count.";
+Keys: all that a spec may have, by their tables: weave.pattern, weave.warp.sett, yarn.NAME.width,
+fibre.NAME.filament_diameter, passage.NAME.radius, tool.NAME.radius, require.reserve.
+A varied filament diameter keeps the linear density and frees the count.";
 
 #[derive(Debug, Args)]
 #[command(after_help = AFTER_HELP)]

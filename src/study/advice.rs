@@ -7,6 +7,7 @@
 use super::lever::{Better, Lever};
 use super::margin::{Target, margin, margin_of};
 use super::solve::{Found, solve};
+use crate::bend::SystemName;
 use crate::flow::Outcome;
 use crate::judge::State;
 use crate::pattern::Weaves;
@@ -23,6 +24,10 @@ const OTHER_WEAVES: [&str; 6] = [
     "satin-8",
     "satin-12",
 ];
+
+/// Finer filaments are not advised: below 3 um their fragments can be breathed in (the WHO's definition of respirable
+/// fibre), and yarns are made from about 4 um up.
+const FINEST_FILAMENT_UM: f64 = 4.0;
 
 /// One proposal for a place.
 #[derive(Debug, Clone, PartialEq)]
@@ -67,7 +72,7 @@ pub fn advice(
     }
     for target in &targets {
         for lever in levers(spec, outcome, target) {
-            said.push(proposal(document, weaves, &lever, target));
+            said.push(proposal(document, weaves, spec, &lever, target));
             if lever.name == "both setts" {
                 said.push(other_weave(document, weaves, spec, target));
             }
@@ -76,7 +81,13 @@ pub fn advice(
     said
 }
 
-fn proposal(document: &Document, weaves: &Weaves, lever: &Lever, target: &Target) -> Proposal {
+fn proposal(
+    document: &Document,
+    weaves: &Weaves,
+    spec: &Spec,
+    lever: &Lever,
+    target: &Target,
+) -> Proposal {
     let side = match lever.better {
         Better::Up => "at least",
         Better::Down => "at most",
@@ -89,10 +100,10 @@ fn proposal(document: &Document, weaves: &Weaves, lever: &Lever, target: &Target
                 .map(|(_, value)| value.trim_matches('"').to_owned())
                 .collect();
             let text = format!(
-                "{}: {side} {} (then {} times the reserve it must have)",
+                "{}: {side} {} (worst reserve then {})",
                 lever.name,
                 values.join(" and "),
-                significant(ratio, 3)
+                significant(ratio * spec.require.reserve, 3)
             );
             (text, set)
         }
@@ -156,10 +167,10 @@ fn levers(spec: &Spec, outcome: &Outcome, target: &Target) -> Vec<Lever> {
         }
         Target::Place { place, system, .. } => {
             let of = match system {
-                crate::bend::SystemName::Warp => (&weave.warp, "warp"),
-                crate::bend::SystemName::Weft => (&weave.weft, "weft"),
+                SystemName::Warp => (&weave.warp, "warp"),
+                SystemName::Weft => (&weave.weft, "weft"),
             };
-            levers.extend(station(spec, place));
+            levers.extend(station(spec, place, *system));
             levers.push(tension(of.0, of.1));
             levers.extend(filament_diameters(spec).into_iter().take(2));
         }
@@ -168,11 +179,15 @@ fn levers(spec: &Spec, outcome: &Outcome, target: &Target) -> Vec<Lever> {
 }
 
 /// Radius, turn and own tension of a station; radius of a corner.
-pub(super) fn station(spec: &Spec, place: &str) -> Vec<Option<Lever>> {
+pub(super) fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Lever>> {
+    let system = match of {
+        SystemName::Warp => &spec.weave.warp,
+        SystemName::Weft => &spec.weave.weft,
+    };
     if let Some(index) = spec
         .passages
         .iter()
-        .position(|passage| passage.name == place)
+        .position(|passage| passage.name == place && passage.system == of)
     {
         let passage = &spec.passages[index];
         let key = |last: &str| format!("passage.{}.{last}", index + 1);
@@ -193,7 +208,7 @@ pub(super) fn station(spec: &Spec, place: &str) -> Vec<Option<Lever>> {
                 "deg",
                 turn,
                 Better::Down,
-                (0.1, 360.0),
+                (1.0, 360.0),
                 0.1,
             ),
         ];
@@ -205,7 +220,7 @@ pub(super) fn station(spec: &Spec, place: &str) -> Vec<Option<Lever>> {
                 "cN",
                 cn,
                 Better::Down,
-                (0.01, 1e6),
+                (least_tension_cn(system), 50.0 * cn.max(1.0)),
                 0.1,
             ));
         }
@@ -230,6 +245,11 @@ pub(super) fn station(spec: &Spec, place: &str) -> Vec<Option<Lever>> {
     corner.map(of_corner).into_iter().collect()
 }
 
+/// Below this a yarn hangs loose on a machine: 0.1 cN/tex (common practice, no source).
+fn least_tension_cn(system: &System) -> f64 {
+    0.1 * system.yarn.count.linear_density_tex
+}
+
 /// Tension of a system at the fell.
 pub(super) fn tension(system: &System, word: &'static str) -> Option<Lever> {
     let name = if word == "warp" {
@@ -245,7 +265,7 @@ pub(super) fn tension(system: &System, word: &'static str) -> Option<Lever> {
         "cN",
         cn,
         Better::Down,
-        (0.01, 50.0 * cn.max(1.0)),
+        (least_tension_cn(system), 50.0 * cn.max(1.0)),
         0.1,
     )
 }
@@ -334,7 +354,7 @@ pub(super) fn filament_diameters(spec: &Spec) -> Vec<Option<Lever>> {
                     "um",
                     um,
                     Better::Down,
-                    (0.2 * um, 20.0 * um),
+                    (FINEST_FILAMENT_UM.min(um), 20.0 * um),
                     0.1,
                 )
                 .map(Lever::fine),

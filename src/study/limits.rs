@@ -6,6 +6,7 @@ use super::advice::{filament_diameters, setts, station, tension};
 use super::lever::{Better, Lever};
 use super::margin::Target;
 use super::solve::{Found, solve};
+use crate::bend::SystemName;
 use crate::flow::Outcome;
 use crate::pattern::Weaves;
 use crate::spec::{Document, Spec};
@@ -68,12 +69,12 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
         let Target::Place { place, system, .. } = target else {
             continue;
         };
-        for lever in station(spec, place).into_iter().flatten() {
+        for lever in station(spec, place, *system).into_iter().flatten() {
             bound(target, lever);
         }
         let (system, word) = match system {
-            crate::bend::SystemName::Warp => (&weave.warp, "warp"),
-            crate::bend::SystemName::Weft => (&weave.weft, "weft"),
+            SystemName::Warp => (&weave.warp, "warp"),
+            SystemName::Weft => (&weave.weft, "weft"),
         };
         if let Some(lever) = tension(system, word) {
             bound(target, lever);
