@@ -170,9 +170,15 @@ fn levers(spec: &Spec, outcome: &Outcome, target: &Target) -> Vec<Lever> {
                 SystemName::Warp => (&weave.warp, "warp"),
                 SystemName::Weft => (&weave.weft, "weft"),
             };
-            levers.extend(station(spec, place, *system));
             levers.push(tension(of.0, of.1));
-            levers.extend(filament_diameters(spec).into_iter().take(2));
+            levers.extend(station(spec, place, *system));
+            let own = format!("yarn.{}.filament_diameter", of.0.yarn.name);
+            let of_own = |lever: &Option<Lever>| {
+                lever
+                    .as_ref()
+                    .is_some_and(|lever| lever.keys[0].0.text == own)
+            };
+            levers.extend(filament_diameters(spec).into_iter().filter(of_own));
         }
     }
     levers.into_iter().flatten().collect()
@@ -192,7 +198,20 @@ pub(super) fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Le
         let passage = &spec.passages[index];
         let key = |last: &str| format!("passage.{}.{last}", index + 1);
         let turn = passage.turn_rad.to_degrees();
-        let mut levers = vec![
+        let mut levers = Vec::new();
+        if let Some(newton) = passage.tension_n {
+            let cn = 100.0 * newton;
+            levers.push(Lever::of_key(
+                "tension in front of it",
+                &key("tension"),
+                "cN",
+                cn,
+                Better::Down,
+                (least_tension_cn(system), 50.0 * cn.max(1.0)),
+                0.1,
+            ));
+        }
+        levers.extend([
             Lever::of_key(
                 "radius",
                 &key("radius"),
@@ -211,19 +230,7 @@ pub(super) fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Le
                 (1.0, 360.0),
                 0.1,
             ),
-        ];
-        if let Some(newton) = passage.tension_n {
-            let cn = 100.0 * newton;
-            levers.push(Lever::of_key(
-                "tension in front of it",
-                &key("tension"),
-                "cN",
-                cn,
-                Better::Down,
-                (least_tension_cn(system), 50.0 * cn.max(1.0)),
-                0.1,
-            ));
-        }
+        ]);
         return levers;
     }
     let corner = spec
