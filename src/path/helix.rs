@@ -184,6 +184,20 @@ mod tests {
     }
 
     proptest! {
+        /// No phase of a fine sweep lies above the peak.
+        #[test]
+        fn the_peak_is_the_largest_of_all_phases(
+            r in 0.01..0.4f64, twist in 0.0..2.0f64, room in 1.02..40.0f64,
+        ) {
+            let bend = room * r;
+            let peak = bent_helix_peak_per_mm(r, twist, bend);
+            let swept = (0..=4000)
+                .map(|index| bent_helix_curvature_per_mm(r, twist, bend, PI * f64::from(index) / 4000.0))
+                .fold(0.0, f64::max);
+            prop_assert!(peak >= swept * (1.0 - 1e-9), "{} {}", peak, swept);
+            prop_assert!(peak <= swept * (1.0 + 1e-4));
+        }
+
         /// Without twist the exact form is the circle through the filament.
         #[test]
         fn without_twist_it_is_a_circle(r in 0.0..0.4f64, bend in 0.5..9.0f64) {

@@ -324,8 +324,9 @@ pub struct BriefRow {
     fails: bool,
     reserve: Option<f64>,
     place: Cow<'static, str>,
-    /// Crimp of warp and weft, thickness mm, mass g/m2, cover, fibre share.
-    numbers: [f64; 6],
+    /// As written: reserve, crimp of warp and weft, thickness mm, mass g/m2, cover, fibre share. Written where it is
+    /// computed, on its own core.
+    numbers: [String; 7],
 }
 
 impl BriefRow {
@@ -333,18 +334,21 @@ impl BriefRow {
     pub fn new(spec: &Spec, outcome: &Outcome) -> Self {
         let worst = outcome.worst_finding(spec.require.refuse_kinks);
         let cloth = &outcome.cloth;
+        let reserve = worst.and_then(|finding| finding.reserve());
+        let digits = |number: f64| significant(number, 6);
         Self {
             verdict: outcome.verdict(),
             fails: outcome.fails(spec, false),
-            reserve: worst.and_then(|finding| finding.reserve()),
+            reserve,
             place: worst.map_or(Cow::Borrowed(""), |finding| finding.place.clone()),
             numbers: [
-                cloth.warp.crimp,
-                cloth.weft.crimp,
-                cloth.thickness_mm,
-                cloth.areal_mass_g_m2,
-                cloth.cover,
-                cloth.fibre_volume_fraction,
+                reserve.map_or_else(String::new, digits),
+                digits(cloth.warp.crimp),
+                digits(cloth.weft.crimp),
+                digits(cloth.thickness_mm),
+                digits(cloth.areal_mass_g_m2),
+                digits(cloth.cover),
+                digits(cloth.fibre_volume_fraction),
             ],
         }
     }
@@ -421,14 +425,11 @@ impl<W: io::Write> CompareCsv<W> {
         self.writer.write_field(woven.verdict.word())?;
         self.writer
             .write_field(if woven.fails { "true" } else { "false" })?;
-        self.writer.write_field(
-            woven
-                .reserve
-                .map_or_else(String::new, |r| significant(r, 6)),
-        )?;
+        let [reserve, numbers @ ..] = &woven.numbers;
+        self.writer.write_field(reserve)?;
         self.writer.write_field(woven.place.as_ref())?;
-        for number in woven.numbers {
-            self.writer.write_field(significant(number, 6))?;
+        for number in numbers {
+            self.writer.write_field(number)?;
         }
         self.writer.write_record(None::<&[u8]>)
     }
