@@ -83,6 +83,35 @@ fn a_person_can_follow_the_advice() {
     );
 }
 
+/// A yarn with linear density and count keeps both in agreement: a finer filament comes with its count.
+#[test]
+fn a_finer_filament_comes_with_its_count() {
+    let dish = std::fs::read_to_string(root().join("examples/dish-face.toml")).unwrap();
+    let json = |spec: &str| -> Value {
+        let output = lissom(&["check", "-", "--format", "json"], spec);
+        serde_json::from_slice(&output.stdout).unwrap()
+    };
+    let before = json(&dish);
+    let finer = before["advice"].as_array().unwrap().iter().find(|p| {
+        p["place"] == "the crowns of the cloth"
+            && p["text"].as_str().unwrap().starts_with("filament diameter")
+    });
+    let set = &finer.unwrap()["set"];
+    let told = format!(
+        "filament_diameter = {}\nfilaments = {}",
+        set[0]["value"].as_str().unwrap(),
+        set[1]["value"].as_str().unwrap()
+    );
+    let after = json(&dish.replace("filaments = 2000", &told));
+    let crowns: Vec<&Value> = after["bends"]
+        .as_array()
+        .unwrap()
+        .iter()
+        .filter(|bend| bend["stage"] == "loom" || bend["stage"] == "rest")
+        .collect();
+    assert!(!crowns.is_empty() && crowns.iter().all(|bend| bend["state"] == "holds"));
+}
+
 #[test]
 fn limits_are_shown_in_every_format() {
     let run = |format: &str| {

@@ -113,10 +113,12 @@ fn out_spares_specs_links_and_devices() {
     let spec = folder.path().join("spec.toml");
     std::fs::write(&spec, SMALL).unwrap();
     let path = spec.to_str().unwrap();
-    assert_eq!(
-        lissom(&["check", path, "--out", path], "").status.code(),
-        Some(2)
-    );
+    for command in ["check", "compare", "limits"] {
+        let overwriting = lissom(&[command, path, "--out", path], "");
+        assert_eq!(overwriting.status.code(), Some(2), "{command}");
+    }
+    let csv = ["compare", path, "--format", "csv", "--out", path];
+    assert_eq!(lissom(&csv, "").status.code(), Some(2));
     assert_eq!(std::fs::read_to_string(&spec).unwrap(), SMALL);
     let (file, link) = (
         folder.path().join("real.txt"),

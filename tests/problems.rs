@@ -156,6 +156,11 @@ const CASES: &[(&str, &str, &str)] = &[
         "yarn = \"warp\"",
         "yarn = \"wrap\"",
     ),
+    (
+        "two passages of one name",
+        "[[passage]]",
+        "[[passage]]\nyarn = \"weft\"\nname = \"heald eye\"\nradius = \"2 mm\"\nturn = \"1 deg\"\n[[passage]]",
+    ),
     ("passage without radius", "radius = \"2 mm\"\n", ""),
     ("turn of many wraps", "\"12 deg\"", "\"12000 deg\""),
     (

@@ -53,17 +53,8 @@ pub(super) struct Check {
 
 impl Check {
     pub(super) fn run(self, streams: &Streams) -> Status {
-        // A report must not take the place of what it is about.
-        let same = |spec: &&PathBuf| {
-            let out = self.out.as_ref().and_then(|out| out.canonicalize().ok());
-            out.is_some() && spec.canonicalize().ok() == out
-        };
-        if let Some(spec) = self.specs.iter().find(same) {
-            streams.complain(format_args!(
-                "error: --out would overwrite the spec {}; name another file\n",
-                spec.display()
-            ));
-            return Status::WrongInput;
+        if let Err(status) = streams.keep_specs(self.out.as_deref(), &self.specs) {
+            return status;
         }
         let weaves = match load_weaves(self.weaves.as_deref(), streams) {
             Ok(weaves) => weaves,

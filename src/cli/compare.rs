@@ -36,7 +36,7 @@ const AFTER_HELP: &str = "\
 Values: a list `5,7,9,11 um`, words `plain,twill-2-2`, or a range `10..24 /cm step 2`.
 Keys: all that a spec may have, by their tables: weave.pattern, weave.warp.sett, yarn.NAME.width,
 fibre.NAME.filament_diameter, passage.NAME.radius, tool.NAME.radius, require.reserve.
-A varied filament diameter keeps the linear density and frees the count.";
+A varied filament diameter keeps the linear density, where the spec gives it, and frees the count.";
 
 #[derive(Debug, Args)]
 #[command(after_help = AFTER_HELP)]
@@ -69,6 +69,7 @@ impl Compare {
     }
 
     fn try_run(self, streams: &Streams) -> Result<Status, Status> {
+        streams.keep_specs(self.out.as_deref(), &self.specs)?;
         let weaves = load_weaves(self.weaves.as_deref(), streams)?;
         if let Some(threads) = self.threads {
             // Fails only where a pool is there already, which then serves.

@@ -5,7 +5,7 @@ use super::check::{load_weaves, read_checked, settings};
 use super::out::Streams;
 use clap::{Args, ValueEnum};
 use lissom::report::{self, LimitsReport, LimitsRow, SpecReport};
-use lissom::study::{Bound, Found, limits};
+use lissom::study::{Bound, Found, limits, values_of};
 use std::path::PathBuf;
 
 #[derive(Debug, Clone, Copy, PartialEq, Eq, ValueEnum)]
@@ -36,6 +36,10 @@ pub(super) struct Limits {
 
 impl Limits {
     pub(super) fn run(self, streams: &Streams) -> Status {
+        let specs = std::slice::from_ref(&self.spec);
+        if let Err(status) = streams.keep_specs(self.out.as_deref(), specs) {
+            return status;
+        }
         let weaves = match load_weaves(self.weaves.as_deref(), streams) {
             Ok(weaves) => weaves,
             Err(status) => return status,
@@ -69,17 +73,12 @@ impl Limits {
 }
 
 fn row(bound: Bound) -> LimitsRow {
-    let values: Vec<String> = bound
-        .set
-        .iter()
-        .map(|(_, value)| value.trim_matches('"').to_owned())
-        .collect();
     LimitsRow {
         place: bound.place,
         what: bound.what,
         today: bound.today,
         limit: match bound.found {
-            Found::Holds { .. } => values.join(" and "),
+            Found::Holds { .. } => values_of(&bound.set),
             Found::Everywhere => "holds throughout".to_owned(),
             Found::Nowhere => "nothing in reach holds".to_owned(),
         },

@@ -42,6 +42,22 @@ impl Streams {
         let _ = write!(AutoStream::new(io::stderr(), self.choice), "{text}");
     }
 
+    /// Refuses to let results take the place of what they are about.
+    pub(super) fn keep_specs(&self, out: Option<&Path>, specs: &[PathBuf]) -> Result<(), Status> {
+        let out = out.and_then(|out| out.canonicalize().ok());
+        let same = |spec: &&PathBuf| out.is_some() && spec.canonicalize().ok() == out;
+        match specs.iter().find(same) {
+            None => Ok(()),
+            Some(spec) => {
+                self.complain(format_args!(
+                    "error: --out would overwrite the spec {}; name another file\n",
+                    spec.display()
+                ));
+                Err(Status::WrongInput)
+            }
+        }
+    }
+
     /// Puts results on standard output, or whole into a file without colour; `done` is the status after.
     pub(crate) fn give(&self, text: &str, file: Option<&Path>, done: Status) -> Status {
         let given = match file {

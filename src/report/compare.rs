@@ -108,7 +108,7 @@ impl WovenRow {
     pub fn merit(&self) -> Option<Merit> {
         (!self.fails).then_some(Merit(
             Reverse(self.verdict),
-            self.reserve.unwrap_or(f64::INFINITY),
+            rounded(self.reserve.unwrap_or(f64::INFINITY)),
         ))
     }
 }
@@ -357,7 +357,7 @@ impl BriefRow {
     pub fn merit(&self) -> Option<Merit> {
         (!self.fails).then_some(Merit(
             Reverse(self.verdict),
-            self.reserve.unwrap_or(f64::INFINITY),
+            rounded(self.reserve.unwrap_or(f64::INFINITY)),
         ))
     }
 }

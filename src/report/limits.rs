@@ -48,7 +48,7 @@ impl LimitsReport {
 
     fn closing(&self) -> String {
         format!(
-            "Each alone, all else as in the spec: up to there every reserve is {} or more; one step beyond, it is not.",
+            "Each alone and for its own place alone, all else as in the spec: up to there every reserve that must be met is {} or more; one step beyond, it is not. Yielding, and kinking where the spec allows it, need none.",
             self.reserve
         )
     }

@@ -35,7 +35,7 @@ pub enum SetError {
         known: String,
     },
     /// No such key in the table.
-    #[error("`{key}` is no key of a spec{}", .nearest.as_ref().map_or_else(String::new, |near| format!("; the nearest is `{near}`")))]
+    #[error("`{key}` is no key of a spec{}", known_names(&[], .nearest.as_deref()))]
     NoKey {
         /// The path.
         key: String,
@@ -43,15 +43,25 @@ pub enum SetError {
         nearest: Option<String>,
     },
     /// The spec has no yarn, passage or tool of that name.
-    #[error("this spec has no {what} called `{name}`{}", .nearest.as_ref().map_or_else(String::new, |near| format!("; the nearest is `{near}`")))]
+    #[error("this spec has no {what} called `{name}`{}", known_names(.known, .nearest.as_deref()))]
     NoSuch {
         /// Yarn, passage or tool.
         what: &'static str,
         /// The name.
         name: String,
-        /// The nearest name there is.
+        /// The names there are.
+        known: Vec<String>,
+        /// The nearest of them.
         nearest: Option<String>,
     },
+}
+
+fn known_names(known: &[String], nearest: Option<&str>) -> String {
+    match nearest {
+        Some(near) => format!("; the nearest is `{near}`"),
+        None if known.is_empty() => String::new(),
+        None => format!("; it has `{}`", known.join("`, `")),
+    }
 }
 
 /// A key's path, taken apart.
@@ -176,6 +186,16 @@ impl Document {
         }
     }
 
+    /// Whether it gives this key of a yarn.
+    pub fn yarn_has(&self, yarn: &str, key: &str) -> bool {
+        let inside = |place: Option<&Placed<Value>>, key: &str| match place.map(|p| &p.value) {
+            Some(Value::Table(table)) => table.get(key).cloned(),
+            _ => None,
+        };
+        let own = inside(self.root.get("yarn"), yarn);
+        inside(own.as_ref(), key).is_some()
+    }
+
     /// Where problems of the whole spec are marked.
     fn first_line(&self) -> Span {
         let text = &self.source.text;
@@ -213,6 +233,7 @@ impl Document {
             what,
             name: name.to_owned(),
             nearest: nearest_of(name, known.iter().map(String::as_str)).map(str::to_owned),
+            known,
         };
         let Some(name) = key.middle.as_deref() else {
             return Ok(self.root.enter(key.top, &everywhere));

@@ -69,9 +69,27 @@ pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
         );
         return Vec::new();
     }
-    let mut passages = Vec::new();
+    let mut passages: Vec<Passage> = Vec::new();
     for table in tables {
-        passages.extend(read_passage(&table, weave));
+        let Some(passage) = read_passage(&table, weave) else {
+            continue;
+        };
+        // Reports, advice and varied keys find a passage by its name.
+        if passages.iter().any(|other| other.name == passage.name) {
+            let span = table
+                .text("name")
+                .given()
+                .map_or(table.span(), |name| name.span);
+            spec.push(
+                Problem::at(
+                    span,
+                    format!("two passages are named `{}`", passage.name),
+                    "there already",
+                )
+                .help("give each its own name, \"heald eye, back shaft\""),
+            );
+        }
+        passages.push(passage);
     }
     passages
 }

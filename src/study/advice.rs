@@ -6,12 +6,13 @@
 
 use super::lever::{Better, Lever};
 use super::margin::{Target, margin, margin_of};
+use super::proposed::{Set, set_of, then, values_of};
 use super::solve::{Found, solve};
 use crate::bend::SystemName;
 use crate::flow::Outcome;
-use crate::judge::State;
+use crate::judge::{Finding, State};
 use crate::pattern::Weaves;
-use crate::quantity::{plain, significant};
+use crate::quantity::plain;
 use crate::spec::{Document, KeyPath, NewValue, Spec, System};
 use crate::yarn::{Basis, Followed};
 
@@ -37,7 +38,7 @@ pub struct Proposal {
     /// In words.
     pub text: String,
     /// Keys and their new values as the spec would have them; empty where nothing is in reach.
-    pub set: Vec<(String, String)>,
+    pub set: Set,
 }
 
 /// Proposals for every place that fails or is close.
@@ -51,15 +52,7 @@ pub fn advice(
     let mut said = Vec::new();
     for finding in &outcome.findings {
         if let Some((here, limit)) = finding.heat_c {
-            said.push(Proposal {
-                place: Target::of(finding).name(),
-                text: format!(
-                    "temperature: at most {} degC (it has {})",
-                    plain(limit, 4),
-                    plain(here, 4)
-                ),
-                set: Vec::new(),
-            });
+            said.push(cooler(spec, finding, here, limit));
             continue;
         }
         let target = Target::of(finding);
@@ -72,7 +65,7 @@ pub fn advice(
     }
     for target in &targets {
         for lever in levers(spec, outcome, target) {
-            said.push(proposal(document, weaves, spec, &lever, target));
+            said.push(proposal(document, weaves, &lever, target));
             if lever.name == "both setts" {
                 said.push(other_weave(document, weaves, spec, target));
             }
@@ -81,30 +74,37 @@ pub fn advice(
     said
 }
 
-fn proposal(
-    document: &Document,
-    weaves: &Weaves,
-    spec: &Spec,
-    lever: &Lever,
-    target: &Target,
-) -> Proposal {
+/// A lower temperature, in whole degrees.
+fn cooler(spec: &Spec, finding: &Finding, here_c: f64, limit_c: f64) -> Proposal {
+    let limit = plain(limit_c.floor(), 6);
+    let passage = spec
+        .passages
+        .iter()
+        .position(|passage| passage.name == finding.place)
+        .map(|index| format!("passage.{}.temperature", index + 1));
+    Proposal {
+        place: Target::of(finding).name(),
+        text: format!(
+            "temperature: at most {limit} degC (it has {})",
+            plain(here_c, 4)
+        ),
+        set: passage
+            .into_iter()
+            .map(|key| (key, format!("\"{limit} degC\"")))
+            .collect(),
+    }
+}
+
+fn proposal(document: &Document, weaves: &Weaves, lever: &Lever, target: &Target) -> Proposal {
     let side = match lever.better {
         Better::Up => "at least",
         Better::Down => "at most",
     };
     let (text, set) = match solve(document, weaves, lever, target) {
-        Found::Holds { value, ratio } => {
-            let set = lever.settings(value);
-            let values: Vec<String> = set
-                .iter()
-                .map(|(_, value)| value.trim_matches('"').to_owned())
-                .collect();
-            let text = format!(
-                "{}: {side} {} (worst reserve then {})",
-                lever.name,
-                values.join(" and "),
-                significant(ratio * spec.require.reserve, 3)
-            );
+        Found::Holds { value, .. } => {
+            let set = set_of(document, weaves, lever, value);
+            let then = then(document, weaves, &set, target);
+            let text = format!("{}: {side} {} ({then})", lever.name, values_of(&set));
             (text, set)
         }
         Found::Everywhere | Found::Nowhere => (out_of_reach(lever.name), Vec::new()),
@@ -133,10 +133,11 @@ fn other_weave(document: &Document, weaves: &Weaves, spec: &Spec, target: &Targe
             && margin_of(&changed, weaves, target) >= 0.0
     });
     let (text, set) = match holds {
-        Some(name) => (
-            format!("weave: {name}"),
-            vec![("weave.pattern".to_owned(), format!("\"{name}\""))],
-        ),
+        Some(name) => {
+            let set = vec![("weave.pattern".to_owned(), format!("\"{name}\""))];
+            let then = then(document, weaves, &set, target);
+            (format!("weave: {name} ({then})"), set)
+        }
         None => (out_of_reach("weave"), Vec::new()),
     };
     Proposal {
@@ -166,13 +167,13 @@ fn levers(spec: &Spec, outcome: &Outcome, target: &Target) -> Vec<Lever> {
             levers.extend(filament_diameters(spec));
         }
         Target::Place { place, system, .. } => {
-            let of = match system {
-                SystemName::Warp => (&weave.warp, "warp"),
-                SystemName::Weft => (&weave.weft, "weft"),
+            let yarn = match system {
+                SystemName::Warp => &weave.warp.yarn,
+                SystemName::Weft => &weave.weft.yarn,
             };
-            levers.push(tension(of.0, of.1));
+            levers.push(tension_at(spec, target));
             levers.extend(station(spec, place, *system));
-            let own = format!("yarn.{}.filament_diameter", of.0.yarn.name);
+            let own = format!("yarn.{}.filament_diameter", yarn.name);
             let of_own = |lever: &Option<Lever>| {
                 lever
                     .as_ref()
@@ -255,6 +256,21 @@ pub(super) fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Le
 /// Below this a yarn hangs loose on a machine: 0.1 cN/tex (common practice, no source).
 fn least_tension_cn(system: &System) -> f64 {
     0.1 * system.yarn.count.linear_density_tex
+}
+
+/// Tension of a place's system, where the place has none of its own.
+pub(super) fn tension_at(spec: &Spec, target: &Target) -> Option<Lever> {
+    let Target::Place { place, system, .. } = target else {
+        return None;
+    };
+    let own = spec.passages.iter().any(|passage| {
+        passage.name == *place && passage.system == *system && passage.tension_n.is_some()
+    });
+    match system {
+        _ if own => None,
+        SystemName::Warp => tension(&spec.weave.warp, "warp"),
+        SystemName::Weft => tension(&spec.weave.weft, "weft"),
+    }
 }
 
 /// Tension of a system at the fell.

@@ -2,11 +2,11 @@
 //! tension; for the cloth the tightest setts, the thickest filament, the largest binding. Each is run, and one step
 //! beyond it does not hold.
 
-use super::advice::{filament_diameters, setts, station, tension};
+use super::advice::{filament_diameters, setts, station, tension, tension_at};
 use super::lever::{Better, Lever};
 use super::margin::Target;
+use super::proposed::{Set, set_of};
 use super::solve::{Found, solve};
-use crate::bend::SystemName;
 use crate::flow::Outcome;
 use crate::pattern::Weaves;
 use crate::spec::{Document, Spec};
@@ -21,7 +21,7 @@ pub struct Bound {
     /// Its value today, with its unit.
     pub today: String,
     /// Keys and values at the limit, as the spec would have them; empty where there is none.
-    pub set: Vec<(String, String)>,
+    pub set: Set,
     /// What was found.
     pub found: Found,
     /// The lever it was found with.
@@ -56,7 +56,7 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
                 .trim_end()
                 .to_owned(),
             set: match found {
-                Found::Holds { value, .. } => lever.settings(value),
+                Found::Holds { value, .. } => set_of(document, weaves, &lever, value),
                 Found::Everywhere | Found::Nowhere => Vec::new(),
             },
             found,
@@ -72,11 +72,7 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
         for lever in station(spec, place, *system).into_iter().flatten() {
             bound(target, lever);
         }
-        let (system, word) = match system {
-            SystemName::Warp => (&weave.warp, "warp"),
-            SystemName::Weft => (&weave.weft, "weft"),
-        };
-        if let Some(lever) = tension(system, word) {
+        if let Some(lever) = tension_at(spec, target) {
             bound(target, lever);
         }
     }

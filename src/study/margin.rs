@@ -47,7 +47,8 @@ impl Target {
         }
     }
 
-    fn holds_finding(&self, finding: &Finding) -> bool {
+    /// Whether a finding belongs to it.
+    pub fn holds_finding(&self, finding: &Finding) -> bool {
         finding.state != State::Overheats && Self::of(finding) == *self
     }
 }

@@ -5,6 +5,7 @@
 //! | `vary` | a key of the spec and the values it takes |
 //! | `compare` | specs side by side and grids of values |
 //! | `lever`, `margin`, `solve` | what can be changed, how far a place is from holding, where it begins to hold |
+//! | `proposed` | a lever's value as keys to be set, and how the place is with them |
 //! | `advice` | what would hold instead, the cheapest first |
 //! | `limits` | how far a spec may go |
 //! | `sensitivity` | how much the verdict hangs on the yarns' assumed outlines |
@@ -14,6 +15,7 @@ mod compare;
 mod lever;
 mod limits;
 mod margin;
+mod proposed;
 mod sensitivity;
 mod solve;
 mod vary;
@@ -23,6 +25,7 @@ pub use compare::{Grid, GridError, Place, Told};
 pub use lever::{Better, Lever};
 pub use limits::{Bound, limits};
 pub use margin::{Target, margin, margin_of};
+pub use proposed::{Set, values_of};
 pub use sensitivity::{FLATNESS_FACTORS, sensitivity};
 pub use solve::{Found, solve};
 pub use vary::{Axis, AxisValue, MOST_VALUES, VaryError};

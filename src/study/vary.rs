@@ -6,7 +6,8 @@
 //! KEY=WORD,WORD,...                 weave.pattern=plain,twill-2-2,satin-8
 //! ```
 //!
-//! A unit behind the last value holds for all that have none of their own. A range holds both ends where the
+//! A unit behind the last value holds for all that have none of their own; where units differ each value keeps its
+//! own in the table. A range holds both ends where the
 //! steps meet the last (to a billionth of a step).
 
 use crate::quantity::plain;
@@ -57,7 +58,7 @@ pub enum VaryError {
     #[error(transparent)]
     Key(#[from] SetError),
     /// A range that is none.
-    #[error("`{text}` is no range; write `10..24 /cm step 2`")]
+    #[error("`{text}` is no range; write `10..24 /cm step 2`, or `24..10 /cm step -2` downwards")]
     Range {
         /// As written.
         text: String,
@@ -91,16 +92,32 @@ impl Axis {
         if parts.iter().any(|part| part.is_empty()) {
             return Err(VaryError::Empty { key: key.text });
         }
-        let unit = parts
-            .last()
-            .and_then(|last| number_and_unit(last))
-            .map(|(_, unit)| unit);
-        let unit = unit.unwrap_or_default();
-        let values = parts
-            .iter()
-            .map(|part| AxisValue::new(part, &unit))
-            .collect();
-        Ok(Self { key, unit, values })
+        let read: Vec<Option<(f64, String)>> =
+            parts.iter().map(|part| number_and_unit(part)).collect();
+        let last = read.last().cloned().flatten();
+        let unit = last.map(|(_, unit)| unit).unwrap_or_default();
+        let values = parts.iter().map(|part| AxisValue::new(part, &unit));
+        let shared = |one: &Option<(f64, String)>| matches!(one, Some((_, own)) if own.is_empty() || *own == unit);
+        if read.iter().all(shared) {
+            return Ok(Self {
+                key,
+                values: values.collect(),
+                unit,
+            });
+        }
+        // Several units, or words among numbers: each value is told whole, and is no number of one column.
+        let whole = |value: AxisValue| AxisValue {
+            number: None,
+            text: match &value.put {
+                NewValue::Text(text) | NewValue::Number(text) => text.clone(),
+            },
+            ..value
+        };
+        Ok(Self {
+            key,
+            values: values.map(whole).collect(),
+            unit: String::new(),
+        })
     }
 
     /// `FROM..TO UNIT step STEP`; `None` where it is no range.
@@ -145,15 +162,9 @@ impl AxisValue {
         };
         let digits = text[..text.len() - own.len()].trim().to_owned();
         let unit_here = if own.is_empty() { unit } else { &own };
-        // A value with another unit than the shared one shows its own.
-        let shown = if own.is_empty() || own == unit {
-            digits.clone()
-        } else {
-            text.to_owned()
-        };
         Self {
             number: Some(number),
-            text: shown,
+            text: digits.clone(),
             put: if unit_here.is_empty() {
                 NewValue::Number(digits)
             } else {
@@ -215,7 +226,8 @@ mod tests {
         assert_eq!(texts(&words), ["plain", "twill-2-2", "twill 3/1 z"]);
         assert!(words.values.iter().all(|value| value.number.is_none()));
         let mixed = Axis::parse("weave.warp.tension=1 cN/tex,40 cN").unwrap();
-        assert_eq!(texts(&mixed), ["1 cN/tex", "40"]);
+        assert_eq!(texts(&mixed), ["1 cN/tex", "40 cN"]);
+        assert_eq!((mixed.unit.as_str(), mixed.values[1].number), ("", None));
         let twist = Axis::parse("yarn.y.twist=20,40 /m Z").unwrap();
         assert_eq!(twist.values[0].put, NewValue::Text("20 /m Z".into()));
     }
