@@ -129,3 +129,24 @@ fn what_fails_decides_before_what_does_not() {
         ("crushing", true)
     );
 }
+
+/// A designation's nominal diameter gives way to one that is written, and the report says so; G is 9 um.
+#[test]
+fn a_diameter_other_than_the_designations_is_told() {
+    let warned = |diameter: &str| {
+        let spec = CLOTH.replace(
+            "linear_density = \"68 tex\"",
+            &format!("linear_density = \"ECG 75 1/0\"{diameter}"),
+        );
+        let output = common::lissom(&["check", "-", "--format", "json"], &spec);
+        let report: serde_json::Value = serde_json::from_slice(&output.stdout).unwrap();
+        report["warnings"].to_string()
+    };
+    assert!(!warned("").contains("designation"));
+    assert!(!warned("\nfilament_diameter = \"9.4 um\"").contains("designation"));
+    let other = warned("\nfilament_diameter = \"5 um\"");
+    assert!(
+        other.contains("filaments of 9.00 um, the spec makes them 5.00 um"),
+        "{other}"
+    );
+}

@@ -12,6 +12,7 @@ pub fn warnings(spec: &Spec, outcome: &Outcome) -> Vec<String> {
     let mut said = Vec::new();
     said.extend(crimps(spec, outcome));
     said.extend(chains(spec));
+    said.extend(designations(spec));
     if let Some(packing) = outcome.cloth.raised_packing {
         said.push(format!(
             "packing had to be raised to {} before these yarns could interlace: measure their width and thickness",
@@ -45,6 +46,31 @@ fn crimps(spec: &Spec, outcome: &Outcome) -> Vec<String> {
                     "measured {word} crimp {} %, the cloth computed has {} %: crimp, sett or yarn thickness does not fit",
                     percent(given),
                     percent(woven.crimp)
+                )
+            })
+        })
+        .collect()
+}
+
+/// Yarns whose designation tells another filament than their diameter or count.
+fn designations(spec: &Spec) -> Vec<String> {
+    let (warp, weft) = (&spec.weave.warp.yarn, &spec.weave.weft.yarn);
+    let yarns = [Some(warp), Some(weft).filter(|weft| weft.name != warp.name)];
+    yarns
+        .into_iter()
+        .flatten()
+        .filter_map(|yarn| {
+            let told = yarn.designated_diameter_mm?;
+            let here = yarn.count.filament_diameter_mm;
+            // A letter stands for a range of diameters some 15 % wide (from memory).
+            let off = (here - told).abs() > 0.15 * told;
+            let um = |mm: f64| significant(1e3 * mm, 3);
+            off.then(|| {
+                format!(
+                    "yarn `{}`: its designation tells filaments of {} um, the spec makes them {} um; the latter is taken",
+                    yarn.name,
+                    um(told),
+                    um(here)
                 )
             })
         })

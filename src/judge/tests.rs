@@ -33,6 +33,7 @@ fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
         binding: 0.0,
         bending_rigidity_n_mm2: None,
         tension_spread: 1.0,
+        designated_diameter_mm: None,
     }
 }
 

@@ -113,6 +113,7 @@ fn read_one(name: &Placed<String>, table: &Table<'_>, fibres: &Fibres) -> Option
         name: name.value.clone(),
         fibre,
         count,
+        designated_diameter_mm: nominal_diameter_mm,
         twist_per_mm: twist.map_or(0.0, |(turns, _)| turns),
         twist_direction: twist.and_then(|(_, direction)| direction),
         form,

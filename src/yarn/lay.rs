@@ -325,6 +325,7 @@ mod tests {
             binding: 0.0,
             bending_rigidity_n_mm2: None,
             tension_spread: 1.0,
+            designated_diameter_mm: None,
         }
     }
 

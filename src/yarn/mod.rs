@@ -71,6 +71,8 @@ pub struct Yarn {
     pub fibre: Fibre,
     /// Linear density, filaments, filament diameter.
     pub count: Count,
+    /// Nominal filament diameter its designation tells, mm, where it has one.
+    pub designated_diameter_mm: Option<f64>,
     /// Turns per mm.
     pub twist_per_mm: f64,
     /// Direction of twist, where there is one.
