@@ -5,16 +5,15 @@
 //! does not reach says so.
 
 use super::lever::{Better, Lever};
+use super::levers::levers;
 use super::margin::{Target, margin, margin_of};
 use super::proposed::{Set, set_of, then, values_of};
 use super::solve::{Found, solve};
-use crate::bend::SystemName;
 use crate::flow::Outcome;
 use crate::judge::{Finding, State};
 use crate::pattern::Weaves;
 use crate::quantity::plain;
-use crate::spec::{Document, KeyPath, NewValue, Spec, System};
-use crate::yarn::{Basis, Followed};
+use crate::spec::{Document, KeyPath, NewValue, Spec};
 
 /// Weaves that bend their yarns less often or less sharply than plain, tried in this order.
 const OTHER_WEAVES: [&str; 6] = [
@@ -25,10 +24,6 @@ const OTHER_WEAVES: [&str; 6] = [
     "satin-8",
     "satin-12",
 ];
-
-/// Finer filaments are not advised: below 3 um their fragments can be breathed in (the WHO's definition of respirable
-/// fibre), and yarns are made from about 4 um up.
-const FINEST_FILAMENT_UM: f64 = 4.0;
 
 /// One proposal for a place.
 #[derive(Debug, Clone, PartialEq)]
@@ -150,239 +145,4 @@ fn other_weave(document: &Document, weaves: &Weaves, spec: &Spec, target: &Targe
 /// What is said of a lever that does not reach.
 fn out_of_reach(lever: &str) -> String {
     format!("{lever}: nothing in reach of this lever")
-}
-
-/// The levers that may reach a place, the cheapest first.
-fn levers(spec: &Spec, outcome: &Outcome, target: &Target) -> Vec<Lever> {
-    let weave = &spec.weave;
-    let mut levers: Vec<Option<Lever>> = Vec::new();
-    match target {
-        Target::Crowns => {
-            levers.extend([
-                tension(&weave.warp, "warp"),
-                tension(&weave.weft, "weft"),
-                setts(spec),
-            ]);
-            levers.extend(flatness(spec, outcome));
-            levers.extend(filament_diameters(spec));
-        }
-        Target::Place { place, system, .. } => {
-            let yarn = match system {
-                SystemName::Warp => &weave.warp.yarn,
-                SystemName::Weft => &weave.weft.yarn,
-            };
-            levers.push(tension_at(spec, target));
-            levers.extend(station(spec, place, *system));
-            let own = format!("yarn.{}.filament_diameter", yarn.name);
-            let of_own = |lever: &Option<Lever>| {
-                lever
-                    .as_ref()
-                    .is_some_and(|lever| lever.keys[0].0.text == own)
-            };
-            levers.extend(filament_diameters(spec).into_iter().filter(of_own));
-        }
-    }
-    levers.into_iter().flatten().collect()
-}
-
-/// Radius, turn and own tension of a station; radius of a corner.
-pub(super) fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Lever>> {
-    let system = match of {
-        SystemName::Warp => &spec.weave.warp,
-        SystemName::Weft => &spec.weave.weft,
-    };
-    if let Some(index) = spec
-        .passages
-        .iter()
-        .position(|passage| passage.name == place && passage.system == of)
-    {
-        let passage = &spec.passages[index];
-        let key = |last: &str| format!("passage.{}.{last}", index + 1);
-        let turn = passage.turn_rad.to_degrees();
-        let mut levers = Vec::new();
-        if let Some(newton) = passage.tension_n {
-            let cn = 100.0 * newton;
-            levers.push(Lever::of_key(
-                "tension in front of it",
-                &key("tension"),
-                "cN",
-                cn,
-                Better::Down,
-                (least_tension_cn(system), 50.0 * cn.max(1.0)),
-                0.1,
-            ));
-        }
-        levers.extend([
-            Lever::of_key(
-                "radius",
-                &key("radius"),
-                "mm",
-                passage.radius_mm,
-                Better::Up,
-                (0.0, 1000.0),
-                0.01,
-            ),
-            Lever::of_key(
-                "turn",
-                &key("turn"),
-                "deg",
-                turn,
-                Better::Down,
-                (1.0, 360.0),
-                0.1,
-            ),
-        ]);
-        return levers;
-    }
-    let corner = spec
-        .tools
-        .iter()
-        .position(|tool| place.starts_with(&format!("{}, outer", tool.name)));
-    let of_corner = |index: usize| {
-        let key = format!("tool.{}.radius", index + 1);
-        Lever::of_key(
-            "radius",
-            &key,
-            "mm",
-            spec.tools[index].radius_mm,
-            Better::Up,
-            (0.0, 1000.0),
-            0.01,
-        )
-    };
-    corner.map(of_corner).into_iter().collect()
-}
-
-/// Below this a yarn hangs loose on a machine: 0.1 cN/tex (common practice, no source).
-fn least_tension_cn(system: &System) -> f64 {
-    0.1 * system.yarn.count.linear_density_tex
-}
-
-/// Tension of a place's system, where the place has none of its own.
-pub(super) fn tension_at(spec: &Spec, target: &Target) -> Option<Lever> {
-    let Target::Place { place, system, .. } = target else {
-        return None;
-    };
-    let own = spec.passages.iter().any(|passage| {
-        passage.name == *place && passage.system == *system && passage.tension_n.is_some()
-    });
-    match system {
-        _ if own => None,
-        SystemName::Warp => tension(&spec.weave.warp, "warp"),
-        SystemName::Weft => tension(&spec.weave.weft, "weft"),
-    }
-}
-
-/// Tension of a system at the fell.
-pub(super) fn tension(system: &System, word: &'static str) -> Option<Lever> {
-    let name = if word == "warp" {
-        "warp tension"
-    } else {
-        "weft tension"
-    };
-    let key = format!("weave.{word}.tension");
-    let cn = 100.0 * system.tension_n;
-    Lever::of_key(
-        name,
-        &key,
-        "cN",
-        cn,
-        Better::Down,
-        (least_tension_cn(system), 50.0 * cn.max(1.0)),
-        0.1,
-    )
-}
-
-/// Both setts in the same ratio, in the unit the spec writes.
-pub(super) fn setts(spec: &Spec) -> Option<Lever> {
-    let weave = &spec.weave;
-    let written = &spec.source.text[weave.warp.sett_span.clone()];
-    let (unit, per_mm) = if written.contains("in") {
-        ("/in", 25.4)
-    } else {
-        ("/cm", 10.0)
-    };
-    Some(Lever {
-        name: "both setts",
-        keys: vec![
-            (KeyPath::parse("weave.warp.sett").ok()?, 1.0),
-            (
-                KeyPath::parse("weave.weft.sett").ok()?,
-                weave.weft.sett_per_mm / weave.warp.sett_per_mm,
-            ),
-        ],
-        unit,
-        today: per_mm * weave.warp.sett_per_mm,
-        better: Better::Down,
-        reach: (
-            0.2 * per_mm * weave.warp.sett_per_mm,
-            20.0 * per_mm * weave.warp.sett_per_mm,
-        ),
-        step: 0.1,
-        decade_share: 0.01,
-    })
-}
-
-/// Flatness of the yarns whose outline is wholly assumed.
-fn flatness(spec: &Spec, outcome: &Outcome) -> Vec<Option<Lever>> {
-    let mut levers = Vec::new();
-    for (system, woven) in [
-        (&spec.weave.warp, &outcome.cloth.warp),
-        (&spec.weave.weft, &outcome.cloth.weft),
-    ] {
-        let key = format!("yarn.{}.flatness", system.yarn.name);
-        let known = |lever: &Option<Lever>| {
-            lever
-                .as_ref()
-                .is_some_and(|lever| lever.keys[0].0.text == key)
-        };
-        if woven.laid.basis == Basis::Assumed && !levers.iter().any(known) {
-            let today = woven.laid.outline.flatness();
-            levers.push(
-                Lever::of_key(
-                    "flatness of the yarn",
-                    &key,
-                    "",
-                    today,
-                    Better::Up,
-                    (1.0, 10.0 * today),
-                    0.1,
-                )
-                .map(Lever::fine),
-            );
-        }
-    }
-    levers
-}
-
-/// Filament diameter of the yarns whose linear density is given, tex kept.
-pub(super) fn filament_diameters(spec: &Spec) -> Vec<Option<Lever>> {
-    let mut levers: Vec<Option<Lever>> = Vec::new();
-    for system in [&spec.weave.warp, &spec.weave.weft] {
-        let yarn = &system.yarn;
-        let key = format!("yarn.{}.filament_diameter", yarn.name);
-        let known = |lever: &Option<Lever>| {
-            lever
-                .as_ref()
-                .is_some_and(|lever| lever.keys[0].0.text == key)
-        };
-        // Where the linear density follows from the filaments it would change with them.
-        let tex_given = yarn.count.followed != Followed::LinearDensity;
-        if !yarn.is_monofilament() && tex_given && !levers.iter().any(known) {
-            let um = 1e3 * yarn.count.filament_diameter_mm;
-            levers.push(
-                Lever::of_key(
-                    "filament diameter",
-                    &key,
-                    "um",
-                    um,
-                    Better::Down,
-                    (FINEST_FILAMENT_UM.min(um), 20.0 * um),
-                    0.1,
-                )
-                .map(Lever::fine),
-            );
-        }
-    }
-    levers
 }

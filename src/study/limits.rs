@@ -2,8 +2,8 @@
 //! tension; for the cloth the tightest setts, the thickest filament, the largest binding. Each is run, and one step
 //! beyond it does not hold.
 
-use super::advice::{filament_diameters, setts, station, tension, tension_at};
 use super::lever::{Better, Lever};
+use super::levers::{bindings, filament_diameters, setts, station, tension, tension_at};
 use super::margin::Target;
 use super::proposed::{Set, set_of};
 use super::solve::{Found, solve};
@@ -89,32 +89,4 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
         bound(&Target::Crowns, lever);
     }
     bounds
-}
-
-/// Binding of the yarns of several filaments.
-fn bindings(spec: &Spec) -> Vec<Option<Lever>> {
-    let mut levers: Vec<Option<Lever>> = Vec::new();
-    for yarn in [&spec.weave.warp.yarn, &spec.weave.weft.yarn] {
-        let key = format!("yarn.{}.binding", yarn.name);
-        let known = |lever: &Option<Lever>| {
-            lever
-                .as_ref()
-                .is_some_and(|lever| lever.keys[0].0.text == key)
-        };
-        if !yarn.is_monofilament() && !levers.iter().any(known) {
-            levers.push(
-                Lever::of_key(
-                    "binding",
-                    &key,
-                    "",
-                    yarn.binding,
-                    Better::Down,
-                    (0.0, 1.0),
-                    0.001,
-                )
-                .map(Lever::fine),
-            );
-        }
-    }
-    levers
 }

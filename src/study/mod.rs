@@ -6,6 +6,7 @@
 //! | `compare` | specs side by side and grids of values |
 //! | `lever`, `margin`, `solve` | what can be changed, how far a place is from holding, where it begins to hold |
 //! | `proposed` | a lever's value as keys to be set, and how the place is with them |
+//! | `levers` | what a spec lets be changed, with the reach a mill has |
 //! | `advice` | what would hold instead, the cheapest first |
 //! | `limits` | how far a spec may go |
 //! | `sensitivity` | how much the verdict hangs on the yarns' assumed outlines |
@@ -13,6 +14,7 @@
 mod advice;
 mod compare;
 mod lever;
+mod levers;
 mod limits;
 mod margin;
 mod proposed;
