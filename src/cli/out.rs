@@ -162,5 +162,9 @@ fn beside(path: &Path) -> io::Result<tempfile::NamedTempFile> {
         // The process's mask takes off what others may not.
         options.permissions(fs::Permissions::from_mode(0o666));
     }
-    options.tempfile_in(folder)
+    // The name of what could not be made beside it tells the person nothing.
+    options.tempfile_in(folder).map_err(|error| {
+        let kind = error.kind();
+        io::Error::new(kind, format!("{kind} ({})", folder.display()))
+    })
 }
