@@ -95,14 +95,17 @@ fn proposal(document: &Document, weaves: &Weaves, lever: &Lever, target: &Target
         Better::Up => "at least",
         Better::Down => "at most",
     };
-    let (text, set) = match solve(document, weaves, lever, target) {
-        Found::Holds { value, .. } => {
-            let set = set_of(document, weaves, lever, value);
+    let set = match solve(document, weaves, lever, target) {
+        Found::Holds { value, .. } => set_of(document, weaves, lever, value),
+        Found::Everywhere | Found::Nowhere => None,
+    };
+    let (text, set) = match set {
+        Some(set) => {
             let then = then(document, weaves, &set, target);
             let text = format!("{}: {side} {} ({then})", lever.name, values_of(&set));
             (text, set)
         }
-        Found::Everywhere | Found::Nowhere => (out_of_reach(lever.name), Vec::new()),
+        None => (out_of_reach(lever.name), Vec::new()),
     };
     Proposal {
         place: target.name(),

@@ -40,7 +40,14 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
     }
     let mut bounds = Vec::new();
     let mut bound = |target: &Target, lever: Lever| {
-        let found = solve(document, weaves, &lever, target);
+        let solved = solve(document, weaves, &lever, target);
+        let (found, set) = match solved {
+            Found::Holds { value, .. } => match set_of(document, weaves, &lever, value) {
+                Some(set) => (solved, set),
+                None => (Found::Nowhere, Vec::new()),
+            },
+            Found::Everywhere | Found::Nowhere => (solved, Vec::new()),
+        };
         let side = match lever.better {
             Better::Up => "smallest",
             Better::Down => "largest",
@@ -55,10 +62,7 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
             today: format!("{} {}", lever.digits(lever.today), lever.unit)
                 .trim_end()
                 .to_owned(),
-            set: match found {
-                Found::Holds { value, .. } => set_of(document, weaves, &lever, value),
-                Found::Everywhere | Found::Nowhere => Vec::new(),
-            },
+            set,
             found,
             lever,
             target: target.clone(),

@@ -16,31 +16,29 @@ use crate::weave::Closure;
 /// Keys and their new values as the spec would have them.
 pub type Set = Vec<(String, String)>;
 
-/// The keys to be set for a lever's value.
-pub fn set_of(document: &Document, weaves: &Weaves, lever: &Lever, value: f64) -> Set {
+/// The keys to be set for a lever's value; `None` where a whole number of filaments does not make the linear density.
+pub fn set_of(document: &Document, weaves: &Weaves, lever: &Lever, value: f64) -> Option<Set> {
     let mut set = lever.settings(value);
-    let Some(key) = lever.keys.first().map(|(key, _)| &key.text) else {
-        return set;
-    };
-    let count = key
+    let (key, _) = lever.keys.first()?;
+    let counted = key
+        .text
         .strip_prefix("yarn.")
         .and_then(|rest| rest.strip_suffix(".filament_diameter"))
         .filter(|name| document.yarn_has(name, "filaments"));
+    let Some(name) = counted else {
+        return Some(set);
+    };
     let mut changed = document.clone();
-    if let Some(name) = count
-        && lever.put(&mut changed, value, true).is_ok()
-        && let Ok(spec) = changed.spec(weaves)
-    {
-        let yarns = [&spec.weave.warp.yarn, &spec.weave.weft.yarn];
-        let yarn = yarns.into_iter().find(|yarn| yarn.name == name);
-        set.extend(yarn.map(|yarn| {
-            (
-                format!("yarn.{name}.filaments"),
-                yarn.count.filaments.to_string(),
-            )
-        }));
-    }
-    set
+    lever.put(&mut changed, value, true).ok()?;
+    let spec = changed.spec(weaves).ok()?;
+    let yarns = [&spec.weave.warp.yarn, &spec.weave.weft.yarn];
+    let yarn = yarns.into_iter().find(|yarn| yarn.name == name)?;
+    let count = yarn.count.filaments.to_string();
+    let key = KeyPath::parse(&format!("yarn.{name}.filaments")).ok()?;
+    changed.set(&key, &NewValue::Number(count.clone())).ok()?;
+    changed.spec(weaves).ok()?;
+    set.push((key.text, count));
+    Some(set)
 }
 
 /// The values of a set in words.
