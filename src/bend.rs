@@ -109,6 +109,15 @@ pub enum Easing {
     Crown(Crown),
     /// Over a shoulder.
     Shoulder(Shoulder),
+    /// On a path of least energy: it is bent as the path is, and a filament by itself no less.
+    Path {
+        /// Turn of the whole crown, rad.
+        turn_rad: f64,
+        /// The crown, for what bends past yield.
+        crown: Crown,
+        /// Radius of the crossed outline at its crest, mm; absent where it is flat.
+        section_mm: Option<f64>,
+    },
     /// Over an outline that turns from crest to shoulder without a corner: whichever bends it more.
     Rounded(Crown, Shoulder),
 }
@@ -118,7 +127,8 @@ pub enum Easing {
 pub struct Stretch {
     /// Length on the yarn's centreline, mm.
     pub length_mm: f64,
-    /// Radius of what the yarn's inner side lies on, mm; zero is an edge, `None` a straight stretch.
+    /// Radius of the yarn's inner side, mm: of what it lies on, zero for an edge, below zero where the centreline is
+    /// bent more sharply than half of the yarn's thickness; `None` is a straight stretch.
     pub lies_on_mm: Option<f64>,
     /// How it may ease away.
     pub easing: Easing,

@@ -40,7 +40,7 @@ fn exit_status_tells_what_became_of_the_spec() {
         Some(1)
     );
     assert_eq!(
-        status(&["check", "--strict", "examples/kiln-curtain.toml"]),
+        status(&["check", "--strict", "examples/dish-face.toml"]),
         Some(1)
     );
     assert_eq!(

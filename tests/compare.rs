@@ -70,7 +70,7 @@ fn the_edge_lies_between_holding_and_failing() {
         "compare",
         KILN,
         "--vary",
-        "weave.warp.sett=14..30 /cm step 1",
+        "weave.warp.sett=14..50 /cm step 4",
     ]);
     let variants = report["variants"].as_array().unwrap();
     let fails: Vec<bool> = variants

@@ -146,9 +146,14 @@ const CASES: &[(&str, &str, &str)] = &[
     ("no name", "name = \"Good\"", ""),
     ("empty name", "\"Good\"", "\" \""),
     (
-        "stiff path",
+        "path of a rod",
         "pattern = \"plain\"",
-        "pattern = \"plain\"\npath = \"stiff\"",
+        "pattern = \"plain\"\npath = \"rod\"",
+    ),
+    (
+        "sett counted nowhere",
+        "pattern = \"plain\"",
+        "pattern = \"plain\"\nsett_at = \"beam\"",
     ),
     ("reserve under one", "reserve = 2.0", "reserve = 0.5"),
     (

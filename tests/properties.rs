@@ -9,7 +9,7 @@ use lissom::flow::{Outcome, run};
 use lissom::judge::Finding;
 use lissom::pattern::{Weaves, Woven};
 use lissom::span::SourceText;
-use lissom::spec::Spec;
+use lissom::spec::{PathModel, Spec};
 use proptest::prelude::*;
 use std::sync::Arc;
 
@@ -180,6 +180,7 @@ proptest! {
         for spec in [&mut loose, &mut tight] {
             // Equal heights: the split does not move with the sett.
             spec.weave.warp.tension_given = false;
+            spec.weave.path = PathModel::Taut;
         }
         let (Ok(loose), Ok(tight)) = (run(&loose, 1.0), run(&tight, 1.0)) else { return Ok(()); };
         prop_assume!(!loose.cloth.closed.jam_limited && !tight.cloth.closed.jam_limited);

@@ -8,7 +8,7 @@ use lissom::pattern::{WeaveFileError, Weaves};
 use lissom::report::{self, Advice, CheckReport, Setting};
 use lissom::span::SourceText;
 use lissom::spec::{Document, Problem, Spec};
-use lissom::study::{advice, sensitivity};
+use lissom::study::{advice, rigidity, sensitivity};
 use lissom::weave::Jammed;
 use std::io::{self, Read};
 use std::path::{Path, PathBuf};
@@ -96,6 +96,7 @@ impl Check {
     ) -> Result<CheckReport, Status> {
         let (document, spec, outcome) = read_checked(path, weaves, streams)?;
         let variations = sensitivity(&spec, &outcome.cloth);
+        let stiffer = rigidity(&spec);
         let proposals = advice(&document, weaves, &spec, &outcome)
             .into_iter()
             .map(|proposal| Advice {
@@ -107,6 +108,7 @@ impl Check {
             &spec,
             &outcome,
             &variations,
+            &stiffer,
             proposals.collect(),
             self.strict,
         ))

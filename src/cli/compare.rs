@@ -191,9 +191,14 @@ impl Compare {
             rows.push(VariantRow {
                 spec: place.spec,
                 values: place.values.iter().zip(grid.axes()).map(cell).collect(),
+                without: if matches!(told, Told::Unsolved) {
+                    "unsolved"
+                } else {
+                    "jammed"
+                },
                 woven: match told {
                     Told::Woven(row) => Some(row),
-                    Told::Jammed => None,
+                    Told::Jammed | Told::Unsolved => None,
                 },
                 edge: false,
             });
@@ -256,10 +261,11 @@ impl Compare {
                 .zip(grid.axes())
                 .map(|(value, axis)| axis.values[*value].text.as_str());
             let row = match &told {
-                Told::Woven(row) => Some(row),
-                Told::Jammed => None,
+                Told::Woven(row) => Ok(row),
+                Told::Jammed => Err("jammed"),
+                Told::Unsolved => Err("unsolved"),
             };
-            if let Some(merit) = row.and_then(BriefRow::merit)
+            if let Some(merit) = row.ok().and_then(BriefRow::merit)
                 && best.as_ref().is_none_or(|(so_far, _)| merit > *so_far)
             {
                 best = Some((merit, number));

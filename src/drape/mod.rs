@@ -25,7 +25,7 @@ pub fn corners(spec: &Spec, cloth: &Cloth) -> Vec<Bend> {
     if spec.tools.is_empty() {
         return Vec::new();
     }
-    let at_rest: Vec<Bend> = crowns(&spec.weave, cloth)
+    let at_rest: Vec<Bend> = crowns(&spec.weave, cloth, cloth)
         .into_iter()
         .filter(|bend| bend.stage == Stage::Rest)
         .collect();

@@ -1,20 +1,33 @@
 //! What the result hangs on that the spec did not say: every default used, in words with its value.
 
+use super::Outcome;
 use crate::bend::Stage;
 use crate::fibre::FigureName;
 use crate::quantity::{plain, significant};
-use crate::spec::{DEFAULT_TENSION_N_TEX, Passage, Spec, System};
+use crate::spec::{DEFAULT_TENSION_N_TEX, Passage, PathModel, SettAt, Spec, System};
 use crate::weave::{Closure, Cloth, ClothYarn};
 use crate::yarn::{Basis, DEFAULT_PACKING, DEFAULT_WIDTH_SHARE, Followed, Yarn};
 
 /// Every default and simplification behind this outcome, in a stable order.
-pub fn assumptions(spec: &Spec, cloth: &Cloth) -> Vec<String> {
+pub fn assumptions(spec: &Spec, outcome: &Outcome) -> Vec<String> {
     let mut said = Vec::new();
-    let weave = &spec.weave;
-    said.push(
-        "taut path: the yarns bend like strings round each other; stiff yarns bend less sharply, or more in very tight cloth"
-            .to_owned(),
-    );
+    let (weave, cloth) = (&spec.weave, &outcome.cloth);
+    said.push(match weave.path {
+        PathModel::Taut => {
+            "taut path: the yarns bend like strings round each other; stiff yarns bend less sharply, or more in very tight cloth"
+                .to_owned()
+        }
+        PathModel::Stiff => {
+            let default = if weave.sett_at_given { "" } else { " (the default)" };
+            let (counted, other) = match weave.sett_at {
+                SettAt::Finished => ("at rest", "on the loom"),
+                SettAt::Loom => ("on the loom", "at rest"),
+            };
+            format!(
+                "stiff path: each yarn takes the course of least energy, elastic and without friction; sett counted {counted}{default}, {other} the yarns keep their lengths"
+            )
+        }
+    });
     said.push(height_shared(cloth));
     if let Some(factor) = cloth.thickness_factor {
         said.push(format!(
@@ -38,7 +51,7 @@ pub fn assumptions(spec: &Spec, cloth: &Cloth) -> Vec<String> {
         if !yarns.contains(&system.yarn.name.as_str()) {
             yarns.push(&system.yarn.name);
             said.extend(count(&system.yarn));
-            said.extend(bundle(&system.yarn));
+            said.extend(bundle(&system.yarn, weave.path));
         }
     }
     for (word, system, woven) in [
@@ -51,6 +64,7 @@ pub fn assumptions(spec: &Spec, cloth: &Cloth) -> Vec<String> {
             woven,
             cloth.thickness_factor.is_some(),
         ));
+        said.extend(rigidity(word, &system.yarn, woven));
         said.extend(tension(word, system));
     }
     if !weave.peak_given {
@@ -95,6 +109,10 @@ fn height_shared(cloth: &Cloth) -> String {
         Closure::EqualHeights => {
             "equal wave heights, as neither crimp nor both tensions are given".to_owned()
         }
+        Closure::LeastEnergy => {
+            "least energy of both: the contact forces of every crossing in balance".to_owned()
+        }
+        Closure::KeptLengths => "least energy, the yarns as long as in the other state".to_owned(),
     };
     let limited = if cloth.closed.jam_limited {
         "; that split does not exist at this sett, the nearest that does is taken (jam limited)"
@@ -164,12 +182,17 @@ fn count(yarn: &Yarn) -> Option<String> {
 }
 
 /// How the filaments hang together.
-fn bundle(yarn: &Yarn) -> Option<String> {
+fn bundle(yarn: &Yarn, path: PathModel) -> Option<String> {
     if yarn.is_monofilament() || yarn.binding > 0.0 {
         return None;
     }
     let measured = if yarn.bending_rigidity_n_mm2.is_some() {
-        "; the measured rigidity is of no account then"
+        match path {
+            PathModel::Taut => "; the measured rigidity is of no account then",
+            PathModel::Stiff => {
+                "; the measured rigidity shapes the yarn's path, not its filaments' own bends"
+            }
+        }
     } else {
         ""
     };
@@ -182,6 +205,33 @@ fn bundle(yarn: &Yarn) -> Option<String> {
         "yarn `{}`: filaments slide freely over each other (binding 0){twist}, pull spread {}{measured}",
         yarn.name,
         plain(yarn.tension_spread, 3)
+    ))
+}
+
+/// Where the rigidity of a stiff yarn comes from, and between which bounds it lies.
+fn rigidity(word: &str, yarn: &Yarn, woven: &ClothYarn) -> Option<String> {
+    let system = woven.solved()?;
+    let value = |rigidity: f64| significant(rigidity, 2);
+    let (free, bonded) = (
+        yarn.free_rigidity_n_mm2(),
+        yarn.bonded_rigidity_n_mm2(&woven.laid),
+    );
+    let basis = if yarn.bending_rigidity_n_mm2.is_some() {
+        "as given".to_owned()
+    } else if yarn.is_monofilament() {
+        "a single filament".to_owned()
+    } else {
+        format!("from filaments and binding {}", plain(yarn.binding, 3))
+    };
+    let bounds = if yarn.is_monofilament() {
+        String::new()
+    } else {
+        format!("; free {}, fully bonded {}", value(free), value(bonded))
+    };
+    Some(format!(
+        "{word} yarn `{}`: bending rigidity {} N mm2 ({basis}{bounds})",
+        yarn.name,
+        value(system.rigidity_n_mm2)
     ))
 }
 

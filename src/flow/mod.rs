@@ -5,29 +5,32 @@
 mod assumptions;
 mod warnings;
 
+pub use crate::weave::{RigidityBound, Varied};
 pub use assumptions::assumptions;
 pub use warnings::warnings;
 
 use crate::bend::{Bend, SystemName};
 use crate::judge::{Finding, State, judge};
 use crate::spec::Spec;
-use crate::weave::{Cloth, ClothError, crowns};
+use crate::weave::{Cloth, ClothError, States, crowns};
 use crate::{drape, passage};
 
 /// What becomes of a spec.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Outcome {
-    /// The cloth.
+    /// The cloth at rest, or the one state of taut yarns.
     pub cloth: Cloth,
+    /// The cloth on the loom; absent for taut yarns.
+    pub on_loom: Option<Cloth>,
     /// Every bend, judged, in the order of the way from package to tool.
     pub findings: Vec<Finding>,
 }
 
-/// What becomes of a spec whose assumed outlines are flatter or rounder.
+/// What becomes of a spec whose assumed outlines are flatter or rounder, or whose yarns are as stiff as they may be.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Variation {
-    /// Factor on the assumed flatness.
-    pub flatness_factor: f64,
+    /// What was varied.
+    pub varied: Varied,
     /// The worst of it: state and reserve; `None` where there is no cloth.
     pub worst: Option<(State, Option<f64>)>,
 }
@@ -37,9 +40,27 @@ pub struct Variation {
 /// # Errors
 /// Where there is no cloth: the yarns do not fit or do not interlace.
 pub fn run(spec: &Spec, flatness: f64) -> Result<Outcome, ClothError> {
-    let cloth = Cloth::build(&spec.weave, flatness)?;
+    run_varied(
+        spec,
+        Varied {
+            flatness,
+            ..Varied::default()
+        },
+    )
+}
+
+/// Runs the flow with assumed outlines and rigidities varied.
+///
+/// # Errors
+/// As [`run`].
+pub fn run_varied(spec: &Spec, varied: Varied) -> Result<Outcome, ClothError> {
+    let States { cloth, on_loom } = States::build(&spec.weave, varied)?;
     let mut bends: Vec<Bend> = passage::stations(spec, &cloth);
-    bends.extend(crowns(&spec.weave, &cloth));
+    bends.extend(crowns(
+        &spec.weave,
+        &cloth,
+        on_loom.as_ref().unwrap_or(&cloth),
+    ));
     bends.extend(drape::corners(spec, &cloth));
     bends.sort_by_key(|bend| bend.stage);
     let mut findings = Vec::with_capacity(bends.len());
@@ -52,7 +73,11 @@ pub fn run(spec: &Spec, flatness: f64) -> Result<Outcome, ClothError> {
         findings.push(finding);
         findings.extend(heat);
     }
-    Ok(Outcome { cloth, findings })
+    Ok(Outcome {
+        cloth,
+        on_loom,
+        findings,
+    })
 }
 
 impl Outcome {

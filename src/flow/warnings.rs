@@ -11,6 +11,8 @@ use crate::spec::{Passage, Spec};
 pub fn warnings(spec: &Spec, outcome: &Outcome) -> Vec<String> {
     let mut said = Vec::new();
     said.extend(crimps(spec, outcome));
+    said.extend(floats(outcome));
+    said.extend(past_yield(outcome));
     said.extend(chains(spec));
     said.extend(designations(spec));
     if let Some(packing) = outcome.cloth.raised_packing {
@@ -50,6 +52,37 @@ fn crimps(spec: &Spec, outcome: &Outcome) -> Vec<String> {
             })
         })
         .collect()
+}
+
+/// Stiff floats that stand far off the cloth.
+fn floats(outcome: &Outcome) -> Option<String> {
+    let cloth = &outcome.cloth;
+    let (warp, weft) = (cloth.warp.solved()?, cloth.weft.solved()?);
+    let stiff = cloth.warp.crimp + cloth.weft.crimp;
+    let taut = warp.taut_crimp + weft.taut_crimp;
+    (stiff > 1.5 * taut).then(|| {
+        format!(
+            "at rest both crimps together are {} times those of taut yarns: with so little pull left stiff floats stand off the cloth; `rest` decides how far",
+            significant(stiff / taut, 2)
+        )
+    })
+}
+
+/// Wires whose elastic path bends them past yield.
+fn past_yield(outcome: &Outcome) -> Option<String> {
+    outcome.cloth.warp.solved()?;
+    outcome
+        .findings
+        .iter()
+        .any(|finding| {
+            matches!(finding.stage, Stage::Loom | Stage::Rest)
+                && matches!(finding.limit, Some(Limit::Yield | Limit::Strain))
+                && finding.state >= State::Yields
+        })
+        .then(|| {
+            "the path of a wire past yield is found as if it stayed elastic, or lay on the wire it crosses where it bends more: its strain is overstated"
+                .to_owned()
+        })
 }
 
 /// Yarns whose designation tells another filament than their diameter or count.

@@ -18,6 +18,7 @@ use crate::yarn::{Laid, Yarn};
 /// is held to what it lies on.
 pub(super) fn free_curvature_per_mm(
     easing: Easing,
+    path_per_mm: f64,
     pull_n: f64,
     yarn: &Yarn,
     laid: &Laid,
@@ -30,6 +31,8 @@ pub(super) fn free_curvature_per_mm(
         Easing::LongArms { turn_rad } => edge_peak_per_mm(ratio, turn_rad),
         Easing::Crown(crown) => crown.peak_per_mm(ratio),
         Easing::Shoulder(shoulder) => shoulder.peak_per_mm(ratio),
+        // The path is that of the yarn under its pull: a filament is bent no less, and alone at most as over an edge.
+        Easing::Path { turn_rad, .. } => path_per_mm.max(edge_peak_per_mm(ratio, turn_rad)),
         Easing::Rounded(crown, shoulder) => {
             crown.peak_per_mm(ratio).max(shoulder.peak_per_mm(ratio))
         }
@@ -65,6 +68,14 @@ pub(super) fn free_curvature_per_mm(
                     pull_on_one / wire.rigidity_n_mm2(),
                     turn_rad,
                 )),
+                Easing::Path {
+                    crown, section_mm, ..
+                } => {
+                    // The bend gathers where the wire yields, up to the section that it lies on.
+                    let lying = section_mm.map_or(0.0, |radius| 1.0 / (radius + 0.5 * diameter));
+                    let gathered = crown.hardened_peak_per_mm(pull_on_one, &wire).min(lying);
+                    Some(path_per_mm.max(gathered))
+                }
                 Easing::Crown(crown) => Some(crown.hardened_peak_per_mm(pull_on_one, &wire)),
                 _ => None,
             }

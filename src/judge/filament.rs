@@ -19,7 +19,7 @@
 //! twisted yarns the helix's change over the width.
 
 use super::easing::free_curvature_per_mm;
-use crate::bend::{Bend, Stretch};
+use crate::bend::{Bend, Easing, Stretch};
 use crate::path::{bent_helix_peak_per_mm, helix_curvature_per_mm};
 use crate::yarn::{Laid, Yarn};
 
@@ -99,8 +99,29 @@ fn on_stretch(
     let thickness = laid.outline.thickness_mm();
     let diameter = yarn.count.filament_diameter_mm;
     let added = bend.added_per_mm;
-    let free_per_mm = free_curvature_per_mm(stretch.easing, bend.pull_n, yarn, laid);
-    let lying = |e: f64| stretch.lies_on_mm.map_or(0.0, |radius| 1.0 / (radius + e));
+    let lying = |e: f64| {
+        stretch.lies_on_mm.map_or(0.0, |radius| {
+            // Inside of the centreline's own centre there is no room: only the filament's stiffness bounds it.
+            if radius + e > 0.0 {
+                1.0 / (radius + e)
+            } else {
+                f64::INFINITY
+            }
+        })
+    };
+    let free_per_mm = free_curvature_per_mm(
+        stretch.easing,
+        lying(0.5 * thickness),
+        bend.pull_n,
+        yarn,
+        laid,
+    );
+    // A wire past yield may be bent more than the elastic path.
+    let follows = !matches!(stretch.easing, Easing::Path { .. });
+    let lying = |e: f64| match free_per_mm {
+        Some(free) if !follows && yarn.is_monofilament() => lying(e).max(free),
+        _ => lying(e),
+    };
     let eased = |y: f64| {
         let free = free_per_mm.unwrap_or(f64::INFINITY);
         // A bonded yarn that eases bends its inner filaments more than its centreline, to a point at most.

@@ -16,6 +16,7 @@
 //! - `matrix`, `turn`: [`Pattern`], the same cloth turned, mirrored, exchanged;
 //! - `interlacing`: floats and changes of both systems ([`Interlacing`]);
 //! - `hanging`: whether it is one cloth or falls apart ([`Layers`]; Clapham 1980);
+//! - `alike`: which ends, picks and crossings are alike ([`Alike`]);
 //! - `family`: plain, ribs, hopsack, twills, satins built from their numbers;
 //! - `words`, `notation`: the same asked for in a weaver's words ([`parse_notation`]);
 //! - `iso`: ISO 9354 codes, read and written ([`parse_iso_9354`]);
@@ -26,6 +27,7 @@
 //! Left out: leno (ends that change their order), lappet and pile loops, which no matrix of this kind can hold. Several
 //! layers bound together are one matrix and are legal; several layers not bound are refused by whoever needs one cloth.
 
+mod alike;
 mod builtin;
 mod draw;
 mod family;
@@ -43,6 +45,7 @@ mod woven;
 #[cfg(test)]
 mod testing;
 
+pub use alike::Alike;
 pub use draw::{Marks, draw};
 pub use family::{
     FamilyError, TwillLine, hopsack, plain, sateen, satin, satin_steps, twill, warp_rib, weft_rib,

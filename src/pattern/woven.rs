@@ -3,7 +3,7 @@
 //! A library of weaves keeps what it has worked out by the text it was asked for, so that a study that reads a
 //! thousand variants of one spec does so once.
 
-use super::{Interlacing, Layers, NotationError, Pattern, Weaves};
+use super::{Alike, Interlacing, Layers, NotationError, Pattern, Weaves};
 use std::collections::HashMap;
 use std::sync::{Arc, Mutex, PoisonError};
 
@@ -14,6 +14,8 @@ pub struct Woven {
     pub pattern: Pattern,
     /// Floats and changes of both systems.
     pub interlacing: Interlacing,
+    /// Which of its yarns and crossings are alike.
+    pub alike: Alike,
     /// Absent where it hangs together.
     pub layers: Option<Layers>,
     /// Its ISO 9354 code, where it has one.
@@ -26,6 +28,7 @@ impl Woven {
     pub fn new(pattern: Pattern) -> Self {
         Self {
             interlacing: pattern.interlacing(),
+            alike: pattern.alike(),
             layers: pattern.falls_apart(),
             iso_9354: pattern.iso_9354(),
             pattern,

@@ -4,11 +4,11 @@
 //! significant digits.
 
 use super::cautions::cautions;
-use crate::bend::Meets;
-use crate::flow::{Outcome, Variation, assumptions, warnings};
+use crate::bend::{Meets, Stage};
+use crate::flow::{Outcome, RigidityBound, Variation, assumptions, warnings};
 use crate::judge::{Finding, Limit, State};
 use crate::quantity::rounded;
-use crate::spec::Spec;
+use crate::spec::{PathModel, Spec};
 use crate::weave::{Closure, Cloth, ClothYarn};
 use serde::Serialize;
 use sha2::{Digest, Sha256};
@@ -25,8 +25,11 @@ pub struct CheckReport {
     pub verdict: &'static str,
     /// Whether the check fails (exit status 1).
     pub fails: bool,
-    /// The cloth, in its one state.
+    /// The cloth at rest, or the one state of taut yarns.
     pub cloth: ClothReport,
+    /// The cloth on the loom; absent for taut yarns.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub cloth_on_loom: Option<ClothReport>,
     /// Every bend, judged.
     pub bends: Vec<BendRow>,
     /// Index in `bends` of the one that decides.
@@ -35,6 +38,9 @@ pub struct CheckReport {
     pub hangs_on_width: bool,
     /// The worst at other flatnesses of the assumed outlines.
     pub sensitivity: Vec<SensitivityRow>,
+    /// The worst with the bounds of the yarns' rigidity.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub rigidity: Vec<RigidityRow>,
     /// What a reader must not miss.
     pub warnings: Vec<String>,
     /// What would hold instead.
@@ -83,6 +89,8 @@ pub struct ClothReport {
     pub warp: SystemReport,
     pub weft: SystemReport,
     pub thickness_mm: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub free_height_mm: Option<f64>,
     pub areal_mass_g_m2: f64,
     pub cover: f64,
     pub fibre_volume_fraction: f64,
@@ -114,6 +122,10 @@ pub struct SystemReport {
     pub filaments: u32,
     pub filament_diameter_um: f64,
     pub bending_rigidity_n_mm2: f64,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub tension_n: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub contact_force_n: Option<f64>,
 }
 
 /// One bend in the report.
@@ -158,6 +170,9 @@ pub struct BendRow {
     pub strength_loss: Option<f64>,
     pub limits: Vec<LimitRow>,
     pub line: usize,
+    /// Whether the yarn follows a path of least energy there.
+    #[serde(skip)]
+    pub on_path: bool,
     /// The text of that line.
     #[serde(skip)]
     pub quoted: String,
@@ -198,6 +213,18 @@ pub struct SensitivityRow {
     pub state: &'static str,
 }
 
+/// The worst with another rigidity of the yarns.
+#[derive(Debug, Clone, PartialEq, Serialize)]
+pub struct RigidityRow {
+    /// `free` filaments or `bonded` yarn.
+    pub rigidity: &'static str,
+    /// Reserve of the bend that decides.
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reserve: Option<f64>,
+    /// State; `jammed` where there is no cloth.
+    pub state: &'static str,
+}
+
 /// The state of a variation whose yarns cannot interlace.
 const JAMMED: &str = "jammed";
 
@@ -228,6 +255,7 @@ impl CheckReport {
         spec: &Spec,
         outcome: &Outcome,
         variations: &[Variation],
+        rigidity: &[Variation],
         advice: Vec<Advice>,
         strict: bool,
     ) -> Self {
@@ -244,6 +272,10 @@ impl CheckReport {
             verdict,
             fails: outcome.fails(spec, strict),
             cloth: ClothReport::new(spec, &outcome.cloth),
+            cloth_on_loom: outcome
+                .on_loom
+                .as_ref()
+                .map(|cloth| ClothReport::new(spec, cloth)),
             bends: outcome
                 .findings
                 .iter()
@@ -251,9 +283,10 @@ impl CheckReport {
                 .collect(),
             worst: outcome.worst(spec.require.refuse_kinks),
             sensitivity,
+            rigidity: rigidity.iter().map(RigidityRow::new).collect(),
             warnings: warnings(spec, outcome),
             advice,
-            assumptions: assumptions(spec, &outcome.cloth),
+            assumptions: assumptions(spec, outcome),
             cautions: cautions(&fibres),
         }
     }
@@ -302,6 +335,8 @@ impl ClothReport {
                 Closure::BothCrimps(..) => "both crimps",
                 Closure::Tensions(..) => "tensions",
                 Closure::EqualHeights => "equal heights",
+                Closure::LeastEnergy => "least energy",
+                Closure::KeptLengths => "kept lengths",
             },
             crimp_mismatch: cloth.closed.mismatch.map(rounded),
             thickness_factor: cloth.thickness_factor.map(rounded),
@@ -309,6 +344,7 @@ impl ClothReport {
             warp: SystemReport::new(&weave.warp.yarn, &cloth.warp),
             weft: SystemReport::new(&weave.weft.yarn, &cloth.weft),
             thickness_mm: rounded(cloth.thickness_mm),
+            free_height_mm: cloth.free_height_mm.map(rounded),
             areal_mass_g_m2: rounded(cloth.areal_mass_g_m2),
             cover: rounded(cloth.cover),
             fibre_volume_fraction: rounded(cloth.fibre_volume_fraction),
@@ -338,6 +374,8 @@ impl SystemReport {
             filaments: yarn.count.filaments,
             filament_diameter_um: rounded(1e3 * yarn.count.filament_diameter_mm),
             bending_rigidity_n_mm2: rounded(yarn.rigidity_n_mm2(&woven.laid)),
+            tension_n: woven.solved().map(|system| rounded(system.pull_n)),
+            contact_force_n: woven.solved().map(|system| rounded(system.push_n)),
         }
     }
 }
@@ -386,6 +424,8 @@ impl BendRow {
                 .map(LimitRow::new)
                 .collect(),
             line,
+            on_path: spec.weave.path == PathModel::Stiff
+                && matches!(finding.stage, Stage::Loom | Stage::Rest | Stage::Draping),
             quoted: spec.source.line(line).trim().to_owned(),
         }
     }
@@ -407,10 +447,25 @@ impl LimitRow {
     }
 }
 
+impl RigidityRow {
+    fn new(variation: &Variation) -> Self {
+        let row = SensitivityRow::new(variation);
+        Self {
+            rigidity: match variation.varied.rigidity {
+                RigidityBound::Own => "own",
+                RigidityBound::Free => "free",
+                RigidityBound::Bonded => "bonded",
+            },
+            reserve: row.reserve,
+            state: row.state,
+        }
+    }
+}
+
 impl SensitivityRow {
     fn new(variation: &Variation) -> Self {
         Self {
-            flatness_factor: variation.flatness_factor,
+            flatness_factor: variation.varied.flatness,
             reserve: variation
                 .worst
                 .and_then(|(_, reserve)| reserve)

@@ -52,8 +52,10 @@ pub struct VariantRow {
     pub spec: usize,
     /// Its values, one for each column.
     pub values: Vec<VaryCell>,
-    /// What became of it; `None` where it is jammed.
+    /// What became of it; `None` where there is no cloth.
     pub woven: Option<WovenRow>,
+    /// What it is called then: `jammed`, or `unsolved` where the stiff path was not found.
+    pub without: &'static str,
     /// Whether a neighbour along an axis fails where this holds, or the other way round.
     pub edge: bool,
 }
@@ -117,7 +119,7 @@ impl VariantRow {
     fn verdict(&self) -> &'static str {
         self.woven
             .as_ref()
-            .map_or("jammed", |woven| woven.verdict.word())
+            .map_or(self.without, |woven| woven.verdict.word())
     }
 }
 
@@ -281,7 +283,7 @@ impl CompareReport {
                 }
                 object.insert("values".into(), json!(values));
                 object.insert("verdict".into(), json!(row.verdict()));
-                object.insert("jammed".into(), json!(row.woven.is_none()));
+                object.insert("jammed".into(), json!(row.verdict() == "jammed"));
                 object.insert("edge".into(), json!(row.edge));
                 if let Some(woven) = &row.woven {
                     object.insert("fails".into(), json!(woven.fails));
@@ -402,7 +404,7 @@ impl<W: io::Write> CompareCsv<W> {
         Ok(this)
     }
 
-    /// Writes one variant; jammed ones have no numbers.
+    /// Writes one variant; those without a cloth have no numbers, only the word for it.
     ///
     /// # Errors
     /// Where it cannot be written.
@@ -410,17 +412,20 @@ impl<W: io::Write> CompareCsv<W> {
         &mut self,
         spec: usize,
         values: impl Iterator<Item = &'v str>,
-        woven: Option<&BriefRow>,
+        woven: Result<&BriefRow, &str>,
     ) -> csv::Result<()> {
         self.writer
             .write_field(self.specs.get(spec).map_or("", String::as_str))?;
         for value in values {
             self.writer.write_field(value)?;
         }
-        let Some(woven) = woven else {
-            return self
-                .writer
-                .write_record(["jammed", "", "", "", "", "", "", "", "", ""]);
+        let woven = match woven {
+            Ok(woven) => woven,
+            Err(without) => {
+                return self
+                    .writer
+                    .write_record([without, "", "", "", "", "", "", "", "", ""]);
+            }
         };
         self.writer.write_field(woven.verdict.word())?;
         self.writer

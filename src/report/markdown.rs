@@ -2,8 +2,8 @@
 
 use super::check::CheckReport;
 use super::text::{
-    BEND_COLUMNS, HANGS_ON_WIDTH, bend_cells, bend_sentences, cloth_lines, pattern_line,
-    system_rows,
+    BEND_COLUMNS, HANGS_ON_WIDTH, bend_cells, bend_sentences, cloth_lines, loom_lines, loom_rows,
+    pattern_line, stiff_as, system_rows,
 };
 use crate::quantity::{plain, significant};
 use std::fmt::Write as _;
@@ -120,14 +120,47 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     for bend in &report.bends {
         row(out, &bend_cells(bend))?;
     }
-    writeln!(out, "\n## Cloth\n")?;
+    let at_rest = if report.cloth_on_loom.is_some() {
+        " at rest"
+    } else {
+        ""
+    };
+    writeln!(out, "\n## Cloth{at_rest}\n")?;
     head(out, &["", "warp", "weft"])?;
     for cells in system_rows(&report.cloth.warp, &report.cloth.weft) {
         row(out, &cells)?;
     }
     writeln!(out)?;
-    for (name, value) in cloth_lines(report) {
+    for (name, value) in cloth_lines(&report.cloth) {
         writeln!(out, "- {name}: {value}")?;
+    }
+    if let Some(loom) = &report.cloth_on_loom {
+        writeln!(out, "\n## The same cloth on the loom\n")?;
+        head(out, &["", "warp", "weft"])?;
+        for cells in loom_rows(&loom.warp, &loom.weft) {
+            row(out, &cells)?;
+        }
+        writeln!(out)?;
+        for (name, value) in loom_lines(loom) {
+            writeln!(out, "- {name}: {value}")?;
+        }
+    }
+    if !report.rigidity.is_empty() {
+        writeln!(out, "\n## If the yarns were as stiff as\n")?;
+        head(out, &["", "state", "reserve"])?;
+        for variation in &report.rigidity {
+            let reserve = variation
+                .reserve
+                .map_or_else(|| "-".to_owned(), |r| significant(r, 3));
+            row(
+                out,
+                &[
+                    stiff_as(variation.rigidity).to_owned(),
+                    variation.state.to_owned(),
+                    reserve,
+                ],
+            )?;
+        }
     }
     if !report.sensitivity.is_empty() {
         writeln!(

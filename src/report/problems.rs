@@ -66,6 +66,14 @@ pub fn jammed(spec: &Spec, jammed: &Jammed) -> Problem {
         ClothError::Thickness { .. } => weave.span.clone(),
         _ => weave.warp.sett_span.clone(),
     };
+    if matches!(
+        jammed.why,
+        ClothError::NoPath { .. } | ClothError::NoBalance { .. }
+    ) {
+        return Problem::at(weave.span.clone(), message, "not solved")
+            .help("this is no verdict: the yarns may well be woven")
+            .help("`path = \"taut\"` under `[weave]` answers for flexible threads; or measure `crimp` or widths and give them");
+    }
     let mut problem = Problem::at(span, message, "too close");
     if matches!(jammed.why, ClothError::Thickness { .. }) {
         problem.label = "out of reach".into();

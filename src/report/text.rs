@@ -1,6 +1,6 @@
 //! Text for a terminal: the verdict first, the worst bend, then every bend, the cloth, what it hangs on.
 
-use super::check::{Advice, BendRow, CheckReport, LimitRow, SystemReport};
+use super::check::{Advice, BendRow, CheckReport, ClothReport, LimitRow, SystemReport};
 use super::table::{folded, table};
 use crate::quantity::{plain, significant};
 use anstyle::{AnsiColor, Style};
@@ -76,14 +76,40 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     }
     heading(out, "Bends, in the order of the way")?;
     writeln!(out, "{}", bend_table(&report.bends))?;
-    heading(out, "Cloth")?;
+    heading(
+        out,
+        if report.cloth_on_loom.is_some() {
+            "Cloth at rest"
+        } else {
+            "Cloth"
+        },
+    )?;
     writeln!(
         out,
         "{}",
         system_table(&report.cloth.warp, &report.cloth.weft)
     )?;
-    for (name, value) in cloth_lines(report) {
+    for (name, value) in cloth_lines(&report.cloth) {
         writeln!(out, "  {name:<28} {value}")?;
+    }
+    if let Some(loom) = &report.cloth_on_loom {
+        heading(out, "The same cloth on the loom")?;
+        let rows = loom_rows(&loom.warp, &loom.weft)
+            .into_iter()
+            .map(|row| row.to_vec());
+        writeln!(out, "{}", table(["", "warp", "weft"], rows, &[1, 2]))?;
+        for (name, value) in loom_lines(loom) {
+            writeln!(out, "  {name:<28} {value}")?;
+        }
+    }
+    if !report.rigidity.is_empty() {
+        heading(out, "If the yarns were as stiff as")?;
+        for row in &report.rigidity {
+            let reserve = row
+                .reserve
+                .map_or_else(String::new, |r| format!(", reserve {}", significant(r, 3)));
+            writeln!(out, "  {}: {}{reserve}", stiff_as(row.rigidity), row.state)?;
+        }
     }
     if !report.sensitivity.is_empty() {
         heading(out, "If the assumed outlines were")?;
@@ -108,6 +134,14 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     list(out, &report.assumptions)?;
     heading(out, "Cautions")?;
     list(out, &report.cautions)
+}
+
+/// A bound of the rigidity in words.
+pub(super) fn stiff_as(bound: &str) -> &'static str {
+    match bound {
+        "free" => "filaments that slide freely",
+        _ => "fully bonded yarn",
+    }
 }
 
 /// Where the state changes with the assumed outlines.
@@ -216,12 +250,21 @@ pub(super) fn bend_sentences(bend: &BendRow) -> Vec<String> {
         let eased = free < bend.lying_curvature_per_mm;
         let at = |per_mm: f64| significant(1.0 / per_mm, 3);
         if bend.lying_curvature_per_mm > 0.0 && free > 0.0 {
-            said.push(format!(
-                "lying on it would bend it to {} mm, its own stiffness to {} mm: {} governs",
-                at(bend.lying_curvature_per_mm),
-                at(free),
-                if eased { "stiffness" } else { "the surface" }
-            ));
+            said.push(if bend.on_path {
+                format!(
+                    "laid along the yarn's path it would be bent to {} mm, by its own stiffness to {} mm: {} governs",
+                    at(bend.lying_curvature_per_mm),
+                    at(free),
+                    if eased { "stiffness" } else { "the path" }
+                )
+            } else {
+                format!(
+                    "lying on it would bend it to {} mm, its own stiffness to {} mm: {} governs",
+                    at(bend.lying_curvature_per_mm),
+                    at(free),
+                    if eased { "stiffness" } else { "the surface" }
+                )
+            });
         }
     }
     if let Some(loss) = bend.strength_loss {
@@ -328,7 +371,7 @@ pub(super) fn system_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[Stri
         row("crimp %", &|s| significant(100.0 * s.crimp, 3)),
         row("wave height mm", &|s| significant(s.wave_height_mm, 3)),
         row("slope deg", &|s| significant(s.wrap_angle_deg, 3)),
-        row("taut radius mm", &|s| {
+        row("smallest radius mm", &|s| {
             s.min_radius_mm
                 .map_or_else(|| "straight".to_owned(), |r| significant(r, 3))
         }),
@@ -337,6 +380,39 @@ pub(super) fn system_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[Stri
             format!("{}, {}", s.float_face, s.float_back)
         }),
     ]
+}
+
+/// Rows that differ on the loom: name, warp, weft; shared by text and Markdown.
+pub(super) fn loom_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[String; 3]> {
+    let row =
+        |name: &str, of: &dyn Fn(&SystemReport) -> String| [name.to_owned(), of(warp), of(weft)];
+    vec![
+        row("mean pull cN", &|s| {
+            s.tension_n
+                .map_or_else(String::new, |n| significant(100.0 * n, 3))
+        }),
+        row("threads per cm", &|s| significant(10.0 / s.spacing_mm, 4)),
+        row("crimp %", &|s| significant(100.0 * s.crimp, 3)),
+        row("wave height mm", &|s| significant(s.wave_height_mm, 3)),
+        row("slope deg", &|s| significant(s.wrap_angle_deg, 3)),
+        row("smallest radius mm", &|s| {
+            s.min_radius_mm
+                .map_or_else(|| "straight".to_owned(), |r| significant(r, 3))
+        }),
+        row("contact mm", &|s| significant(s.contact_mm, 3)),
+        row("largest contact force cN", &|s| {
+            s.contact_force_n
+                .map_or_else(String::new, |n| significant(100.0 * n, 3))
+        }),
+    ]
+}
+
+/// The cloth's own numbers that differ on the loom.
+pub(super) fn loom_lines(cloth: &ClothReport) -> Vec<(&'static str, String)> {
+    cloth_lines(cloth)
+        .into_iter()
+        .filter(|(name, _)| matches!(*name, "areal mass" | "thickness"))
+        .collect()
 }
 
 fn system_table(warp: &SystemReport, weft: &SystemReport) -> String {
@@ -358,8 +434,7 @@ pub(super) fn pattern_line(report: &CheckReport) -> String {
 }
 
 /// The cloth's own numbers: name and value; shared by text and Markdown.
-pub(super) fn cloth_lines(report: &CheckReport) -> Vec<(&'static str, String)> {
-    let cloth = &report.cloth;
+pub(super) fn cloth_lines(cloth: &ClothReport) -> Vec<(&'static str, String)> {
     vec![
         (
             "areal mass",
@@ -367,7 +442,14 @@ pub(super) fn cloth_lines(report: &CheckReport) -> Vec<(&'static str, String)> {
         ),
         (
             "thickness",
-            format!("{} mm", significant(cloth.thickness_mm, 3)),
+            match cloth.free_height_mm {
+                Some(free) => format!(
+                    "{} mm under a gauge, {} mm where nothing presses it",
+                    significant(cloth.thickness_mm, 3),
+                    significant(free, 3)
+                ),
+                None => format!("{} mm", significant(cloth.thickness_mm, 3)),
+            },
         ),
         (
             "cover",

@@ -270,7 +270,18 @@ pub const WEAVE: &[Key] = &[
         "from the yarns",
         "measured cloth thickness; the yarns' thicknesses are scaled to meet it",
     ),
-    key("path", "\"taut\"", "taut", "model of the yarn's path"),
+    key(
+        "path",
+        "\"stiff\" or \"taut\"",
+        "stiff",
+        "model of the yarns' paths: rods of least energy in two states, or flexible threads in one",
+    ),
+    key(
+        "sett_at",
+        "\"finished\" or \"loom\"",
+        "finished",
+        "state in which the sett was counted; in the other the yarns keep their lengths (stiff paths)",
+    ),
     key(
         "rest",
         "share, \"10 %\"",

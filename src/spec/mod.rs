@@ -19,7 +19,10 @@ mod yarn;
 pub use document::{Document, KeyPath, NewValue, SetError};
 pub use problem::Problem;
 pub use way::{Passage, Tool};
-pub use weave::{DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, System, Weave};
+pub use weave::{
+    DEFAULT_PATH, DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, PathModel, SettAt, System,
+    Weave,
+};
 
 use crate::pattern::Weaves;
 use crate::span::SourceText;

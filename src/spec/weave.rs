@@ -18,6 +18,27 @@ pub const DEFAULT_PEAK: f64 = 2.0;
 /// Share of the mean pull left at rest where none is given (an assumption).
 pub const DEFAULT_REST: f64 = 0.1;
 
+/// The model of a yarn's path.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum PathModel {
+    /// A flexible thread.
+    Taut,
+    /// A rod under pull: the path of least energy.
+    Stiff,
+}
+
+/// The state of the cloth in which its sett was counted.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum SettAt {
+    /// Off the loom, at rest.
+    Finished,
+    /// On the loom, under the weaving tension.
+    Loom,
+}
+
+/// The model where none is given.
+pub const DEFAULT_PATH: PathModel = PathModel::Stiff;
+
 /// One system of a weave: the ends or the picks.
 #[derive(Debug, Clone)]
 pub struct System {
@@ -57,6 +78,12 @@ pub struct Weave {
     pub weft: System,
     /// Measured thickness of the cloth, mm.
     pub thickness_mm: Option<f64>,
+    /// Model of the yarns' paths.
+    pub path: PathModel,
+    /// The state in which the sett was counted; of no account to taut paths, which have one state.
+    pub sett_at: SettAt,
+    /// Whether the spec gave it.
+    pub sett_at_given: bool,
     /// Share of the mean pull that stays at rest.
     pub rest: f64,
     /// Whether the spec gave that share.
@@ -86,7 +113,18 @@ pub fn read_weave(spec: &Table<'_>, yarns: &[SpecYarn], weaves: &Weaves) -> Opti
     let warp = read_system(&table, "warp", yarns);
     let weft = read_system(&table, "weft", yarns);
     let thickness = table.measure("thickness", Dimension::Length, Bound::Positive);
-    read_path(&table);
+    let path = table
+        .word(
+            "path",
+            &[("taut", PathModel::Taut), ("stiff", PathModel::Stiff)],
+        )
+        .value();
+    let sett_at = table
+        .word(
+            "sett_at",
+            &[("finished", SettAt::Finished), ("loom", SettAt::Loom)],
+        )
+        .value();
     let rest = table
         .measure("rest", Dimension::Share, Bound::Within(0.0, 1.0))
         .value();
@@ -102,28 +140,15 @@ pub fn read_weave(spec: &Table<'_>, yarns: &[SpecYarn], weaves: &Weaves) -> Opti
         warp: warp?,
         weft: weft?,
         thickness_mm: thickness.value(),
+        path: path.unwrap_or(DEFAULT_PATH),
+        sett_at: sett_at.unwrap_or(SettAt::Finished),
+        sett_at_given: sett_at.is_some(),
         rest: rest.unwrap_or(DEFAULT_REST),
         rest_given: rest.is_some(),
         peak: peak.unwrap_or(DEFAULT_PEAK),
         peak_given: peak.is_some(),
         span,
     })
-}
-
-/// Only one model of the path is built; a spec that asks for another must not be answered with this one.
-fn read_path(table: &Table<'_>) {
-    if let Field::Given(path) = table.word("path", &[("taut", true), ("stiff", false)])
-        && !path.value
-    {
-        table.push(
-            Problem::at(
-                path.span,
-                "the stiff path is not in this version",
-                "not built yet",
-            )
-            .help("leave `path` out, or write `path = \"taut\"`"),
-        );
-    }
 }
 
 fn read_pattern(table: &Table<'_>, weaves: &Weaves) -> Option<(String, Arc<Woven>)> {

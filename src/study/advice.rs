@@ -14,6 +14,7 @@ use crate::judge::{Finding, State};
 use crate::pattern::Weaves;
 use crate::quantity::plain;
 use crate::spec::{Document, KeyPath, NewValue, Spec};
+use rayon::prelude::*;
 
 /// Weaves that bend their yarns less often or less sharply than plain, tried in this order.
 const OTHER_WEAVES: [&str; 6] = [
@@ -58,14 +59,26 @@ pub fn advice(
             targets.push(target);
         }
     }
-    for target in &targets {
-        for lever in levers(spec, outcome, target) {
-            said.push(proposal(document, weaves, &lever, target));
-            if lever.name == "both setts" {
-                said.push(other_weave(document, weaves, spec, target));
-            }
-        }
-    }
+    let asked: Vec<(&Target, Option<Lever>)> = targets
+        .iter()
+        .flat_map(|target| {
+            levers(spec, outcome, target)
+                .into_iter()
+                .flat_map(move |lever| {
+                    // Another weave comes behind the setts.
+                    let weave = (lever.name == "both setts").then_some((target, None));
+                    std::iter::once((target, Some(lever))).chain(weave)
+                })
+        })
+        .collect();
+    let proposals: Vec<Proposal> = asked
+        .into_par_iter()
+        .map(|(target, lever)| match lever {
+            Some(lever) => proposal(document, weaves, &lever, target),
+            None => other_weave(document, weaves, spec, target),
+        })
+        .collect();
+    said.extend(proposals);
     said
 }
 

@@ -37,6 +37,8 @@ pub enum Told<T> {
     Woven(T),
     /// Its yarns do not fit or do not interlace.
     Jammed,
+    /// No path or balance of its stiff yarns was found.
+    Unsolved,
 }
 
 /// Why a grid cannot be compared.
@@ -166,9 +168,13 @@ impl Grid {
         };
         match run(&spec, 1.0) {
             Ok(outcome) => Ok(Told::Woven(tell(&spec, &outcome))),
-            Err(ClothError::Jammed | ClothError::Lay { .. } | ClothError::Thickness { .. }) => {
-                Ok(Told::Jammed)
-            }
+            Err(
+                ClothError::Jammed
+                | ClothError::Lay { .. }
+                | ClothError::Thickness { .. }
+                | ClothError::NoOtherState { .. },
+            ) => Ok(Told::Jammed),
+            Err(ClothError::NoPath { .. } | ClothError::NoBalance { .. }) => Ok(Told::Unsolved),
         }
     }
 }

@@ -10,6 +10,7 @@ use super::solve::{Found, solve};
 use crate::flow::Outcome;
 use crate::pattern::Weaves;
 use crate::spec::{Document, Spec};
+use rayon::prelude::*;
 
 /// One limit.
 #[derive(Debug, Clone, PartialEq)]
@@ -38,8 +39,8 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
             targets.push(target);
         }
     }
-    let mut bounds = Vec::new();
-    let mut bound = |target: &Target, lever: Lever| {
+    let bound = |(target, lever): (Target, Lever)| {
+        let target = &target;
         let solved = solve(document, weaves, &lever, target);
         let (found, set) = match solved {
             Found::Holds { value, .. } => match set_of(document, weaves, &lever, value) {
@@ -52,7 +53,7 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
             Better::Up => "smallest",
             Better::Down => "largest",
         };
-        bounds.push(Bound {
+        Bound {
             place: target.name(),
             what: if lever.name == "both setts" {
                 "tightest setts".to_owned()
@@ -66,18 +67,19 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
             found,
             lever,
             target: target.clone(),
-        });
+        }
     };
+    let mut asked: Vec<(Target, Lever)> = Vec::new();
     let weave = &spec.weave;
     for target in &targets {
         let Target::Place { place, system, .. } = target else {
             continue;
         };
         for lever in station(spec, place, *system).into_iter().flatten() {
-            bound(target, lever);
+            asked.push((target.clone(), lever));
         }
         if let Some(lever) = tension_at(spec, target) {
-            bound(target, lever);
+            asked.push((target.clone(), lever));
         }
     }
     let cloth = [
@@ -89,8 +91,6 @@ pub fn limits(document: &Document, weaves: &Weaves, spec: &Spec, outcome: &Outco
         .into_iter()
         .chain(filament_diameters(spec))
         .chain(bindings(spec));
-    for lever in levers.flatten() {
-        bound(&Target::Crowns, lever);
-    }
-    bounds
+    asked.extend(levers.flatten().map(|lever| (Target::Crowns, lever)));
+    asked.into_par_iter().map(bound).collect()
 }

@@ -28,6 +28,6 @@ pub use lever::{Better, Lever};
 pub use limits::{Bound, limits};
 pub use margin::{Target, margin, margin_of};
 pub use proposed::{Set, values_of};
-pub use sensitivity::{FLATNESS_FACTORS, sensitivity};
+pub use sensitivity::{FLATNESS_FACTORS, rigidity, sensitivity};
 pub use solve::{Found, solve};
 pub use vary::{Axis, AxisValue, MOST_VALUES, VaryError};

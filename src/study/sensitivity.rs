@@ -1,10 +1,12 @@
-//! How much the verdict hangs on the yarns' assumed outlines.
+//! How much the verdict hangs on the yarns' assumed outlines and on their rigidity.
 //!
 //! A mill knows sett and tex, seldom a yarn's width. The flow runs again with the assumed flatness (width over
 //! thickness, area kept) at 0.7 and 1.4 times its value; measured outlines and solid or round yarns stay.
+//! Nor does it know a yarn's bending rigidity: stiff paths are found again with both of its bounds, filaments that slide
+//! freely and the fully bonded yarn. The bounds are those of the path; how bonding strains the filaments stays the spec's.
 
-use crate::flow::{Outcome, Variation, run};
-use crate::spec::Spec;
+use crate::flow::{Outcome, RigidityBound, Variation, Varied, run_varied};
+use crate::spec::{PathModel, Spec};
 use crate::weave::Cloth;
 use crate::yarn::Basis;
 
@@ -25,21 +27,54 @@ pub fn sensitivity(spec: &Spec, cloth: &Cloth) -> Vec<Variation> {
         .collect()
 }
 
+/// The worst of the spec with the rigidity's bounds; empty where paths are taut or every yarn is one filament.
+pub fn rigidity(spec: &Spec) -> Vec<Variation> {
+    let bundles = [&spec.weave.warp, &spec.weave.weft]
+        .iter()
+        .any(|system| !system.yarn.is_monofilament());
+    if spec.weave.path == PathModel::Taut || !bundles {
+        return Vec::new();
+    }
+    [RigidityBound::Free, RigidityBound::Bonded]
+        .into_iter()
+        .map(|rigidity| {
+            worst_of(
+                spec,
+                Varied {
+                    rigidity,
+                    ..Varied::default()
+                },
+            )
+        })
+        .collect()
+}
+
+/// The worst of a spec so varied.
+fn worst_of(spec: &Spec, varied: Varied) -> Variation {
+    let worst = |outcome: Outcome| {
+        (
+            outcome.verdict(),
+            outcome
+                .worst_finding(spec.require.refuse_kinks)
+                .and_then(|finding| finding.reserve()),
+        )
+    };
+    Variation {
+        varied,
+        worst: run_varied(spec, varied).ok().map(worst),
+    }
+}
+
 /// The worst at one factor; where there is no cloth, also at the farthest factor towards it that has one.
 fn toward(spec: &Spec, flatness_factor: f64) -> Vec<Variation> {
-    let at = |flatness_factor: f64| {
-        let worst = |outcome: Outcome| {
-            (
-                outcome.verdict(),
-                outcome
-                    .worst_finding(spec.require.refuse_kinks)
-                    .and_then(|finding| finding.reserve()),
-            )
-        };
-        Variation {
-            flatness_factor,
-            worst: run(spec, flatness_factor).ok().map(worst),
-        }
+    let at = |flatness: f64| {
+        worst_of(
+            spec,
+            Varied {
+                flatness,
+                ..Varied::default()
+            },
+        )
     };
     let asked = at(flatness_factor);
     if asked.worst.is_some() {
@@ -70,6 +105,7 @@ fn toward(spec: &Spec, flatness_factor: f64) -> Vec<Variation> {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::flow::run;
     use crate::pattern::Weaves;
     use crate::span::SourceText;
 
@@ -86,7 +122,7 @@ mod tests {
     #[test]
     fn rounder_yarns_bend_each_other_more() {
         let rows = of("linear_density = \"68 tex\"", "12 /cm");
-        let factors: Vec<f64> = rows.iter().map(|row| row.flatness_factor).collect();
+        let factors: Vec<f64> = rows.iter().map(|row| row.varied.flatness).collect();
         assert_eq!(factors, FLATNESS_FACTORS);
         let reserve = |index: usize| rows[index].worst.unwrap().1.unwrap();
         assert!(reserve(0) < reserve(1), "{rows:?}");
@@ -111,8 +147,8 @@ mod tests {
             "linear_density = \"68 tex\"\npacking = 0.65\nwidth = \"0.486 mm\"",
             "17.28 /cm",
         );
-        assert_eq!((rows[1].flatness_factor, rows[1].worst), (1.4, None));
-        let nearest = rows[2].flatness_factor;
+        assert_eq!((rows[1].varied.flatness, rows[1].worst), (1.4, None));
+        let nearest = rows[2].varied.flatness;
         assert!(
             nearest > 1.2 && nearest < 1.4 && rows[2].worst.is_some(),
             "{rows:?}"

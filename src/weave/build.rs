@@ -110,7 +110,7 @@ fn unscaled(weave: &Weave, flatness: f64) -> Result<Cloth, ClothError> {
 }
 
 /// The cloth with the yarns' thicknesses scaled by a factor: packing follows and cannot give.
-fn scaled(weave: &Weave, flatness: f64, thickness: f64) -> Result<Cloth, ClothError> {
+pub(super) fn scaled(weave: &Weave, flatness: f64, thickness: f64) -> Result<Cloth, ClothError> {
     let vary = Vary {
         flatness,
         thickness,

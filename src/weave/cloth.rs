@@ -11,6 +11,8 @@
 
 use super::share::{Closed, Closure, share};
 use super::wave::Wave;
+use crate::bend::Flanks;
+use crate::path::{Passing, Sample};
 use crate::pattern::{FloatLength, Side, SystemInterlacing};
 use crate::spec::{System, Weave};
 use crate::yarn::{Laid, LayError, Vary};
@@ -37,13 +39,56 @@ pub struct ClothYarn {
     pub spacing_mm: f64,
     /// The yarn in its outline.
     pub laid: Laid,
-    /// The wave: its path and how its crowns may ease.
-    pub wave: Wave,
-    /// The way from a crest to the next trough.
-    pub passing: crate::path::Passing,
+    /// Changes of side over crossings, mean of the system.
+    pub changes_per_crossing: f64,
+    /// The path, as far as bends hang on it.
+    pub path: YarnPath,
+}
+
+/// The path of one system's yarns.
+#[derive(Debug, Clone, PartialEq)]
+pub enum YarnPath {
+    /// Taut: every crown alike.
+    Taut {
+        /// The wave: how its crowns may ease.
+        wave: Wave,
+        /// The way from a crest to the next trough.
+        passing: Passing,
+    },
+    /// Stiff: solved.
+    Stiff(StiffSystem),
+}
+
+/// The solved paths of one system's yarns.
+#[derive(Debug, Clone, PartialEq)]
+pub struct StiffSystem {
+    /// How much of a yarn is bent how sharply: samples by curvature, the sharpest last; lengths per half crown.
+    pub samples: Vec<Sample>,
+    /// Crimp the taut path would have, a ratio.
+    pub taut_crimp: f64,
+    /// Pull at which the path was found, N.
+    pub pull_n: f64,
+    /// Rigidity of the yarn, N mm2.
+    pub rigidity_n_mm2: f64,
+    /// Largest push of a crossing on a yarn, N.
+    pub push_n: f64,
+    /// Whether some path had to be followed from the taut thread, as it was not found at once.
+    pub followed: bool,
+    /// How sharply the crossed section is bent at its crest, as a radius, mm; absent where it is flat.
+    pub section_mm: Option<f64>,
+    /// Which sides of its sharpest crowns fall away.
+    pub flanks: Flanks,
 }
 
 impl ClothYarn {
+    /// The solved path, where the yarns are stiff.
+    pub fn solved(&self) -> Option<&StiffSystem> {
+        match &self.path {
+            YarnPath::Stiff(system) => Some(system),
+            YarnPath::Taut { .. } => None,
+        }
+    }
+
     /// The longest float on either side, crossings.
     pub fn float_max(&self) -> usize {
         self.float_face.max(self.float_back)
@@ -59,8 +104,10 @@ pub struct Cloth {
     pub weft: ClothYarn,
     /// How the height is shared.
     pub closed: Closed,
-    /// Thickness, mm.
+    /// Thickness under a gauge, mm.
     pub thickness_mm: f64,
+    /// Height where nothing presses it, mm; of stiff yarns.
+    pub free_height_mm: Option<f64>,
     /// Mass per area with crimp, g/m2.
     pub areal_mass_g_m2: f64,
     /// Share of the area covered by yarn.
@@ -86,6 +133,36 @@ pub enum ClothError {
         system: &'static str,
         /// What does not fit.
         error: LayError,
+    },
+    /// A stiff yarn for which no path was found.
+    #[error(
+        "no path of least energy was found for {system} yarn {yarn} of the repeat, at its crossing {crossing}"
+    )]
+    NoPath {
+        /// Which system.
+        system: &'static str,
+        /// Which end or pick of the repeat, from 1.
+        yarn: usize,
+        /// Which of its crossings, from 1.
+        crossing: usize,
+    },
+    /// The heights of stiff yarns did not come into balance.
+    #[error(
+        "the yarns' contact forces found no balance where end {end} meets pick {pick} of the repeat"
+    )]
+    NoBalance {
+        /// The end, from 1.
+        end: usize,
+        /// The pick, from 1.
+        pick: usize,
+    },
+    /// The yarns do not keep their lengths in the other state of the cloth.
+    #[error("the yarns fit the cloth {state} but not, with the same lengths, the cloth {other}")]
+    NoOtherState {
+        /// The state that was found.
+        state: &'static str,
+        /// The state that was not.
+        other: &'static str,
     },
     /// No scaling of the yarns meets the measured thickness.
     #[error(
@@ -140,22 +217,35 @@ impl Cloth {
         };
         let warp = yarn(&weave.warp, warp, warp_wave, shared.warp_mm, &floats.warp)?;
         let weft = yarn(&weave.weft, weft, weft_wave, shared.weft_mm, &floats.weft)?;
-        Ok(Self::from_systems(weave, warp, weft, shared.closed))
-    }
-
-    fn from_systems(weave: &Weave, warp: ClothYarn, weft: ClothYarn, closed: Closed) -> Self {
         let height = |yarn: &ClothYarn| yarn.wave_height_mm + yarn.laid.outline.thickness_mm();
         let thickness_mm = height(&warp).max(height(&weft));
+        Ok(Self::from_systems(
+            weave,
+            warp,
+            weft,
+            shared.closed,
+            thickness_mm,
+        ))
+    }
+
+    /// The numbers that follow from both systems; the setts are those of the yarns' own spacings.
+    pub(super) fn from_systems(
+        weave: &Weave,
+        warp: ClothYarn,
+        weft: ClothYarn,
+        closed: Closed,
+        thickness_mm: f64,
+    ) -> Self {
         let mass = |system: &System, yarn: &ClothYarn| {
             (
-                system.sett_per_mm,
+                1.0 / yarn.spacing_mm,
                 system.yarn.count.linear_density_tex,
                 yarn.crimp,
             )
         };
         // Per mm2 of cloth: length of yarn times its area of fibre.
         let fibre_mm = |system: &System, yarn: &ClothYarn| {
-            system.sett_per_mm * (1.0 + yarn.crimp) * system.yarn.fibre_area_mm2()
+            (1.0 + yarn.crimp) / yarn.spacing_mm * system.yarn.fibre_area_mm2()
         };
         let width = |yarn: &ClothYarn| (yarn.laid.outline.width_mm(), yarn.spacing_mm);
         Self {
@@ -167,6 +257,7 @@ impl Cloth {
             closed,
             warp,
             weft,
+            free_height_mm: None,
             thickness_factor: None,
             raised_packing: None,
         }
@@ -194,12 +285,12 @@ impl ClothYarn {
             slope_rad: passing.slope_rad,
             min_radius_mm: wave.min_radius_mm(&passing),
             contact_mm: passing.rests.iter().map(|rest| rest.length_mm).sum(),
+            changes_per_crossing: wave.changes_per_crossing(),
             float_face: float(Side::Face),
             float_back: float(Side::Back),
             spacing_mm: system.spacing_mm(),
             laid,
-            wave,
-            passing,
+            path: YarnPath::Taut { wave, passing },
         })
     }
 }

@@ -4,20 +4,26 @@
 //! to the straight piece. It is met twice: on the loom at the peak of the pull, and at rest with what pull
 //! friction and set keep. Brittle fibres are worse off with the pull, fibres weak in compression without.
 
-use super::cloth::{Cloth, ClothYarn};
+use super::cloth::{Cloth, ClothYarn, StiffSystem, YarnPath};
+use super::wave::Wave;
 use crate::bend::{Bend, Crown, Easing, Meets, Shoulder, Stage, Stretch, SystemName};
+use crate::path::Passing;
 use crate::spec::{System, Weave};
 
-/// One crown bend for each system and state, warp first.
-pub fn crowns(weave: &Weave, cloth: &Cloth) -> Vec<Bend> {
+/// One crown bend for each system and state, warp first; `on_loom` is the same cloth where paths have one state.
+pub fn crowns(weave: &Weave, cloth: &Cloth, on_loom: &Cloth) -> Vec<Bend> {
     let mut bends = Vec::with_capacity(4);
-    for (name, system, yarn, crossed) in [
-        (SystemName::Warp, &weave.warp, &cloth.warp, &cloth.weft),
-        (SystemName::Weft, &weave.weft, &cloth.weft, &cloth.warp),
+    for (name, system) in [
+        (SystemName::Warp, &weave.warp),
+        (SystemName::Weft, &weave.weft),
     ] {
-        let loom = (Stage::Loom, weave.peak * system.tension_n);
-        let rest = (Stage::Rest, weave.rest * system.tension_n);
-        for (stage, pull_n) in [loom, rest] {
+        let loom = (Stage::Loom, weave.peak * system.tension_n, on_loom);
+        let rest = (Stage::Rest, weave.rest * system.tension_n, cloth);
+        for (stage, pull_n, cloth) in [loom, rest] {
+            let (yarn, crossed) = match name {
+                SystemName::Warp => (&cloth.warp, &cloth.weft),
+                SystemName::Weft => (&cloth.weft, &cloth.warp),
+            };
             bends.push(crown(name, system, yarn, crossed.spacing_mm, stage, pull_n));
         }
     }
@@ -42,8 +48,7 @@ fn crown(
         });
     }
     // Each change has the half crown before it and the half crown behind it.
-    let halves_per_mm =
-        2.0 * yarn.wave.changes_per_crossing() / (crossed_spacing_mm * (1.0 + yarn.crimp));
+    let halves_per_mm = 2.0 * yarn.changes_per_crossing / (crossed_spacing_mm * (1.0 + yarn.crimp));
     Bend {
         place: match name {
             SystemName::Warp => "warp crown over weft".into(),
@@ -61,21 +66,58 @@ fn crown(
     }
 }
 
-/// The half crown from the crest to the straight piece; every rest with the way in which it may ease.
+/// What a half crown is made of.
 fn profile(yarn: &ClothYarn, crossed_spacing_mm: f64) -> Vec<Stretch> {
+    match &yarn.path {
+        YarnPath::Taut { wave, passing } => taut_profile(yarn, wave, passing, crossed_spacing_mm),
+        YarnPath::Stiff(system) => stiff_profile(yarn, system, crossed_spacing_mm),
+    }
+}
+
+/// The solved path of the whole system, as much of it as one half crown has on average.
+fn stiff_profile(yarn: &ClothYarn, system: &StiffSystem, crossed_spacing_mm: f64) -> Vec<Stretch> {
     let crown = Crown {
         drop_mm: 0.5 * yarn.wave_height_mm,
         arm_mm: 0.5 * crossed_spacing_mm,
-        flanks: yarn.wave.flanks(),
+        flanks: system.flanks,
     };
-    let half_straight_mm = 0.5 * yarn.passing.straight_mm;
-    let slope_rad = yarn.passing.slope_rad;
+    let half_thickness_mm = 0.5 * yarn.laid.outline.thickness_mm();
+    system
+        .samples
+        .iter()
+        .map(|sample| Stretch {
+            length_mm: sample.length_mm,
+            lies_on_mm: (sample.curvature_per_mm > 0.0)
+                .then(|| 1.0 / sample.curvature_per_mm - half_thickness_mm),
+            easing: Easing::Path {
+                turn_rad: sample.turn_rad,
+                crown,
+                section_mm: system.section_mm,
+            },
+        })
+        .collect()
+}
+
+/// The half crown from the crest to the straight piece; every rest with the way in which it may ease.
+fn taut_profile(
+    yarn: &ClothYarn,
+    wave: &Wave,
+    passing: &Passing,
+    crossed_spacing_mm: f64,
+) -> Vec<Stretch> {
+    let crown = Crown {
+        drop_mm: 0.5 * yarn.wave_height_mm,
+        arm_mm: 0.5 * crossed_spacing_mm,
+        flanks: wave.flanks(),
+    };
+    let half_straight_mm = 0.5 * passing.straight_mm;
+    let slope_rad = passing.slope_rad;
     let back_mm = crown.arm_mm - half_straight_mm * slope_rad.cos();
-    let rolls = yarn.wave.crest().section.arcs().is_none();
+    let rolls = wave.crest().section.arcs().is_none();
     let mut start_rad = 0.0;
     let mut from_crest = true;
-    let mut stretches = Vec::with_capacity(yarn.passing.rests.len());
-    for rest in &yarn.passing.rests {
+    let mut stretches = Vec::with_capacity(passing.rests.len());
+    for rest in &passing.rests {
         let shoulder = Shoulder {
             back_mm,
             start_rad,
@@ -114,7 +156,7 @@ mod tests {
         );
         let spec = Spec::read(SourceText::new("t", text), &Weaves::builtin()).unwrap();
         let cloth = Cloth::build(&spec.weave, 1.0).unwrap();
-        let bends = crowns(&spec.weave, &cloth);
+        let bends = crowns(&spec.weave, &cloth, &cloth);
         (spec, cloth, bends)
     }
 

@@ -31,6 +31,18 @@ pub struct Jammed {
 impl Jammed {
     /// Finds what would fit instead of this weave.
     pub fn new(weave: &Weave, why: ClothError) -> Self {
+        if matches!(
+            why,
+            ClothError::NoPath { .. } | ClothError::NoBalance { .. }
+        ) {
+            // Not jammed: no sett would be an answer.
+            let fits = Fits {
+                both_per_mm: None,
+                warp_per_mm: None,
+                weft_per_mm: None,
+            };
+            return Self { why, fits };
+        }
         let (ends, picks) = (weave.warp.sett_per_mm, weave.weft.sett_per_mm);
         let fits = |warp: f64, weft: f64| {
             let mut changed = weave.clone();

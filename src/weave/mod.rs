@@ -1,9 +1,11 @@
-//! Woven cloth with the taut path model: how both systems share the height, the cloth's numbers, its bends.
+//! Woven cloth: how both systems share the height, the cloth's numbers and states, its bends.
 //!
 //! | file | what is in it |
 //! | --- | --- |
 //! | `wave` | one system's wave: crimp and slope for a given height, from the pattern and the taut path |
 //! | `share` | how warp and weft share the height: measured crimp, tensions, or equal heights |
+//! | `heights` | the heights of all crossings of stiff yarns: least energy over the repeat |
+//! | `states` | the cloth on the loom and at rest; yarn lengths kept between both |
 //! | `build` | from a weave to its cloth: measured thickness met, yarns that give way in dense cloth |
 //! | `cloth` | the cloth and its numbers: crimp, thickness, mass, cover, fibre volume |
 //! | `jam` | the largest sett that fits where the yarns asked for cannot interlace |
@@ -12,12 +14,15 @@
 mod build;
 mod cloth;
 mod crowns;
+mod heights;
 mod jam;
 mod share;
+mod states;
 mod wave;
 
-pub use cloth::{Cloth, ClothError, ClothYarn, areal_mass_g_m2, cover};
+pub use cloth::{Cloth, ClothError, ClothYarn, StiffSystem, YarnPath, areal_mass_g_m2, cover};
 pub use crowns::crowns;
 pub use jam::{Fits, Jammed};
 pub use share::{Closed, Closure, Share, share};
+pub use states::{RigidityBound, States, Varied};
 pub use wave::{Piece, Wave};

@@ -28,6 +28,10 @@ pub enum Closure {
     Tensions(f64, f64),
     /// Nothing known: equal wave heights.
     EqualHeights,
+    /// Stiff yarns: least energy at the tensions of the state.
+    LeastEnergy,
+    /// Stiff yarns in the other state: least energy, lengths kept.
+    KeptLengths,
 }
 
 /// How the height came to be shared.
@@ -105,7 +109,9 @@ pub fn share(warp: &Wave, weft: &Wave, whole_mm: f64, by: Closure) -> Option<Sha
             let inside = balance(low) <= 0.0 && balance(high) >= 0.0;
             (root, inside)
         }
-        Closure::EqualHeights => (0.5 * whole_mm, true),
+        Closure::EqualHeights | Closure::LeastEnergy | Closure::KeptLengths => {
+            (0.5 * whole_mm, true)
+        }
     };
     // A wave lower than the accuracy of its height is none.
     let warp_mm = asked.clamp(low, high);
