@@ -220,6 +220,17 @@ impl Grown {
         }
     }
 
+    /// The outline's largest curvature, 1/mm.
+    pub(super) fn sharpest(&self) -> f64 {
+        match &self.form {
+            Form::Parts(parts) => parts
+                .iter()
+                .map(|part| 1.0 / part.radius)
+                .fold(0.0, f64::max),
+            Form::Ellipse { a, b, off } => 1.0 / (b * b / a + off),
+        }
+    }
+
     /// Whether the outline's curvature changes along it without jumps.
     pub(super) fn is_ellipse(&self) -> bool {
         matches!(self.form, Form::Ellipse { .. })

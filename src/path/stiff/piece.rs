@@ -102,6 +102,8 @@ enum Form {
         curvature: f64,
         rate: f64,
         by: [By; 3],
+        /// Direction and place of the middle, seen from the first end.
+        middle: [f64; 3],
     },
     /// Direction of the straight piece between both end layers.
     Layers { beta: f64 },
@@ -237,6 +239,7 @@ impl Piece {
                 curvature,
                 rate,
                 by,
+                ..
             } => {
                 let moved = |value: f64, by: &By| {
                     value
@@ -363,21 +366,20 @@ impl Piece {
         let at = |i: usize| between.0 + (between.1 - between.0) * i as f64 / count as f64;
         match self.form {
             Form::Shot {
-                curvature, rate, ..
+                curvature,
+                rate,
+                middle,
+                ..
             } => {
                 let ratio = stiffness.ratio;
                 let half = 0.5 * self.length;
-                let left = Run::along(curvature, -rate, ratio, half);
-                let middle = from.angle + left.at[ANGLE];
-                let (sine, cosine) = middle.sin_cos();
-                let (lx, lz) = (-left.at[ALONG], left.at[ACROSS]);
                 // Stations are walked from the middle outwards: towards the ends the walk would drift.
                 let mut state = [
                     curvature,
                     rate,
-                    middle,
-                    from.x - (cosine * lx - sine * lz),
-                    from.z - (sine * lx + cosine * lz),
+                    middle[0],
+                    from.x + middle[1],
+                    from.z + middle[2],
                 ];
                 let mut out = vec![Place::default(); count + 1];
                 let first_right = (0..=count).find(|i| at(*i) >= half).unwrap_or(count + 1);
@@ -629,11 +631,25 @@ impl Shot {
             ],
             force_x,
         );
+        // The middle's place, with the last step counted too.
+        let (ls, lc) = left.at[ANGLE].sin_cos();
+        let stepped_to = |which: usize, rate: f64| {
+            left.at[which] + left.by[which][0] * last[0] - left.by[which][1] * last[1]
+                + 0.5 * rate * last[2]
+        };
+        let turned_middle = from.angle + stepped_to(ANGLE, left.at[CURVATURE]);
+        let (middle_sine, middle_cosine) = turned_middle.sin_cos();
+        let (lx, lz) = (-stepped_to(ALONG, lc), stepped_to(ACROSS, ls));
         Piece {
             form: Form::Shot {
                 curvature: self.curvature + last[0],
                 rate: self.rate + last[1],
                 by: unknown_by,
+                middle: [
+                    turned_middle,
+                    -(middle_cosine * lx - middle_sine * lz),
+                    -(middle_sine * lx + middle_cosine * lz),
+                ],
             },
             inputs: inputs(from, to),
             length: self.length + last[2],

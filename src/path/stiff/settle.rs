@@ -601,7 +601,7 @@ fn touch(chain: &mut Chain, course: &Course<'_>, stiffness: &Stiffness, deep: f6
             // Between two stations the way may run deeper, by no more than both curvatures make of their distance:
             // looked at closer and closer until that cannot be.
             let mut apart = chain.pieces[index].length / steps as f64;
-            let bends = 2.0 * places[at].curvature.abs() + 1.0 / (0.05 * grown.reach).max(apart);
+            let bends = 0.6 * (places[at].curvature.abs() + grown.sharpest());
             let Some((mut least, ..)) = deepest else {
                 continue;
             };
