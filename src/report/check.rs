@@ -1,6 +1,6 @@
 //! The report of `check`: one type, whose fields are the JSON contract and from which every format is printed.
 //!
-//! Keys may be added, never renamed; a value that does not exist is an absent key. Numbers are kept with nine
+//! Keys may be added, never renamed; a value that does not exist is an absent key. Numbers are kept with seven
 //! significant digits.
 
 use super::cautions::cautions;

@@ -68,7 +68,7 @@ pub fn jammed(spec: &Spec, jammed: &Jammed) -> Problem {
     };
     if matches!(
         jammed.why,
-        ClothError::NoPath { .. } | ClothError::NoBalance { .. }
+        ClothError::NoPath { .. } | ClothError::NoBalance { .. } | ClothError::NoOtherState { .. }
     ) {
         return Problem::at(weave.span.clone(), message, "not solved")
             .help("this is no verdict: the yarns may well be woven")

@@ -168,13 +168,14 @@ impl Grid {
         };
         match run(&spec, 1.0) {
             Ok(outcome) => Ok(Told::Woven(tell(&spec, &outcome))),
+            Err(ClothError::Jammed | ClothError::Lay { .. } | ClothError::Thickness { .. }) => {
+                Ok(Told::Jammed)
+            }
             Err(
-                ClothError::Jammed
-                | ClothError::Lay { .. }
-                | ClothError::Thickness { .. }
+                ClothError::NoPath { .. }
+                | ClothError::NoBalance { .. }
                 | ClothError::NoOtherState { .. },
-            ) => Ok(Told::Jammed),
-            Err(ClothError::NoPath { .. } | ClothError::NoBalance { .. }) => Ok(Told::Unsolved),
+            ) => Ok(Told::Unsolved),
         }
     }
 }

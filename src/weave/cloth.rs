@@ -156,8 +156,8 @@ pub enum ClothError {
         /// The pick, from 1.
         pick: usize,
     },
-    /// The yarns do not keep their lengths in the other state of the cloth.
-    #[error("the yarns fit the cloth {state} but not, with the same lengths, the cloth {other}")]
+    /// No other state was found in which the yarns have the same lengths.
+    #[error("the cloth {state} is found, but no cloth {other} whose yarns have the same lengths")]
     NoOtherState {
         /// The state that was found.
         state: &'static str,

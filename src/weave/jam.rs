@@ -33,7 +33,9 @@ impl Jammed {
     pub fn new(weave: &Weave, why: ClothError) -> Self {
         if matches!(
             why,
-            ClothError::NoPath { .. } | ClothError::NoBalance { .. }
+            ClothError::NoPath { .. }
+                | ClothError::NoBalance { .. }
+                | ClothError::NoOtherState { .. }
         ) {
             // Not jammed: no sett would be an answer.
             let fits = Fits {

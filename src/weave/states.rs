@@ -451,6 +451,7 @@ impl<'a> Pulled<'a> {
         let mut missed = miss(spacings, &balanced);
         // Inverse of the change of the miss, nearly one: crimp changes little with the spacing.
         let mut inverse = [[1.0, 0.0], [0.0, 1.0]];
+        let mut measured = false;
         for _ in 0..40 {
             if missed.0.abs() <= 1e-9 * lengths.0 && missed.1.abs() <= 1e-9 * lengths.1 {
                 let jam_limited = balanced.jam_limited;
@@ -469,9 +470,34 @@ impl<'a> Pulled<'a> {
                 -(inverse[0][0] * missed.0 + inverse[0][1] * missed.1),
                 -(inverse[1][0] * missed.0 + inverse[1][1] * missed.1),
             );
-            spacings = (spacings.0 + step.0, spacings.1 + step.1);
-            balanced = self.at(spacings, 1.0, Some(&balanced))?;
-            let next = miss(spacings, &balanced);
+            // Half of the way where the cloth jams or the miss grows; in dense cloth crimp falls faster than the spacing
+            // rises, and the change must be measured first.
+            let size = |missed: (f64, f64)| (missed.0 / lengths.0).hypot(missed.1 / lengths.1);
+            let mut found = None;
+            for halving in 0..6 {
+                let share = 0.5_f64.powi(halving);
+                let tried = (spacings.0 + share * step.0, spacings.1 + share * step.1);
+                if let Ok(there) = self.at(tried, 1.0, Some(&balanced)) {
+                    let next = miss(tried, &there);
+                    if size(next) < size(missed) {
+                        found = Some((tried, there, next, share));
+                        break;
+                    }
+                }
+                if !measured {
+                    break;
+                }
+            }
+            let Some((tried, there, next, share)) = found else {
+                if measured {
+                    break;
+                }
+                measured = true;
+                inverse = self.measured_inverse(spacings, missed, &balanced, &miss)?;
+                continue;
+            };
+            let step = (share * step.0, share * step.1);
+            (spacings, balanced) = (tried, there);
             let change = (next.0 - missed.0, next.1 - missed.1);
             missed = next;
             // Broyden's change of the inverse.
@@ -493,6 +519,32 @@ impl<'a> Pulled<'a> {
             }
         }
         Err(ClothError::Jammed)
+    }
+
+    /// The inverse of how the missed lengths change with both spacings, by differences.
+    fn measured_inverse(
+        &self,
+        spacings: Spacings,
+        missed: (f64, f64),
+        balanced: &Balanced,
+        miss: &impl Fn(Spacings, &Balanced) -> (f64, f64),
+    ) -> Result<[[f64; 2]; 2], ClothError> {
+        let part = 1e-4;
+        let by = |moved: Spacings, step: f64| -> Result<(f64, f64), ClothError> {
+            let next = miss(moved, &self.at(moved, 1.0, Some(balanced))?);
+            Ok(((next.0 - missed.0) / step, (next.1 - missed.1) / step))
+        };
+        let (ends, picks) = (part * spacings.0, part * spacings.1);
+        let a = by((spacings.0 + ends, spacings.1), ends)?;
+        let b = by((spacings.0, spacings.1 + picks), picks)?;
+        let determinant = a.0 * b.1 - b.0 * a.1;
+        if determinant == 0.0 || !determinant.is_finite() {
+            return Err(ClothError::Jammed);
+        }
+        Ok([
+            [b.1 / determinant, -b.0 / determinant],
+            [-a.1 / determinant, a.0 / determinant],
+        ])
     }
 }
 
