@@ -14,24 +14,36 @@ use crate::fibre::Mechanism;
 use crate::path::{Hardening, edge_peak_per_mm};
 use crate::yarn::{Laid, Yarn};
 
-/// Curvature at which a filament (with binding: the yarn) gets round under the yarn's pull, 1/mm; `None` where it
-/// is held to what it lies on.
+/// How a filament (with binding: the yarn) gets round under the yarn's pull; curvatures in 1/mm.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub(super) enum Free {
+    /// It is held to what it lies on.
+    Held,
+    /// It is bent so much and no more, where what it lies on would bend it more.
+    Eased(f64),
+    /// Past yield its bend gathers: it is bent so much, though an elastic one would be bent less.
+    Gathered(f64),
+}
+
+/// How a filament gets round; `path_per_mm` is the curvature of the yarn's own path there.
 pub(super) fn free_curvature_per_mm(
     easing: Easing,
     path_per_mm: f64,
     pull_n: f64,
     yarn: &Yarn,
     laid: &Laid,
-) -> Option<f64> {
+) -> Free {
     let ratio = yarn.pull_over_rigidity_per_mm2(pull_n, laid);
     let elastic = match easing {
-        Easing::Held => return None,
+        Easing::Held => return Free::Held,
         // Without pull nothing says how far the arms reach: it is taken to lie on.
-        Easing::LongArms { .. } if ratio <= 0.0 => return None,
+        Easing::LongArms { .. } if ratio <= 0.0 => return Free::Held,
         Easing::LongArms { turn_rad } => edge_peak_per_mm(ratio, turn_rad),
         Easing::Crown(crown) => crown.peak_per_mm(ratio),
         Easing::Shoulder(shoulder) => shoulder.peak_per_mm(ratio),
-        // The path is that of the yarn under its pull: a filament is bent no less, and alone at most as over an edge.
+        // The path is that of the yarn under its pull. A single filament is the yarn; one of many is bent no less, and
+        // alone at most as over an edge.
+        Easing::Path { .. } if yarn.is_monofilament() => path_per_mm,
         Easing::Path { turn_rad, .. } => path_per_mm.max(edge_peak_per_mm(ratio, turn_rad)),
         Easing::Rounded(crown, shoulder) => {
             crown.peak_per_mm(ratio).max(shoulder.peak_per_mm(ratio))
@@ -74,7 +86,11 @@ pub(super) fn free_curvature_per_mm(
                     // The bend gathers where the wire yields, up to the section that it lies on.
                     let lying = section_mm.map_or(0.0, |radius| 1.0 / (radius + 0.5 * diameter));
                     let gathered = crown.hardened_peak_per_mm(pull_on_one, &wire).min(lying);
-                    Some(path_per_mm.max(gathered))
+                    let gathered = path_per_mm.max(gathered);
+                    if yarn.is_monofilament() {
+                        return Free::Gathered(gathered);
+                    }
+                    Some(gathered)
                 }
                 Easing::Crown(crown) => Some(crown.hardened_peak_per_mm(pull_on_one, &wire)),
                 _ => None,
@@ -82,4 +98,5 @@ pub(super) fn free_curvature_per_mm(
         }
     };
     free.filter(|curvature| curvature.is_finite())
+        .map_or(Free::Held, Free::Eased)
 }

@@ -18,8 +18,8 @@
 //! stresses are fractions linear in y, so their largest lies at one of both ends, and both are judged. Left out: pressure of the upper filaments on the lower, migration, and in flat
 //! twisted yarns the helix's change over the width.
 
-use super::easing::free_curvature_per_mm;
-use crate::bend::{Bend, Easing, Stretch};
+use super::easing::{Free, free_curvature_per_mm};
+use crate::bend::{Bend, Stretch};
 use crate::path::{bent_helix_peak_per_mm, helix_curvature_per_mm};
 use crate::yarn::{Laid, Yarn};
 
@@ -109,19 +109,19 @@ fn on_stretch(
             }
         })
     };
-    let free_per_mm = free_curvature_per_mm(
+    let free = free_curvature_per_mm(
         stretch.easing,
         lying(0.5 * thickness),
         bend.pull_n,
         yarn,
         laid,
     );
-    // A wire past yield may be bent more than the elastic path.
-    let follows = !matches!(stretch.easing, Easing::Path { .. });
-    let lying = |e: f64| match free_per_mm {
-        Some(free) if !follows && yarn.is_monofilament() => lying(e).max(free),
-        _ => lying(e),
+    let (free_per_mm, least_per_mm) = match free {
+        Free::Held => (None, 0.0),
+        Free::Eased(free) => (Some(free), 0.0),
+        Free::Gathered(free) => (Some(free), free),
     };
+    let lying = |e: f64| lying(e).max(least_per_mm);
     let eased = |y: f64| {
         let free = free_per_mm.unwrap_or(f64::INFINITY);
         // A bonded yarn that eases bends its inner filaments more than its centreline, to a point at most.

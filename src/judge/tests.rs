@@ -236,6 +236,56 @@ fn crowns_ease_and_corners_add() {
     assert!((judged(&crown, wire()).filament.curvature_per_mm - alone - 0.25).abs() < 1e-12);
 }
 
+/// A stretch of a path of least energy, R = 2 mm on the centreline of a yarn 0.2 mm thick.
+fn on_path(pull_n: f64) -> Bend {
+    let mut bend = bend(2.0 - 0.1, pull_n);
+    bend.profile[0].easing = Easing::Path {
+        turn_rad: 1.0,
+        crown: Crown {
+            drop_mm: 0.05,
+            arm_mm: 0.3,
+            flanks: Flanks::Both,
+        },
+        section_mm: Some(0.1),
+    };
+    bend
+}
+
+/// On its own path a free filament of a yarn is bent k/(1 + k y) inside, at most as over an edge, never less than the yarn;
+/// a single filament is the yarn and bent as its path is.
+#[test]
+fn on_a_path_a_filament_is_bent_as_the_yarn_or_by_itself() {
+    let at = |pull: f64| judged(&on_path(pull), yarn("e-glass", 1000, 9.0)).filament;
+    // No pull: nothing but the yarn's own bend.
+    assert!((at(0.0).curvature_per_mm - 0.5).abs() < 1e-12);
+    // Much pull: inside, y = -0.0955: 0.5/(1 - 0.5 x 0.0955).
+    assert!((at(20.0).curvature_per_mm - 0.5 / (1.0 - 0.5 * 0.0955)).abs() < 1e-9);
+    // Between, the edge law: 2 sqrt(T/B) sin(1/4), lying between both.
+    let glass = yarn("e-glass", 1000, 9.0);
+    let pull = glass.free_rigidity_n_mm2() * (0.51 / 2.0 / 0.25_f64.sin()).powi(2);
+    assert!((at(pull).curvature_per_mm - 0.51).abs() < 1e-9);
+    // A brittle filament of 0.2 mm, whatever its pull.
+    for pull in [0.0, 10.0] {
+        let mut bend = on_path(pull);
+        bend.profile[0].lies_on_mm = Some(2.0 - 0.07);
+        let single = judged(&bend, yarn("sic-cvd-mono", 1, 140.0));
+        assert!((single.filament.curvature_per_mm - 0.5).abs() < 1e-12);
+    }
+}
+
+/// A wire that yields gathers its bend up to the wire it lies on: 1/(0.1 + 0.05) with the crown's 0.05 mm over 0.3 mm.
+#[test]
+fn past_yield_a_wire_is_bent_more_than_its_elastic_path() {
+    let wire = || yarn("stainless-annealed", 1, 100.0);
+    let mut bend = on_path(0.5);
+    bend.profile[0].lies_on_mm = Some(1.0 - 0.05);
+    let k = judged(&bend, wire()).filament.curvature_per_mm;
+    assert!(k > 1.0 && k <= 1.0 / 0.15 + 1e-12, "{k}");
+    bend.profile[0].lies_on_mm = Some(1e4);
+    let elastic = judged(&bend, wire()).filament.curvature_per_mm;
+    assert!(elastic < 1.01e-4, "{elastic}");
+}
+
 #[test]
 fn twist_winds_the_surface_filament() {
     let mut twisted = yarn("e-glass", 1000, 9.0);

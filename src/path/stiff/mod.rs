@@ -17,7 +17,9 @@
 //! | `grown` | the crossed outline, grown by half of the yarn |
 //! | `chain` | contacts and pieces in balance, by Newton |
 //! | `cyclic` | linear equations in a ring |
-//! | `settle` | which contacts there are: begun from the taut thread, mended until every check passes |
+//! | `mend` | which contacts there are: mended until every check passes |
+//! | `touch` | where a free piece runs into a section |
+//! | `settle` | how a path is begun, from the taut thread, or followed |
 //! | `yarn` | the yarn and its path as the rooms above see them |
 //!
 //! Source: Love, the elastica; the structure of contacts by the calculus of variations: curvature is
@@ -29,8 +31,10 @@ mod chain;
 mod cyclic;
 mod elastica;
 mod grown;
+mod mend;
 mod piece;
 mod settle;
+mod touch;
 mod yarn;
 
 pub use settle::{NoPath, Way};

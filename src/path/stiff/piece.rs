@@ -59,6 +59,11 @@ impl Stiffness {
             long: (1e3 / accuracy).ln().clamp(8.0, 30.0),
         }
     }
+
+    /// Whether an arc of this curvature, 1/mm, presses on what it lies on.
+    pub(super) fn presses(&self, curvature: f64) -> bool {
+        self.pull >= 0.5 * self.rigidity * curvature * curvature
+    }
 }
 
 /// Where a piece ends: place, mm, and direction, rad.
@@ -333,9 +338,11 @@ impl Piece {
         }
         let ends = [0, 1].map(|end| self.bend[end].value / stiffness.root);
         let mut peak = ends[0].abs().max(ends[1].abs());
-        // Between the ends |k| has a maximum only where it rises from the first and falls to the second.
+        // |k| has a maximum between the ends where it rises from one and does not go on rising to the other.
         let rises = |end: usize| ends[end] * self.rate[end];
-        if rises(0) > 0.0 && rises(1) < 0.0 && stiffness.rigidity > 0.0 {
+        let turns = ends[0] * ends[1] < 0.0;
+        let inside = rises(0) > 0.0 && (turns || rises(1) < 0.0) || turns && rises(1) < 0.0;
+        if inside && stiffness.rigidity > 0.0 {
             // k'^2 = l k^2 - k^4/4 + C: at the maximum k^2 = 2 (l + sqrt(l^2 + C)), and l^2 + C is the force's square.
             let force = self.force[0].value.hypot(self.force[1].value) / stiffness.rigidity;
             peak = peak.max((2.0 * (stiffness.ratio + force)).sqrt());

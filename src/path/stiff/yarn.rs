@@ -3,8 +3,10 @@
 use super::chain::{Balance, Chain, Contact, Course};
 use super::cyclic::Ring;
 use super::grown::Grown;
-use super::piece::{End, Place, Stiffness};
-use super::settle::{Mender, NoPath, Taut, Way, gap, settle};
+use super::mend::Mender;
+use super::piece::{Place, Stiffness};
+use super::settle::{NoPath, Taut, Way, settle};
+use super::touch::gap;
 use crate::path::Crest;
 use crate::yarn::Outline;
 
@@ -273,7 +275,7 @@ impl StiffYarn {
             if !wanted || chain.contacts.iter().any(|c| c.crossing == crossing) {
                 continue;
             }
-            if let Some((_, distance, mark)) = gap(&path.chain, &course, &self.stiffness, crossing)
+            if let Some((distance, mark)) = gap(&path.chain, &course, &self.stiffness, crossing)
                 && distance < near_mm
             {
                 chain.contacts.push(Contact::point(crossing, mark));
@@ -379,26 +381,6 @@ impl StiffYarn {
             peak = peak.max(path.chain.pieces[index].peak(&self.stiffness));
         }
         peak
-    }
-
-    /// Places along the path: x, z, mm, `parts` for each free piece and arc.
-    pub fn places_mm(&self, path: &StiffPath, parts: usize) -> Vec<(f64, f64)> {
-        let course = self.course(path);
-        let mut places = Vec::new();
-        for (index, contact) in path.chain.contacts.iter().enumerate() {
-            if contact.arc {
-                for part in 0..parts {
-                    let mark =
-                        contact.into + (contact.out - contact.into) * part as f64 / parts as f64;
-                    let End { x, z, .. } = course.end(contact.crossing, &self.grown.at(mark), 0);
-                    places.push((x, z));
-                }
-            }
-            let (from, to) = path.chain.ends(&course, index);
-            let piece = path.chain.pieces[index].places(&from, &to, &self.stiffness, parts);
-            places.extend(piece.iter().map(|place| (place.x, place.z)));
-        }
-        places
     }
 
     /// Steepest slope, rad, and highest and lowest place of the centreline, mm.
