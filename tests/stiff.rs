@@ -66,21 +66,30 @@ fn found(case: &Value, accuracy: f64) -> (f64, f64) {
     )
 }
 
+/// By how much a case's crimp and largest curvature are off at this accuracy, relative, without sign.
+fn errors(case: &Value, accuracy: f64) -> (f64, f64) {
+    let (crimp, peak) = found(case, accuracy);
+    (
+        (crimp / number(case, "crimp") - 1.0).abs(),
+        (peak / number(case, "kappa_max_per_mm") - 1.0).abs(),
+    )
+}
+
 /// One yarn over fixed sections: 67 cases by multiple shooting on the elastica's pieces, confirmed by finite elements
 /// (Python). Aim 0.1 %; met to 1e-7 in crimp and curvature, taut ones to 1e-6 (of curvature only where they lie on arcs).
 #[test]
 fn one_yarn_matches_every_independent_solution() {
     let list = cases("d_yarn.json");
     assert_eq!(list.len(), 67, "the number of cases never falls");
+    let mut worst = (0.0_f64, 0.0_f64);
     for case in &list {
         let id = case["id"].as_str().unwrap();
-        let (crimp, peak) = found(case, 1e-3);
-        let of = |key: &str| number(case, key);
-        let crimp_error = crimp / of("crimp") - 1.0;
-        let peak_error = peak / of("kappa_max_per_mm") - 1.0;
-        assert!(crimp_error.abs() < 1e-6, "{id} crimp {crimp_error:.1e}");
-        assert!(peak_error.abs() < 2e-4, "{id} curvature {peak_error:.1e}");
+        let (crimp, peak) = errors(case, 1e-3);
+        worst = (worst.0.max(crimp), worst.1.max(peak));
+        assert!(crimp < 1e-7, "{id} crimp {crimp:.1e}");
+        assert!(peak < 1e-7, "{id} curvature {peak:.1e}");
     }
+    println!("worst {worst:?}");
 }
 
 /// The accuracy asked for is met: against the independent solutions, at three accuracies.
@@ -89,9 +98,7 @@ fn the_accuracy_asked_for_is_met() {
     for accuracy in [1e-2, 1e-4, 1e-7] {
         for case in &cases("d_yarn.json") {
             let id = case["id"].as_str().unwrap();
-            let (crimp, peak) = found(case, accuracy);
-            let crimp_error = (crimp / number(case, "crimp") - 1.0).abs();
-            let peak_error = (peak / number(case, "kappa_max_per_mm") - 1.0).abs();
+            let (crimp_error, peak_error) = errors(case, accuracy);
             // The solutions themselves are good to 1e-9.
             let allowed = accuracy + 2e-9;
             assert!(

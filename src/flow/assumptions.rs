@@ -5,7 +5,7 @@ use crate::bend::Stage;
 use crate::fibre::FigureName;
 use crate::quantity::{plain, significant};
 use crate::spec::{DEFAULT_TENSION_N_TEX, Passage, PathModel, SettAt, Spec, System};
-use crate::weave::{Closure, Cloth, ClothYarn};
+use crate::weave::{Closure, Cloth, ClothYarn, SharedBy};
 use crate::yarn::{Basis, DEFAULT_PACKING, DEFAULT_WIDTH_SHARE, Followed, Yarn};
 
 /// Every default and simplification behind this outcome, in a stable order.
@@ -95,9 +95,9 @@ pub fn assumptions(spec: &Spec, outcome: &Outcome) -> Vec<String> {
 
 fn height_shared(cloth: &Cloth) -> String {
     let by = match cloth.closed.by {
-        Closure::WarpCrimp(_) => "measured warp crimp".to_owned(),
-        Closure::WeftCrimp(_) => "measured weft crimp".to_owned(),
-        Closure::BothCrimps(..) => {
+        SharedBy::Closure(Closure::WarpCrimp(_)) => "measured warp crimp".to_owned(),
+        SharedBy::Closure(Closure::WeftCrimp(_)) => "measured weft crimp".to_owned(),
+        SharedBy::Closure(Closure::BothCrimps(..)) => {
             let percent = 100.0 * cloth.closed.mismatch.unwrap_or(0.0);
             let word = if percent < 0.0 { "less" } else { "more" };
             format!(
@@ -105,14 +105,16 @@ fn height_shared(cloth: &Cloth) -> String {
                 significant(percent.abs(), 2)
             )
         }
-        Closure::Tensions(..) => "balance of the contact forces at the given tensions".to_owned(),
-        Closure::EqualHeights => {
+        SharedBy::Closure(Closure::Tensions(..)) => {
+            "balance of the contact forces at the given tensions".to_owned()
+        }
+        SharedBy::Closure(Closure::EqualHeights) => {
             "equal wave heights, as neither crimp nor both tensions are given".to_owned()
         }
-        Closure::LeastEnergy => {
+        SharedBy::LeastEnergy => {
             "least energy of both: the contact forces of every crossing in balance".to_owned()
         }
-        Closure::KeptLengths => "least energy, the yarns as long as in the other state".to_owned(),
+        SharedBy::KeptLengths => "least energy, the yarns as long as in the other state".to_owned(),
     };
     let limited = if cloth.closed.jam_limited {
         "; that split does not exist at this sett, the nearest that does is taken (jam limited)"

@@ -9,7 +9,7 @@ use crate::flow::{Outcome, RigidityBound, Variation, assumptions, warnings};
 use crate::judge::{Finding, Limit, State};
 use crate::quantity::rounded;
 use crate::spec::{PathModel, Spec};
-use crate::weave::{Closure, Cloth, ClothYarn};
+use crate::weave::{Closure, Cloth, ClothYarn, SharedBy};
 use serde::Serialize;
 use sha2::{Digest, Sha256};
 use std::fmt::Write as _;
@@ -330,13 +330,13 @@ impl ClothReport {
             picks: weave.woven.pattern.picks(),
             jam_limited: cloth.closed.jam_limited,
             height_shared_by: match cloth.closed.by {
-                Closure::WarpCrimp(_) => "warp crimp",
-                Closure::WeftCrimp(_) => "weft crimp",
-                Closure::BothCrimps(..) => "both crimps",
-                Closure::Tensions(..) => "tensions",
-                Closure::EqualHeights => "equal heights",
-                Closure::LeastEnergy => "least energy",
-                Closure::KeptLengths => "kept lengths",
+                SharedBy::Closure(Closure::WarpCrimp(_)) => "warp crimp",
+                SharedBy::Closure(Closure::WeftCrimp(_)) => "weft crimp",
+                SharedBy::Closure(Closure::BothCrimps(..)) => "both crimps",
+                SharedBy::Closure(Closure::Tensions(..)) => "tensions",
+                SharedBy::Closure(Closure::EqualHeights) => "equal heights",
+                SharedBy::LeastEnergy => "least energy",
+                SharedBy::KeptLengths => "kept lengths",
             },
             crimp_mismatch: cloth.closed.mismatch.map(rounded),
             thickness_factor: cloth.thickness_factor.map(rounded),

@@ -149,15 +149,12 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
         writeln!(out, "\n## If the yarns were as stiff as\n")?;
         head(out, &["", "state", "reserve"])?;
         for variation in &report.rigidity {
-            let reserve = variation
-                .reserve
-                .map_or_else(|| "-".to_owned(), |r| significant(r, 3));
             row(
                 out,
                 &[
                     stiff_as(variation.rigidity).to_owned(),
                     variation.state.to_owned(),
-                    reserve,
+                    reserve_cell(variation.reserve),
                 ],
             )?;
         }
@@ -169,15 +166,12 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
         )?;
         head(out, &["flatness x", "state", "reserve"])?;
         for variation in &report.sensitivity {
-            let reserve = variation
-                .reserve
-                .map_or_else(|| "-".to_owned(), |r| significant(r, 3));
             row(
                 out,
                 &[
                     plain(variation.flatness_factor, 2),
                     variation.state.to_owned(),
-                    reserve,
+                    reserve_cell(variation.reserve),
                 ],
             )?;
         }
@@ -191,6 +185,11 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
         writeln!(out, "- {}", escaped(item))?;
     }
     Ok(())
+}
+
+/// A reserve, or a dash where there is none.
+fn reserve_cell(reserve: Option<f64>) -> String {
+    reserve.map_or_else(|| "-".to_owned(), |r| significant(r, 3))
 }
 
 #[cfg(test)]

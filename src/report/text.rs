@@ -345,7 +345,13 @@ fn bend_table(bends: &[BendRow]) -> String {
 pub(super) fn system_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[String; 3]> {
     let row =
         |name: &str, of: &dyn Fn(&SystemReport) -> String| [name.to_owned(), of(warp), of(weft)];
-    vec![
+    // Of stiff yarns only: rows without a value are left out.
+    let centinewtons = |name: &str, of: fn(&SystemReport) -> Option<f64>| {
+        row(name, &|s| {
+            of(s).map_or_else(String::new, |n| significant(100.0 * n, 3))
+        })
+    };
+    let mut rows = vec![
         row("yarn", &|s| s.yarn.clone()),
         row("tex", &|s| significant(s.linear_density_tex, 4)),
         row("filaments x um", &|s| {
@@ -368,6 +374,7 @@ pub(super) fn system_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[Stri
         row("rigidity N mm2", &|s| {
             significant(s.bending_rigidity_n_mm2, 2)
         }),
+        centinewtons("mean pull cN", |s| s.tension_n),
         row("crimp %", &|s| significant(100.0 * s.crimp, 3)),
         row("wave height mm", &|s| significant(s.wave_height_mm, 3)),
         row("slope deg", &|s| significant(s.wrap_angle_deg, 3)),
@@ -376,35 +383,31 @@ pub(super) fn system_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[Stri
                 .map_or_else(|| "straight".to_owned(), |r| significant(r, 3))
         }),
         row("contact mm", &|s| significant(s.contact_mm, 3)),
+        centinewtons("largest contact force cN", |s| s.contact_force_n),
         row("longest float face, back", &|s| {
             format!("{}, {}", s.float_face, s.float_back)
         }),
-    ]
+    ];
+    rows.retain(|[_, warp, weft]| !(warp.is_empty() && weft.is_empty()));
+    rows
 }
 
 /// Rows that differ on the loom: name, warp, weft; shared by text and Markdown.
 pub(super) fn loom_rows(warp: &SystemReport, weft: &SystemReport) -> Vec<[String; 3]> {
-    let row =
-        |name: &str, of: &dyn Fn(&SystemReport) -> String| [name.to_owned(), of(warp), of(weft)];
-    vec![
-        row("mean pull cN", &|s| {
-            s.tension_n
-                .map_or_else(String::new, |n| significant(100.0 * n, 3))
-        }),
-        row("threads per cm", &|s| significant(10.0 / s.spacing_mm, 4)),
-        row("crimp %", &|s| significant(100.0 * s.crimp, 3)),
-        row("wave height mm", &|s| significant(s.wave_height_mm, 3)),
-        row("slope deg", &|s| significant(s.wrap_angle_deg, 3)),
-        row("smallest radius mm", &|s| {
-            s.min_radius_mm
-                .map_or_else(|| "straight".to_owned(), |r| significant(r, 3))
-        }),
-        row("contact mm", &|s| significant(s.contact_mm, 3)),
-        row("largest contact force cN", &|s| {
-            s.contact_force_n
-                .map_or_else(String::new, |n| significant(100.0 * n, 3))
-        }),
-    ]
+    const DIFFER: [&str; 8] = [
+        "mean pull cN",
+        "threads per cm",
+        "crimp %",
+        "wave height mm",
+        "slope deg",
+        "smallest radius mm",
+        "contact mm",
+        "largest contact force cN",
+    ];
+    system_rows(warp, weft)
+        .into_iter()
+        .filter(|[name, ..]| DIFFER.contains(&name.as_str()))
+        .collect()
 }
 
 /// The cloth's own numbers that differ on the loom.

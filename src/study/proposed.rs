@@ -11,7 +11,6 @@ use crate::flow::run;
 use crate::pattern::Weaves;
 use crate::quantity::significant;
 use crate::spec::{Document, KeyPath, NewValue};
-use crate::weave::Closure;
 
 /// Keys and their new values as the spec would have them.
 pub type Set = Vec<(String, String)>;
@@ -101,12 +100,10 @@ pub fn then(
         if outcome.cloth.closed.jam_limited {
             said.push_str("; jam limited");
         }
-        let crimp = !matches!(
-            outcome.cloth.closed.by,
-            Closure::Tensions(..) | Closure::EqualHeights
-        );
+        let weave = &spec.weave;
+        let crimp = weave.warp.crimp.is_some() || weave.weft.crimp.is_some();
         // Measured on the cloth as it was.
-        if crimp || spec.weave.thickness_mm.is_some() {
+        if crimp || weave.thickness_mm.is_some() {
             said.push_str("; measure the changed cloth again");
         }
     }

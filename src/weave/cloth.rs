@@ -166,7 +166,7 @@ pub enum ClothError {
     },
     /// No scaling of the yarns meets the measured thickness.
     #[error(
-        "no thickness of these yarns makes a cloth {asked_mm} mm thick: they give {least_mm:.4} to {most_mm:.4} mm"
+        "no thickness of these yarns was found that makes a cloth {asked_mm} mm thick: those tried give {least_mm:.4} to {most_mm:.4} mm"
     )]
     Thickness {
         /// Thickness asked for, mm.
@@ -315,6 +315,7 @@ fn closure(weave: &Weave) -> Closure {
 
 #[cfg(test)]
 mod tests {
+    use super::super::share::SharedBy;
     use super::*;
     use crate::pattern::Weaves;
     use crate::span::SourceText;
@@ -405,7 +406,7 @@ mod tests {
         let both = cloth(", crimp = \"40 %\"", ", crimp = \"40 %\"");
         assert!(both.closed.jam_limited, "no such crimps exist");
         let slack = cloth(", tension = \"0 cN\"", ", tension = \"0 cN\"");
-        assert_eq!(slack.closed.by, Closure::EqualHeights);
+        assert_eq!(slack.closed.by, SharedBy::Closure(Closure::EqualHeights));
     }
 
     /// By hand from the cloth's own crimp: 1.2 ends per mm of 68 tex, 1.0 picks, 2.54 g/cm3.

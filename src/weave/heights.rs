@@ -18,10 +18,12 @@
 //! not asked.
 //!
 //! Where the balance asked for lies beyond what the yarns can pass, the cloth is jam limited: a wall
-//! that rises as -m ln(room) keeps the yarns passing, m falling to 1e-4 of the largest push.
+//! that rises as -m ln(room) keeps the yarns passing, m falling to 1e-4 of the largest push (or to where the paths are lost,
+//! at 1e-2 at most): so near the jam, relative to the yarns' thickness, do they stand.
 //!
 //! Left out: yarns that tilt or flatten at a crossing; a lifted crest's section stands where it would touch.
 
+use super::conjugate::conjugate;
 use crate::path::{NoPath, StiffPath, StiffYarn};
 use crate::pattern::{Alike, Pattern};
 use rayon::prelude::*;
@@ -29,6 +31,10 @@ use rayon::prelude::*;
 /// Newton steps, and the miss of a balance over the largest push.
 const STEPS: usize = 80;
 const BALANCED: f64 = 5e-9;
+/// What is taken for balance where no step brings it further: noise of yarns that run close past each other.
+const NOISE: f64 = 1e-6;
+/// Cuts of one step.
+const CUTS: usize = 14;
 /// Yarns from which a repeat is worth more than one core.
 const MANY: usize = 16;
 
@@ -74,11 +80,31 @@ pub(super) enum NoBalance {
     Heights(usize),
 }
 
+/// The course of one yarn through the repeat.
 struct Course {
+    /// Which end or pick.
     yarn: usize,
+    /// Whether it lies over, at every crossing, and of which kind that is.
     over: Vec<bool>,
     kinds: Vec<usize>,
 }
+
+impl Course {
+    fn new(
+        yarn: usize,
+        over: impl Iterator<Item = bool>,
+        kinds: impl Iterator<Item = usize>,
+    ) -> Self {
+        Self {
+            yarn,
+            over: over.collect(),
+            kinds: kinds.collect(),
+        }
+    }
+}
+
+/// Paths of warp and weft to start from.
+type Near<'a> = (&'a [StiffPath], &'a [StiffPath]);
 
 /// A pair of neighbouring crossings between which a yarn changes sides: their rise must keep above the least.
 struct Wall {
@@ -90,14 +116,33 @@ struct Wall {
     least_mm: f64,
 }
 
+/// Heights, the paths over them, and how far they are from balance.
 struct State {
     heights: Vec<f64>,
     warp: Vec<StiffPath>,
     weft: Vec<StiffPath>,
+    /// What the pushes at every kind of crossing miss balance by, N.
     miss: Vec<f64>,
+    /// The largest push, N.
     most: f64,
 }
 
+impl State {
+    fn near(&self) -> Near<'_> {
+        (&self.warp, &self.weft)
+    }
+
+    fn balanced(self, jam_limited: bool) -> Balanced {
+        Balanced {
+            heights: self.heights,
+            warp: self.warp,
+            weft: self.weft,
+            jam_limited,
+        }
+    }
+}
+
+/// Finds the heights of a repeat.
 pub(super) struct Solver<'a> {
     repeat: &'a Repeat<'a>,
     warp: Vec<Course>,
@@ -129,23 +174,17 @@ impl<'a> Solver<'a> {
         let warp: Vec<Course> = alike
             .ends
             .iter()
-            .map(|end| Course {
-                yarn: *end,
-                over: pattern.warp_sequence(*end).collect(),
-                kinds: (0..pattern.picks())
-                    .map(|pick| alike.kind(*end, pick))
-                    .collect(),
+            .map(|end| {
+                let kinds = (0..pattern.picks()).map(|pick| alike.kind(*end, pick));
+                Course::new(*end, pattern.warp_sequence(*end), kinds)
             })
             .collect();
         let weft: Vec<Course> = alike
             .picks
             .iter()
-            .map(|pick| Course {
-                yarn: *pick,
-                over: pattern.weft_sequence(*pick).collect(),
-                kinds: (0..pattern.ends())
-                    .map(|end| alike.kind(end, *pick))
-                    .collect(),
+            .map(|pick| {
+                let kinds = (0..pattern.ends()).map(|end| alike.kind(end, *pick));
+                Course::new(*pick, pattern.weft_sequence(*pick), kinds)
             })
             .collect();
         let mut up = vec![false; alike.kinds];
@@ -220,7 +259,7 @@ impl<'a> Solver<'a> {
     fn at(
         &self,
         heights: Vec<f64>,
-        like: Option<&State>,
+        like: Option<Near<'_>>,
         push: f64,
         patient: bool,
     ) -> Result<State, NoBalance> {
@@ -232,10 +271,7 @@ impl<'a> Solver<'a> {
                     .iter()
                     .map(|kind| heights[*kind] + if of_warp { 0.0 } else { self.apart(*kind) })
                     .collect();
-                let near = like.map(|state| {
-                    let paths = if of_warp { &state.warp } else { &state.weft };
-                    &paths[i]
-                });
+                let near = like.map(|(warp, weft)| if of_warp { &warp[i] } else { &weft[i] });
                 yarn.path(spacing, &course.over, &height, near, patient)
                     .map_err(|why| NoBalance::Path {
                         warp: of_warp,
@@ -286,25 +322,19 @@ impl<'a> Solver<'a> {
         start: &[f64],
         like: Option<&Balanced>,
     ) -> Result<Balanced, NoBalance> {
-        let like = like.map(|balanced| State {
-            heights: Vec::new(),
-            warp: balanced.warp.clone(),
-            weft: balanced.weft.clone(),
-            miss: Vec::new(),
-            most: 0.0,
-        });
-        let begun = self.at(start.to_vec(), like.as_ref(), 0.0, true)?;
+        let like = like.map(|balanced| (balanced.warp.as_slice(), balanced.weft.as_slice()));
+        let begun = self.at(start.to_vec(), like, 0.0, true)?;
         let (state, settled) = self.descend(begun, 0.0)?;
         if settled {
-            return Ok(self.told(state, false));
+            return Ok(state.balanced(false));
         }
         // Against the jam: walls, lower and lower.
         let scale = self.repeat.warp.reach_mm() * state.most;
-        let mut state = self.at(start.to_vec(), Some(&state), 1e-2 * scale, true)?;
+        let mut state = self.at(start.to_vec(), Some(state.near()), 1e-2 * scale, true)?;
         for power in 2..=4 {
             let push = scale * 10f64.powi(-power);
             let next = self
-                .at(state.heights.clone(), Some(&state), push, true)
+                .at(state.heights.clone(), Some(state.near()), push, true)
                 .and_then(|begun| self.descend(begun, push));
             match next {
                 Ok((next, true)) => state = next,
@@ -314,16 +344,7 @@ impl<'a> Solver<'a> {
                 Err(why) => return Err(why),
             }
         }
-        Ok(self.told(state, true))
-    }
-
-    fn told(&self, state: State, jam_limited: bool) -> Balanced {
-        Balanced {
-            heights: state.heights,
-            warp: state.warp,
-            weft: state.weft,
-            jam_limited,
-        }
+        Ok(state.balanced(true))
     }
 
     /// Newton from a state; whether it came to rest, else it stands before the jam.
@@ -338,33 +359,30 @@ impl<'a> Solver<'a> {
                 return Ok((state, true));
             }
             let share_of = (size / state.most).clamp(1e-10, 1e-2);
-            let slope_of =
-                |step: &[f64]| -> f64 { step.iter().zip(&state.miss).map(|(s, m)| s * m).sum() };
+            // Slope of the energy along a step: it rises towards zero, and pushes know it better than energies.
+            let slope = |step: &[f64], state: &State| -> f64 {
+                step.iter().zip(&state.miss).map(|(s, m)| s * m).sum()
+            };
             let mut step = self.newton_step(&state, push, near_mm, share_of);
-            if slope_of(&step) >= 0.0 {
+            if slope(&step, &state) >= 0.0 {
                 // Sections taken as touched misled it.
                 step = self.newton_step(&state, push, 0.0, share_of);
             }
             let furthest = largest(&step);
             let mut share = (0.25 * reach / furthest).min(1.0);
-            // Slope of the energy along the step: it rises towards zero, and pushes know it better than energies.
-            let slope =
-                |state: &State| -> f64 { step.iter().zip(&state.miss).map(|(s, m)| s * m).sum() };
-            let begun = slope(&state);
+            let begun = slope(&step, &state);
             let mut next = None;
             last_jam = false;
-            let mut patience = 14;
-            while patience > 0 {
-                patience -= 1;
+            for _ in 0..CUTS {
                 let heights: Vec<f64> = state
                     .heights
                     .iter()
                     .zip(&step)
                     .map(|(height, step)| height + share * step)
                     .collect();
-                match self.at(heights, Some(&state), push, false) {
+                match self.at(heights, Some(state.near()), push, false) {
                     Ok(tried) => {
-                        let ended = slope(&tried);
+                        let ended = slope(&step, &tried);
                         let nearer = largest(&tried.miss) <= (1.0 - 0.2 * share) * size;
                         if nearer || begun < 0.0 && ended <= -0.5 * begun {
                             next = Some(tried);
@@ -399,7 +417,7 @@ impl<'a> Solver<'a> {
             match next {
                 Some(tried) => state = tried,
                 None if last_jam && push == 0.0 => return Ok((state, false)),
-                None if size <= 1e-6 * state.most => return Ok((state, true)),
+                None if size <= NOISE * state.most => return Ok((state, true)),
                 None => return Err(NoBalance::Heights(worst(&state.miss))),
             }
         }
@@ -481,45 +499,6 @@ fn worst(values: &[f64]) -> usize {
     (0..values.len())
         .max_by(|a, b| values[*a].abs().total_cmp(&values[*b].abs()))
         .unwrap_or(0)
-}
-
-/// Solves `apply(x) = -right` by conjugate gradients until the rest is below this share; stops where `apply` ceases
-/// to be positive, with what it has.
-fn conjugate(apply: impl Fn(&[f64]) -> Vec<f64>, right: &[f64], share: f64) -> Vec<f64> {
-    let n = right.len();
-    let dot = |a: &[f64], b: &[f64]| a.iter().zip(b).map(|(a, b)| a * b).sum::<f64>();
-    let mut x = vec![0.0; n];
-    // The whole cloth may be lifted at no cost: that is left out.
-    let mean = right.iter().sum::<f64>() / n as f64;
-    let mut rest: Vec<f64> = right.iter().map(|r| mean - r).collect();
-    let mut way = rest.clone();
-    let mut square = dot(&rest, &rest);
-    let enough = share * share * square;
-    for step in 0..(2 * n + 20).min(1500) {
-        if square <= enough || square == 0.0 {
-            break;
-        }
-        let pushed = apply(&way);
-        let curve = dot(&way, &pushed);
-        if curve <= 1e-14 * dot(&way, &way).sqrt() * dot(&pushed, &pushed).sqrt() {
-            if step == 0 {
-                x = way;
-            }
-            break;
-        }
-        let a = square / curve;
-        for i in 0..n {
-            x[i] += a * way[i];
-            rest[i] -= a * pushed[i];
-        }
-        let next = dot(&rest, &rest);
-        let b = next / square;
-        square = next;
-        for i in 0..n {
-            way[i] = rest[i] + b * way[i];
-        }
-    }
-    x
 }
 
 #[cfg(test)]

@@ -28,6 +28,13 @@ pub enum Closure {
     Tensions(f64, f64),
     /// Nothing known: equal wave heights.
     EqualHeights,
+}
+
+/// What shared the height in the end.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum SharedBy {
+    /// What closes the height of taut yarns, or the measured crimp of stiff ones.
+    Closure(Closure),
     /// Stiff yarns: least energy at the tensions of the state.
     LeastEnergy,
     /// Stiff yarns in the other state: least energy, lengths kept.
@@ -38,7 +45,7 @@ pub enum Closure {
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Closed {
     /// By what.
-    pub by: Closure,
+    pub by: SharedBy,
     /// Whether the split asked for did not exist and the nearest was taken.
     pub jam_limited: bool,
     /// With both crimps measured: how much more (+) or less (-) height they ask for than the yarns have, as a
@@ -109,9 +116,7 @@ pub fn share(warp: &Wave, weft: &Wave, whole_mm: f64, by: Closure) -> Option<Sha
             let inside = balance(low) <= 0.0 && balance(high) >= 0.0;
             (root, inside)
         }
-        Closure::EqualHeights | Closure::LeastEnergy | Closure::KeptLengths => {
-            (0.5 * whole_mm, true)
-        }
+        Closure::EqualHeights => (0.5 * whole_mm, true),
     };
     // A wave lower than the accuracy of its height is none.
     let warp_mm = asked.clamp(low, high);
@@ -121,7 +126,7 @@ pub fn share(warp: &Wave, weft: &Wave, whole_mm: f64, by: Closure) -> Option<Sha
         warp_mm,
         weft_mm: whole_mm - warp_mm,
         closed: Closed {
-            by,
+            by: SharedBy::Closure(by),
             jam_limited: moved || !exists,
             mismatch,
         },

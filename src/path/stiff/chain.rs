@@ -12,7 +12,8 @@
 
 use super::cyclic::Ring;
 use super::grown::{Grown, Spot};
-use super::piece::{By, End, Felt, Piece, Stiffness};
+use super::piece::{By, End, Felt, Piece};
+use super::stiffness::Stiffness;
 
 /// What a yarn runs over and under.
 #[derive(Debug, Clone, Copy)]

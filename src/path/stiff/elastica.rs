@@ -6,8 +6,8 @@
 //! k'' = l k - k^3/2,      l = T/B                       k: curvature, ' along the yarn
 //! ```
 //!
-//! The run starts at the origin, level. Curvature and both of its variations are power series of order 18 in steps
-//! whose last terms are below 1e-11; the position is the integral of (cos psi, sin psi) by Gauss-Legendre with eight
+//! The run starts at the origin, level. Curvature and both of its variations are power series of order 8 to 18 in steps
+//! whose last terms are below 4e-11; the position is the integral of (cos psi, sin psi) by Gauss-Legendre with eight
 //! nodes in each step.
 //!
 //! Source: Love, A Treatise on the Mathematical Theory of Elasticity, the elastica (from memory for the article).
@@ -357,26 +357,27 @@ impl Run {
 mod tests {
     use super::*;
 
-    /// The loop of a pulled rod (independent solution, `tests/reference/e_loop.json`): from its apex, bent to 2 lambda, back to
-    /// the crossing at lambda s = 1.915008; length 1.423160, width 1.065680 over lambda; length over width 1.335448.
+    /// The loop of a pulled rod (independent solution, shooting; the loop test of fibres): from its apex, bent to 2 lambda,
+    /// back to where it crosses itself.
     #[test]
     fn the_tension_loop_closes_where_it_should() {
+        let text = include_str!("../../../tests/reference/e_loop.json");
+        let case = &serde_json::from_str::<serde_json::Value>(text).unwrap()[0];
+        let of = |key: &str| case[key].as_f64().unwrap();
         let lambda = 3.7;
         let to = |s: f64| Run::along(2.0 * lambda, 0.0, lambda * lambda, s / lambda).at;
-        let crossing = to(1.915_008_048_154_54);
+        let crossing = to(of("lam_s_crossing"));
         assert!(crossing[ALONG].abs() < 1e-11, "{crossing:?}");
         let length = crossing[ACROSS] * lambda;
-        assert!((length - 1.423_160_182_110_02).abs() < 1e-10, "{length}");
+        assert!((length / of("loop_length_times_lam") - 1.0).abs() < 1e-10);
         // Widest where it runs straight across its own axis.
-        let widest = crate::root::rising_root(
-            |s| to(s)[ANGLE] - std::f64::consts::FRAC_PI_2,
-            0.1,
-            1.9,
-            1e-13,
-        );
+        let upright = |s: f64| to(s)[ANGLE] - std::f64::consts::FRAC_PI_2;
+        let widest = crate::root::rising_root(upright, 0.1, 1.9, 1e-13);
         let width = 2.0 * to(widest)[ALONG] * lambda;
-        assert!((width - 1.065_679_950_707_1).abs() < 1e-10, "{width}");
-        assert!((length / width - 1.335_448_021_862_21).abs() < 1e-9);
+        assert!((width / of("loop_width_times_lam") - 1.0).abs() < 1e-10);
+        assert!((length / width / of("length_over_width") - 1.0).abs() < 1e-9);
+        // Strain at the apex lambda d over the width: 1.0657 d/width.
+        assert!((width / of("max_strain_times_width_over_d") - 1.0).abs() < 1e-10);
     }
 
     /// Variations by central differences, in a run of many steps.

@@ -18,7 +18,7 @@
 )]
 
 use super::chain::{Chain, Contact, Course, Stuck, side};
-use super::piece::Stiffness;
+use super::stiffness::Stiffness;
 use super::touch::touch;
 
 /// Repairs of one chain before it is given up.

@@ -9,7 +9,7 @@
 
 use super::chain::{Chain, Contact, Course};
 use super::mend::Mender;
-use super::piece::Stiffness;
+use super::stiffness::Stiffness;
 
 /// Steps that may be cut on the way before it is given up.
 const CUTS: usize = 24;

@@ -5,7 +5,8 @@
 //! be.
 
 use super::chain::{Chain, Contact, Course};
-use super::piece::{End, Piece, Place, Stiffness};
+use super::piece::{End, Piece, Place};
+use super::stiffness::Stiffness;
 
 /// Stations for each crossing that a piece spans.
 const STATIONS: usize = 6;

@@ -1,11 +1,12 @@
 //! A stiff yarn and its path: what the rooms above ask for.
 
-use super::chain::{Balance, Chain, Contact, Course};
-use super::cyclic::Ring;
+use super::chain::{Chain, Contact, Course};
 use super::grown::Grown;
 use super::mend::Mender;
-use super::piece::{Place, Stiffness};
+use super::response::Response;
+use super::sample::{Sample, samples};
 use super::settle::{NoPath, Taut, Way, settle};
+use super::stiffness::Stiffness;
 use super::touch::gap;
 use crate::path::Crest;
 use crate::yarn::Outline;
@@ -39,40 +40,6 @@ pub struct StiffPath {
     height: Vec<f64>,
     spacing: f64,
     way: Way,
-}
-
-/// How the pushes of a path change with the heights of what it crosses.
-#[derive(Debug, Clone)]
-pub struct Response {
-    ring: Ring,
-    balance: Balance,
-    /// For each piece: crossing before and behind, change of its ends' curvature with how far apart they are in
-    /// height, and of its upward force with its inputs.
-    pieces: Vec<Link>,
-    crossings: usize,
-    unit_n: f64,
-}
-
-#[derive(Debug, Clone, Copy)]
-struct Link {
-    from: usize,
-    to: usize,
-    from_row: usize,
-    to_row: usize,
-    bend_by_rise: [f64; 2],
-    force_by: [f64; 4],
-    from_arc: bool,
-}
-
-/// A run of the path of one curvature sign, told by its sharpest place.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Sample {
-    /// Length on the centreline, mm.
-    pub length_mm: f64,
-    /// Curvature of the centreline, 1/mm, positive over a crest on the face.
-    pub curvature_per_mm: f64,
-    /// Turn of the whole run of this sign that it belongs to, rad.
-    pub turn_rad: f64,
 }
 
 impl StiffYarn {
@@ -291,82 +258,17 @@ impl StiffYarn {
                 ..course
             };
             if chain.lay(&course, &self.stiffness).is_ok()
-                && let Some(response) = self.response_of(&chain, &course)
+                && let Some(response) = Response::of(&chain, &course, &self.stiffness, self.unit_n)
             {
                 return Some(response);
             }
         }
-        self.response_of(&path.chain, &course)
-    }
-
-    fn response_of(&self, chain: &Chain, course: &Course<'_>) -> Option<Response> {
-        let balance = chain.balance(course, &self.stiffness);
-        let ring = balance.ring()?;
-        let n = chain.contacts.len();
-        let pieces = (0..n)
-            .map(|index| {
-                let next = (index + 1) % n;
-                let (from, to) = (&chain.contacts[index], &chain.contacts[next]);
-                let piece = &chain.pieces[index];
-                Link {
-                    from: from.crossing,
-                    to: to.crossing,
-                    from_row: balance.first[index] + usize::from(from.arc),
-                    to_row: balance.first[next],
-                    bend_by_rise: [piece.bend[0].by[3], piece.bend[1].by[3]],
-                    force_by: piece.force[1].by,
-                    from_arc: from.arc,
-                }
-            })
-            .collect();
-        Some(Response {
-            ring,
-            balance,
-            pieces,
-            crossings: course.over.len(),
-            unit_n: self.unit_n,
-        })
+        Response::of(&path.chain, &course, &self.stiffness, self.unit_n)
     }
 
     /// The path in samples: arcs whole, free pieces in `parts` each, told by their sharper end.
     pub fn samples(&self, path: &StiffPath, parts: usize) -> Vec<Sample> {
-        let course = self.course(path);
-        let mut samples = Vec::with_capacity(path.chain.contacts.len() * (parts + 1));
-        for (index, contact) in path.chain.contacts.iter().enumerate() {
-            if contact.arc {
-                let sign = course.sign(contact.crossing);
-                let arcs = if self.grown.is_ellipse() { parts } else { 1 };
-                for part in 0..arcs {
-                    let at = |share: usize| {
-                        contact.into + (contact.out - contact.into) * share as f64 / arcs as f64
-                    };
-                    let (a, b) = (self.grown.at(at(part)), self.grown.at(at(part + 1)));
-                    samples.push(Sample {
-                        length_mm: self.grown.along(at(part), at(part + 1)).0,
-                        curvature_per_mm: sign * a.curvature.max(b.curvature),
-                        turn_rad: sign * (b.angle - a.angle),
-                    });
-                }
-            }
-            let (from, to) = path.chain.ends(&course, index);
-            let places: Vec<Place> =
-                path.chain.pieces[index].places(&from, &to, &self.stiffness, parts);
-            for pair in places.windows(2) {
-                let sharper = if pair[0].curvature.abs() > pair[1].curvature.abs() {
-                    pair[0].curvature
-                } else {
-                    pair[1].curvature
-                };
-                samples.push(Sample {
-                    length_mm: pair[1].s - pair[0].s,
-                    // A crest turns down: the path's own curvature is negative there.
-                    curvature_per_mm: -sharper,
-                    turn_rad: pair[0].angle - pair[1].angle,
-                });
-            }
-        }
-        tell_runs(&mut samples);
-        samples
+        samples(&path.chain, &self.course(path), &self.stiffness, parts)
     }
 
     /// Largest curvature of the centreline, 1/mm.
@@ -412,34 +314,6 @@ impl StiffYarn {
     }
 }
 
-/// Gives every sample the turn of its whole run of one sign, round the period.
-fn tell_runs(samples: &mut [Sample]) {
-    let n = samples.len();
-    let same = |a: f64, b: f64| (a >= 0.0) == (b >= 0.0);
-    let Some(start) = (0..n).find(|i| {
-        !same(
-            samples[*i].curvature_per_mm,
-            samples[(i + n - 1) % n].curvature_per_mm,
-        )
-    }) else {
-        return;
-    };
-    let mut from = 0;
-    while from < n {
-        let sign = samples[(start + from) % n].curvature_per_mm;
-        let mut until = from;
-        let mut turn = 0.0;
-        while until < n && same(samples[(start + until) % n].curvature_per_mm, sign) {
-            turn += samples[(start + until) % n].turn_rad;
-            until += 1;
-        }
-        for i in from..until {
-            samples[(start + i) % n].turn_rad = turn.abs();
-        }
-        from = until;
-    }
-}
-
 impl StiffPath {
     /// Crossings of one period.
     pub fn crossings(&self) -> usize {
@@ -449,38 +323,5 @@ impl StiffPath {
     /// How it was found.
     pub fn way(&self) -> Way {
         self.way
-    }
-}
-
-impl Response {
-    /// Change of the upward pushes, N, with changes of the heights, mm.
-    pub fn to(&self, rise_mm: &[f64], change_n: &mut [f64]) {
-        let moves = &self.balance.moves;
-        let mut marks = vec![0.0; moves.len()];
-        for link in &self.pieces {
-            let rise = rise_mm[link.to] - rise_mm[link.from];
-            // miss = before - behind at a point, before - lies and behind - lies on an arc.
-            marks[link.to_row] -= link.bend_by_rise[1] * rise;
-            let start = link.bend_by_rise[0] * rise;
-            if link.from_arc {
-                marks[link.from_row] -= start;
-            } else {
-                marks[link.from_row] += start;
-            }
-        }
-        self.ring.solve(&mut marks);
-        change_n[..self.crossings].fill(0.0);
-        for link in &self.pieces {
-            let rise = rise_mm[link.to] - rise_mm[link.from];
-            let (from, to) = (&moves[link.from_row], &moves[link.to_row]);
-            let (a, b) = (marks[link.from_row], marks[link.to_row]);
-            let by = &link.force_by;
-            let force = by[0] * from.angle * a
-                + by[1] * to.angle * b
-                + by[2] * (to.x * b - from.x * a)
-                + by[3] * (to.z * b - from.z * a + rise);
-            change_n[link.to] += self.unit_n * force;
-            change_n[link.from] -= self.unit_n * force;
-        }
     }
 }
