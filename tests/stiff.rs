@@ -76,20 +76,17 @@ fn errors(case: &Value, accuracy: f64) -> (f64, f64) {
 }
 
 /// One yarn over fixed sections: 67 cases by multiple shooting on the elastica's pieces, confirmed by finite elements
-/// (Python). Aim 0.1 %; met to 1e-7 in crimp and curvature, taut ones to 1e-6 (of curvature only where they lie on arcs).
+/// (Python). Aim 0.1 %; met to 1e-7 in crimp and, where the yarn bends at all, curvature.
 #[test]
 fn one_yarn_matches_every_independent_solution() {
     let list = cases("d_yarn.json");
     assert_eq!(list.len(), 67, "the number of cases never falls");
-    let mut worst = (0.0_f64, 0.0_f64);
     for case in &list {
         let id = case["id"].as_str().unwrap();
         let (crimp, peak) = errors(case, 1e-3);
-        worst = (worst.0.max(crimp), worst.1.max(peak));
         assert!(crimp < 1e-7, "{id} crimp {crimp:.1e}");
         assert!(peak < 1e-7, "{id} curvature {peak:.1e}");
     }
-    println!("worst {worst:?}");
 }
 
 /// The accuracy asked for is met: against the independent solutions, at three accuracies.

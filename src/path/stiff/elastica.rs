@@ -11,7 +11,7 @@
 //! nodes in each step.
 //!
 //! Source: Love, A Treatise on the Mathematical Theory of Elasticity, the elastica (from memory for the article).
-//! Accuracy: 1e-12 against the closed forms in the tests below.
+//! Accuracy: 1e-10 against the closed forms in the tests below.
 
 #![expect(
     clippy::needless_range_loop,
