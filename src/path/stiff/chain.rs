@@ -12,7 +12,7 @@
 
 use super::cyclic::Ring;
 use super::grown::{Grown, Spot};
-use super::piece::{By, End, Felt, Piece};
+use super::piece::{By, CLOSED, End, Felt, LOOSE, Piece};
 use super::stiffness::Stiffness;
 
 /// What a yarn runs over and under.
@@ -162,13 +162,18 @@ impl Chain {
     }
 
     /// Finds every piece anew, from where it was; the contact before the piece that is not found, else.
-    pub(super) fn lay(&mut self, course: &Course<'_>, stiffness: &Stiffness) -> Result<(), usize> {
+    pub(super) fn lay(
+        &mut self,
+        course: &Course<'_>,
+        stiffness: &Stiffness,
+        closed: f64,
+    ) -> Result<(), usize> {
         let warm = self.pieces.len() == self.contacts.len();
         let mut pieces = Vec::with_capacity(self.contacts.len());
         for index in 0..self.contacts.len() {
             let (from, to) = self.ends(course, index);
             let like = if warm { self.pieces.get(index) } else { None };
-            pieces.push(Piece::between(&from, &to, stiffness, like).ok_or(index)?);
+            pieces.push(Piece::between(&from, &to, stiffness, like, closed).ok_or(index)?);
         }
         self.pieces = pieces;
         Ok(())
@@ -233,7 +238,21 @@ impl Chain {
         course: &Course<'_>,
         stiffness: &Stiffness,
     ) -> Result<(), Stuck> {
-        self.lay(course, stiffness).map_err(Stuck::Lost)?;
+        let begun = self.clone();
+        // While the contacts move pieces need not close: one shot each. Where that does not come to rest they do.
+        self.settle_to(course, stiffness, LOOSE).or_else(|_| {
+            *self = begun;
+            self.settle_to(course, stiffness, CLOSED)
+        })
+    }
+
+    fn settle_to(
+        &mut self,
+        course: &Course<'_>,
+        stiffness: &Stiffness,
+        closed: f64,
+    ) -> Result<(), Stuck> {
+        self.lay(course, stiffness, closed).map_err(Stuck::Lost)?;
         let last_mark = course.grown.last_mark();
         let jump = course.grown.jump();
         let mut damp = 1.0;
@@ -257,7 +276,11 @@ impl Chain {
                 .flat_map(|piece| &piece.bend)
                 .fold(1e-3, |most: f64, bend| most.max(bend.value.abs()));
             if laid && size < BALANCED * most {
-                return Ok(());
+                if self.pieces.iter().all(|piece| piece.missed < CLOSED) {
+                    return Ok(());
+                }
+                laid = self.lay(course, stiffness, CLOSED).is_ok();
+                continue;
             }
             let good = laid && size.is_finite() && (size < size_before || damp < 0.2);
             if good {
@@ -317,7 +340,7 @@ impl Chain {
                 self.contacts[index] = before;
                 return Err(Stuck::Jump(index));
             }
-            laid = self.lay(course, stiffness).is_ok();
+            laid = self.lay(course, stiffness, closed).is_ok();
         }
         Err(Stuck::Lost(self.contact_of(worst)))
     }

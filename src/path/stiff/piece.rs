@@ -48,6 +48,8 @@ pub(super) struct Piece {
     pub form: Form,
     /// Where it was found: direction of either end, how far apart they are.
     pub inputs: By,
+    /// By how much its closure missed before the last, linear step.
+    pub missed: f64,
     /// Length, mm.
     pub length: f64,
     /// Root of the rigidity times the curvature at either end.
@@ -76,15 +78,19 @@ pub(super) enum Form {
 /// Newton steps within one piece.
 const STEPS: usize = 14;
 /// Relative miss of a piece's closure from which the rest is made up for in one linear step: its error is the square.
-const CLOSED: f64 = 3e-6;
+pub(super) const CLOSED: f64 = 3e-6;
+/// The same while the contacts still move.
+pub(super) const LOOSE: f64 = 2e-2;
 
 impl Piece {
-    /// The piece from one end to the other, started from `like` where there is one; `None` where it is not found.
+    /// The piece from one end to the other, started from `like` where there is one, its closure to `closed`; `None` where it
+    /// is not found.
     pub(super) fn between(
         from: &End,
         to: &End,
         stiffness: &Stiffness,
         like: Option<&Self>,
+        closed: f64,
     ) -> Option<Self> {
         let (dx, dz) = (to.x - from.x, to.z - from.z);
         let chord = dx.hypot(dz);
@@ -99,7 +105,7 @@ impl Piece {
         if stiffness.rigidity == 0.0 || stiffness.ratio.sqrt() * chord > long {
             Self::layers(from, to, stiffness)
         } else {
-            Self::shot(from, to, stiffness, like)
+            Self::shot(from, to, stiffness, like, closed)
         }
     }
 
@@ -159,6 +165,7 @@ impl Piece {
         Some(Self {
             form: Form::Layers { beta },
             inputs: inputs(from, to),
+            missed: 0.0,
             length,
             bend: [bend(-1.0, s0, c0, 0), bend(1.0, s1, c1, 1)],
             rate: [pull * d0.sin(), pull * d1.sin()],
@@ -196,7 +203,13 @@ impl Piece {
         (curvature, rate, length)
     }
 
-    fn shot(from: &End, to: &End, stiffness: &Stiffness, like: Option<&Self>) -> Option<Self> {
+    fn shot(
+        from: &End,
+        to: &End,
+        stiffness: &Stiffness,
+        like: Option<&Self>,
+        closed: f64,
+    ) -> Option<Self> {
         let inputs = inputs(from, to);
         let warm = like.and_then(|piece| match piece.form {
             Form::Shot {
@@ -220,14 +233,20 @@ impl Piece {
             }
             Form::Layers { .. } => None,
         });
-        warm.and_then(|start| Self::newton(from, to, stiffness, start))
+        warm.and_then(|start| Self::newton(from, to, stiffness, start, closed))
             .or_else(|| {
                 let start = Self::first_guess(from, to, stiffness.ratio);
-                Self::newton(from, to, stiffness, start)
+                Self::newton(from, to, stiffness, start, closed)
             })
     }
 
-    fn newton(from: &End, to: &End, stiffness: &Stiffness, start: (f64, f64, f64)) -> Option<Self> {
+    fn newton(
+        from: &End,
+        to: &End,
+        stiffness: &Stiffness,
+        start: (f64, f64, f64),
+        closed: f64,
+    ) -> Option<Self> {
         let (dx, dz) = (to.x - from.x, to.z - from.z);
         let chord = dx.hypot(dz);
         let turn = to.angle - from.angle;
@@ -254,15 +273,18 @@ impl Piece {
                 continue;
             }
             let inverse = inverted(&jacobian)?;
-            if size < CLOSED {
-                return Some(shot.told(from, to, stiffness, &inverse, &miss));
+            for i in 0..3 {
+                step[i] = (0..3).map(|j| inverse[i][j] * miss[j]).sum();
+            }
+            if size < closed && step[2].abs() < 0.3 * length {
+                return Some(Self {
+                    missed: size,
+                    ..shot.told(from, to, stiffness, &inverse, &miss)
+                });
             }
             last = size;
             damp = 1.0;
             before = (curvature, rate, length);
-            for i in 0..3 {
-                step[i] = (0..3).map(|j| inverse[i][j] * miss[j]).sum();
-            }
             // Neither the length nor the turn may leap.
             let leap = (step[2] / length)
                 .abs()

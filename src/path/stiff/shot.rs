@@ -191,6 +191,7 @@ impl Shot {
                 ],
             },
             inputs: inputs(from, to),
+            missed: 0.0,
             length: self.length + last[2],
             bend: [start, end],
             // The left run's rate is counted backwards.

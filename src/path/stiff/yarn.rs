@@ -3,6 +3,7 @@
 use super::chain::{Chain, Contact, Course};
 use super::grown::Grown;
 use super::mend::Mender;
+use super::piece::CLOSED;
 use super::response::Response;
 use super::sample::{Sample, samples};
 use super::settle::{NoPath, Taut, Way, settle};
@@ -257,7 +258,7 @@ impl StiffYarn {
                 height: &height,
                 ..course
             };
-            if chain.lay(&course, &self.stiffness).is_ok()
+            if chain.lay(&course, &self.stiffness, CLOSED).is_ok()
                 && let Some(response) = Response::of(&chain, &course, &self.stiffness, self.unit_n)
             {
                 return Some(response);
