@@ -3,20 +3,23 @@
 //! Between contacts a yarn of rigidity B under pull T obeys (M = B k, forces constant along the piece)
 //!
 //! ```text
-//! k'' = l k - k^3/2,      l = T/B                       k: curvature, ' along the yarn
+//! k'' = l k - k³/2,     l = T/B                        k: curvature, ' along the yarn
+//! f = hypot(l - k²/2, k')                              the force over B, the same all along
+//! k = a cn(w s + u)     a² = 2 (l + f), w² = f, m = (l + f)/2f         where f >= l: the yarn waves
+//! k = a dn(w s + u)     a² = 2 (l + f), w = a/2, m = 2f/(l + f)        where f <  l: it bends one way only
 //! ```
 //!
-//! The run starts at the origin, level. Curvature and both of its variations are power series of order 8 to 18 in steps
-//! whose last terms are below 4e-11; the position is the integral of (cos psi, sin psi) by Gauss-Legendre with eight
-//! nodes in each step.
+//! From the direction of the force, the tangent is ((l - k²/2), k')/f, so that the place is
+//! ((l s - integral of k²/2)/f, (k - k at the start)/f). sn, cn and dn at the start are algebraic in curvature and rate, at the
+//! end they follow by the addition theorem (Abramowitz and Stegun 16.17). The run starts at the origin, level.
+//! Where f s² is small both formulas lose their digits and the run goes by power series (`series`).
 //!
 //! Source: Love, A Treatise on the Mathematical Theory of Elasticity, the elastica (from memory for the article).
-//! Accuracy: 1e-10 against the closed forms in the tests below.
+//! Accuracy: 1e-10 against the closed forms in the tests below, and against the series.
 
-#![expect(
-    clippy::needless_range_loop,
-    reason = "several small arrays are walked side by side: the index is the mathematics"
-)]
+use super::dual::Dual;
+use super::jacobi::Jacobi;
+use super::series::INVERSE;
 
 /// What of the end state a run tells, in this order: curvature, its rate, direction, place along and across.
 pub(super) const CURVATURE: usize = 0;
@@ -32,185 +35,6 @@ pub(super) struct Run {
     pub at: [f64; 5],
     /// Its change with the curvature and with the rate at the start.
     pub by: [[f64; 2]; 5],
-}
-
-const ORDER: usize = 18;
-const TERM: f64 = 1e-11;
-/// Runs whose curvature turns further than this in one step are cut, rad.
-const STEP_TURN: f64 = 0.9;
-
-/// Steps of one run; a piece that takes more is no yarn.
-const STEPS: usize = 32;
-
-/// Nodes and weights of Gauss-Legendre with eight points on 0..1 (Abramowitz and Stegun 25.4.30).
-pub(super) const NODES: [f64; 8] = [
-    0.019_855_071_751_231_884,
-    0.101_666_761_293_186_63,
-    0.237_233_795_041_835_5,
-    0.408_282_678_752_175_1,
-    0.591_717_321_247_825,
-    0.762_766_204_958_164_5,
-    0.898_333_238_706_813_4,
-    0.980_144_928_248_768_1,
-];
-pub(super) const WEIGHTS: [f64; 8] = [
-    0.050_614_268_145_188_13,
-    0.111_190_517_226_687_24,
-    0.156_853_322_938_943_64,
-    0.181_341_891_689_181,
-    0.181_341_891_689_181,
-    0.156_853_322_938_943_64,
-    0.111_190_517_226_687_24,
-    0.050_614_268_145_188_13,
-];
-
-/// 1/((j + 1)(j + 2)) for the recurrences.
-const INVERSE: [f64; ORDER + 1] = {
-    let mut table = [0.0; ORDER + 1];
-    let mut j = 0;
-    while j <= ORDER {
-        table[j] = 1.0 / ((j + 1) as f64 * (j + 2) as f64);
-        j += 1;
-    }
-    table
-};
-
-/// Powers of the nodes, each over its exponent: a series' integral at all nodes is a sum over these.
-const INTEGRAL: [[f64; 8]; ORDER + 1] = {
-    let mut table = [[0.0; 8]; ORDER + 1];
-    let mut node = 0;
-    while node < 8 {
-        let mut power = 1.0;
-        let mut j = 0;
-        while j <= ORDER {
-            power *= NODES[node];
-            table[j][node] = power / (j + 1) as f64;
-            j += 1;
-        }
-        node += 1;
-    }
-    table
-};
-
-/// Orders of a series, and how far it reaches: x with x^(order - 1)/(order - 1)! below TERM.
-const ORDERS: [(usize, f64); 6] = [
-    (8, 0.090),
-    (10, 0.248),
-    (12, 0.49),
-    (14, 0.81),
-    (16, 1.187),
-    (ORDER, 1.617),
-];
-
-/// Power series of curvature and of its variations with curvature and rate about one place, side by side.
-struct Series {
-    terms: [[f64; 4]; ORDER + 1],
-    order: usize,
-}
-
-/// A series' values for curvature and both variations.
-type Three = [f64; 4];
-
-impl Series {
-    /// The series in steps of `size`: the coefficients are the terms at its end.
-    fn new(curvature: f64, rate: f64, pull: f64, size: f64, order: usize) -> Self {
-        let square = size * size;
-        let mut terms = [[0.0; 4]; ORDER + 1];
-        let mut squared = [0.0; ORDER + 1];
-        terms[0] = [curvature, 1.0, 0.0, 0.0];
-        terms[1] = [rate * size, 0.0, size, 0.0];
-        for j in 0..=order - 2 {
-            // The square is symmetric: half of it twice.
-            let mut sum = 0.0;
-            for i in 0..j.div_ceil(2) {
-                sum += terms[i][0] * terms[j - i][0];
-            }
-            if j == 0 {
-                sum = 0.0;
-            }
-            sum *= 2.0;
-            if j % 2 == 0 {
-                sum += terms[j / 2][0] * terms[j / 2][0];
-            }
-            squared[j] = sum;
-            let (mut even, mut odd) = ([0.0; 4], [0.0; 4]);
-            let mut i = 0;
-            while i < j {
-                let (a, b) = (squared[i], squared[i + 1]);
-                let (first, second) = (&terms[j - i], &terms[j - i - 1]);
-                for lane in 0..4 {
-                    even[lane] += a * first[lane];
-                    odd[lane] += b * second[lane];
-                }
-                i += 2;
-            }
-            if i == j {
-                for lane in 0..4 {
-                    even[lane] += squared[j] * terms[0][lane];
-                }
-            }
-            let factor = square * INVERSE[j];
-            for lane in 0..4 {
-                let cubic = if lane == 0 { 0.5 } else { 1.5 };
-                terms[j + 2][lane] =
-                    factor * (pull * terms[j][lane] - cubic * (even[lane] + odd[lane]));
-            }
-        }
-        Self { terms, order }
-    }
-
-    /// The last terms over the largest they are measured by.
-    fn tail(&self) -> f64 {
-        let mut tail = 0.0_f64;
-        for lane in 0..3 {
-            let term = |j: usize| self.terms[j][lane].abs();
-            let scale = term(0) + term(1);
-            if scale > 0.0 {
-                tail = tail.max((term(self.order) + term(self.order - 1)) / scale);
-            }
-        }
-        tail
-    }
-
-    fn end(&self) -> Three {
-        let mut sum = [0.0; 4];
-        for j in (0..=self.order).rev() {
-            for lane in 0..4 {
-                sum[lane] += self.terms[j][lane];
-            }
-        }
-        sum
-    }
-
-    /// Rates at the end, by the step.
-    fn end_rate(&self) -> Three {
-        let mut sum = [0.0; 4];
-        for j in (1..=self.order).rev() {
-            for lane in 0..4 {
-                sum[lane] += j as f64 * self.terms[j][lane];
-            }
-        }
-        sum
-    }
-
-    /// Integrals from the step's start: at the nodes, and at its end.
-    fn integrals(&self) -> ([[f64; 8]; 3], Three) {
-        let mut at = [[0.0; 8]; 3];
-        let mut whole = [0.0; 4];
-        for j in (0..=self.order).rev() {
-            let (term, table) = (&self.terms[j], &INTEGRAL[j]);
-            for lane in 0..3 {
-                for node in 0..8 {
-                    at[lane][node] += term[lane] * table[node];
-                }
-            }
-            let by = 1.0 / (j + 1) as f64;
-            for lane in 0..4 {
-                whole[lane] += term[lane] * by;
-            }
-        }
-        (at, whole)
-    }
 }
 
 /// State on the way along an elastica: curvature, rate, direction, place.
@@ -265,91 +89,125 @@ pub(super) fn stepped(state: &State, pull: f64, length: f64) -> State {
     at
 }
 
+/// A quantity and its change with curvature and rate at the start.
+type Felt = Dual<2>;
+
+/// f s² below which the closed form loses digits: it keeps 1e-16 over this.
+const SHORT: f64 = 1e-3;
+
 impl Run {
     /// Runs `length_mm` along the elastica that starts with `curvature` (1/mm) and `rate` (1/mm2); `pull` is T/B, 1/mm2.
     pub(super) fn along(curvature: f64, rate_per_mm2: f64, pull: f64, length_mm: f64) -> Self {
-        let mut run = Self {
-            at: [curvature, rate_per_mm2, 0.0, 0.0, 0.0],
-            by: [[1.0, 0.0], [0.0, 1.0], [0.0; 2], [0.0; 2], [0.0; 2]],
-        };
-        let mut left = length_mm;
-        let mut steps = 0;
-        while left > 1e-15 * length_mm {
-            steps += 1;
-            if steps > STEPS {
-                // Coiled up: no piece of yarn, and the caller's Newton turns back.
-                run.at = [f64::NAN; 5];
-                return run;
-            }
-            // cosh(x) needs x below what the order reaches; what bends or turns faster is found by its last terms.
-            let fast = pull.sqrt().max(1.3 * run.at[CURVATURE].abs());
-            let farthest = ORDERS[ORDERS.len() - 1].1;
-            let mut size = left / (fast * left / farthest).ceil().max(1.0);
-            let mut series;
-            loop {
-                let order = ORDERS
-                    .iter()
-                    .find(|(_, reach)| fast * size <= *reach)
-                    .map_or(ORDER, |(order, _)| *order);
-                series = Series::new(run.at[CURVATURE], run.at[RATE], pull, size, order);
-                if series.tail() <= 4.0 * TERM && run.at[CURVATURE].abs() * size <= STEP_TURN {
-                    break;
-                }
-                if order < ORDER {
-                    series = Series::new(run.at[CURVATURE], run.at[RATE], pull, size, ORDER);
-                    if series.tail() <= 4.0 * TERM && run.at[CURVATURE].abs() * size <= STEP_TURN {
-                        break;
-                    }
-                }
-                size *= 0.5;
-                // The floor only stops nonsense input.
-                if size < 1e-6 * length_mm {
-                    break;
-                }
-            }
-            run.step(&series, size);
-            left -= size;
+        let force = (pull - 0.5 * curvature * curvature).hypot(rate_per_mm2);
+        let short = force * length_mm * length_mm < SHORT || force < SHORT * pull;
+        if short || curvature == 0.0 && rate_per_mm2 == 0.0 {
+            return Self::by_series(curvature, rate_per_mm2, pull, length_mm);
         }
-        run
+        // A curve and its mirror image are one: the first bends upwards.
+        let side = if curvature < 0.0 { -1.0 } else { 1.0 };
+        let run = Self::closed(side * curvature, side * rate_per_mm2, pull, length_mm);
+        run.map_or(
+            Self {
+                at: [f64::NAN; 5],
+                by: [[0.0; 2]; 5],
+            },
+            |run| run.mirrored(side),
+        )
     }
 
-    fn step(&mut self, series: &Series, size: f64) {
-        let (nodes, whole) = series.integrals();
-        let (end, end_rate) = (series.end(), series.end_rate());
-        let (mut along, mut across) = (0.0, 0.0);
-        let (mut along_by, mut across_by) = ([0.0; 2], [0.0; 2]);
-        for node in 0..8 {
-            let weight = WEIGHTS[node] * size;
-            let (sine, cosine) = (size * nodes[0][node]).sin_cos();
-            along += weight * cosine;
-            across += weight * sine;
-            let (sine, cosine) = (weight * size * sine, weight * size * cosine);
-            for i in 0..2 {
-                along_by[i] -= sine * nodes[1 + i][node];
-                across_by[i] += cosine * nodes[1 + i][node];
-            }
+    /// The mirror image: what is odd across changes sign; changes with curvature and rate keep theirs.
+    fn mirrored(mut self, side: f64) -> Self {
+        for which in [CURVATURE, RATE, ANGLE, ACROSS] {
+            self.at[which] *= side;
         }
-        // What the end of this step makes of its start, then of the whole run's start.
-        let (sine, cosine) = self.at[ANGLE].sin_cos();
-        let start = self.by;
-        let chain = |a: f64, b: f64, i: usize| a * start[CURVATURE][i] + b * start[RATE][i];
         for i in 0..2 {
-            let dx = chain(along_by[0], along_by[1], i);
-            let dz = chain(across_by[0], across_by[1], i);
-            let turned = start[ANGLE][i];
-            self.by[ALONG][i] +=
-                cosine * dx - sine * dz - (sine * along + cosine * across) * turned;
-            self.by[ACROSS][i] +=
-                sine * dx + cosine * dz + (cosine * along - sine * across) * turned;
-            self.by[CURVATURE][i] = chain(end[1], end[2], i);
-            self.by[RATE][i] = chain(end_rate[1], end_rate[2], i) / size;
-            self.by[ANGLE][i] += size * chain(whole[1], whole[2], i);
+            self.by[ALONG][i] *= side;
         }
-        self.at[ALONG] += cosine * along - sine * across;
-        self.at[ACROSS] += sine * along + cosine * across;
-        self.at[CURVATURE] = end[0];
-        self.at[RATE] = end_rate[0] / size;
-        self.at[ANGLE] += size * whole[0];
+        self
+    }
+
+    /// The closed form, for a curvature not below zero; `None` where the run is no piece of yarn.
+    fn closed(curvature: f64, rate: f64, pull: f64, length: f64) -> Option<Self> {
+        let (k, r) = (Felt::own(curvature, 0), Felt::own(rate, 1));
+        let (l, s) = (Felt::fixed(pull), Felt::fixed(length));
+        let kk = k * k;
+        let p = l - kk.times(0.5);
+        let f = (p * p + r * r).sqrt();
+        let sum = l + f;
+        let a = sum.times(2.0).sqrt();
+        // (f - l)(f + l), without what cancels.
+        let over = r * r - kk * (l - kk.times(0.25));
+        let waves = over.value >= 0.0;
+        // f + p and f - p: their product is r².
+        let (plus, minus) = if p.value > 0.0 {
+            let plus = f + p;
+            (plus, r * r / plus)
+        } else {
+            let minus = f - p;
+            (r * r / minus, minus)
+        };
+        let (w, m, m1) = if waves {
+            let double = f.times(2.0);
+            (f.sqrt(), sum / double, over / (sum * double))
+        } else {
+            (a.times(0.5), f.times(2.0) / sum, -(over / (sum * sum)))
+        };
+        // sn, cn and dn at the start: of sn and its partner in the rate one by its root, the other from their product.
+        let (sn0, cn0, dn0) = if waves {
+            let cn = k / a;
+            if p.value > 0.0 {
+                let side = if rate < 0.0 { 1.0 } else { -1.0 };
+                let sn = (plus / sum).sqrt().times(side);
+                (sn, cn, -(r / (a * w * sn)))
+            } else {
+                let dn = (minus / f.times(2.0)).sqrt();
+                (-(r / (a * w * dn)), cn, dn)
+            }
+        } else {
+            let dn = k / a;
+            if p.value > 0.0 {
+                let sn = -(plus / f.times(2.0)).sqrt();
+                (sn, -(r / (f * sn).times(2.0)), dn)
+            } else {
+                let cn = (minus / f.times(2.0)).sqrt();
+                (-(r / (f * cn).times(2.0)), cn, dn)
+            }
+        };
+        let on = Jacobi::at(w * s, m, m1)?;
+        // 1 - m sn0² sn², without what cancels.
+        let whole = on.cn * on.cn + on.sn * on.sn * dn0 * dn0;
+        let sn = (sn0 * on.cn * on.dn + on.sn * cn0 * dn0) / whole;
+        let cn = (cn0 * on.cn - sn0 * on.sn * dn0 * on.dn) / whole;
+        let dn = (dn0 * on.dn - m * sn0 * on.sn * cn0 * on.cn) / whole;
+        // The integral of sn² from start to end.
+        let square = (on.square + sn0 * on.sn * sn) / w;
+        let (k1, r1, squared) = if waves {
+            (a * cn, -(a * w * sn * dn), a * a * (s - square))
+        } else {
+            (a * dn, -(f * sn * cn).times(2.0), a * a * (s - m * square))
+        };
+        let along = (l * s - squared.times(0.5)) / f;
+        let across = (k1 - k) / f;
+        let p1 = l - (k1 * k1).times(0.5);
+        let turn = if waves {
+            // The tangent never runs along the force: from its back the angle is the whole.
+            (-r1).atan2(-p1) - (-r).atan2(-p)
+        } else {
+            let turn = (r1 * p - p1 * r).atan2(p1 * p + r1 * r);
+            // It turns one way only, and by less than once round.
+            if turn.value < -1e-9 {
+                turn + Felt::fixed(std::f64::consts::TAU)
+            } else {
+                turn
+            }
+        };
+        let x = (p * along + r * across) / f;
+        let z = (p * across - r * along) / f;
+        let told = [k1, r1, turn, x, z];
+        Some(Self {
+            at: told.map(|felt| felt.value),
+            by: told.map(|felt| felt.by),
+        })
     }
 }
 
@@ -418,5 +276,46 @@ mod tests {
             );
         }
         assert_eq!(stepped(&state, pull, 0.0), state, "no way, no change");
+    }
+
+    /// Closed form and series are two ways to one end, next to every border between the cases.
+    #[test]
+    fn the_closed_form_is_the_series() {
+        let mut compared = 0;
+        for pull in [0.0, 0.3, 4.0, 90.0] {
+            for curvature in [-2.0, -0.01, 0.0, 1e-6, 0.3, 1.9, 4.1] {
+                for rate in [-30.0, -0.7, -1e-7, 0.0, 1e-4, 0.05, 3.0] {
+                    for length in [0.04, 0.3, 0.65] {
+                        let run = Run::along(curvature, rate, pull, length);
+                        let other = Run::by_series(curvature, rate, pull, length);
+                        // More than once round is no yarn.
+                        if other.at[ANGLE].abs() > 6.28 {
+                            continue;
+                        }
+                        let scale = other.at[CURVATURE].abs().max(curvature.abs()).max(1e-3);
+                        let tell = format!("{pull} {curvature} {rate} {length}");
+                        for (which, scale) in [
+                            (CURVATURE, scale),
+                            (ANGLE, 1.0),
+                            (ALONG, length),
+                            (ACROSS, length),
+                        ] {
+                            let off = (run.at[which] - other.at[which]).abs() / scale;
+                            assert!(off < 1e-9, "{tell}: {which} {off:e}");
+                            for i in 0..2 {
+                                let size = other.by[which][0].abs() + other.by[which][1].abs();
+                                let off = (run.by[which][i] - other.by[which][i]).abs();
+                                assert!(
+                                    off < 1e-6 * size.max(1e-6),
+                                    "{tell}: {which} by {i} {off:e}"
+                                );
+                            }
+                        }
+                        compared += 1;
+                    }
+                }
+            }
+        }
+        assert!(compared > 500, "{compared}");
     }
 }

@@ -298,7 +298,7 @@ impl Grown {
         let (mut length, mut squared) = (0.0, 0.0);
         for pair in bounds.windows(2) {
             let width = pair[1] - pair[0];
-            for (node, weight) in super::elastica::NODES.iter().zip(super::elastica::WEIGHTS) {
+            for (node, weight) in super::series::NODES.iter().zip(super::series::WEIGHTS) {
                 let spot = self.at(pair[0] + width * node);
                 length += width * weight * spot.length_by;
                 squared += width * weight * spot.length_by * spot.curvature * spot.curvature;

@@ -12,7 +12,9 @@
 //!
 //! | file | what is in it |
 //! | --- | --- |
-//! | `elastica` | a run along k'' = (T/B) k - k³/2, with its variations |
+//! | `elastica` | a run along k'' = (T/B) k - k³/2, with its variations, in closed form |
+//! | `jacobi`, `dual` | elliptic functions; numbers that carry their change |
+//! | `series` | short and nearly circular runs by power series |
 //! | `stiffness` | pull and rigidity in units of both |
 //! | `piece`, `shot` | a free piece between two contacts; a short one shot from its middle |
 //! | `grown` | the crossed outline, grown by half of the yarn |
@@ -32,12 +34,15 @@
 
 mod chain;
 mod cyclic;
+mod dual;
 mod elastica;
 mod grown;
+mod jacobi;
 mod mend;
 mod piece;
 mod response;
 mod sample;
+mod series;
 mod settle;
 mod shot;
 mod stiffness;
