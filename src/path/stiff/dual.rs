@@ -2,6 +2,11 @@
 //!
 //! Exact to rounding, for the few operations the elastica asks for.
 
+#![expect(
+    clippy::needless_range_loop,
+    reason = "changes are walked side by side: the index is the mathematics"
+)]
+
 use std::ops::{Add, Div, Mul, Neg, Sub};
 
 /// A value and its change with N quantities.
@@ -29,11 +34,12 @@ impl<const N: usize> Dual<N> {
 
     /// What a function makes of it, from the function's value and slope there.
     #[inline]
-    pub(super) fn through(self, value: f64, slope: f64) -> Self {
-        Self {
-            value,
-            by: self.by.map(|by| slope * by),
+    pub(super) fn through(mut self, value: f64, slope: f64) -> Self {
+        self.value = value;
+        for by in &mut self.by {
+            *by *= slope;
         }
+        self
     }
 
     #[inline]

@@ -204,10 +204,15 @@ impl Run {
         let x = (p * along + r * across) / f;
         let z = (p * across - r * along) / f;
         let told = [k1, r1, turn, x, z];
-        Some(Self {
-            at: told.map(|felt| felt.value),
-            by: told.map(|felt| felt.by),
-        })
+        let mut run = Self {
+            at: [0.0; 5],
+            by: [[0.0; 2]; 5],
+        };
+        for (which, felt) in told.iter().enumerate() {
+            run.at[which] = felt.value;
+            run.by[which] = felt.by;
+        }
+        Some(run)
     }
 }
 
@@ -269,11 +274,8 @@ mod tests {
         for _ in 0..7 {
             state = stepped(&state, pull, length / 7.0);
         }
-        for which in 0..5 {
-            assert!(
-                (state[which] - run.at[which]).abs() < 1e-5 * run.at[which].abs().max(1.0),
-                "{which}"
-            );
+        for (ours, theirs) in state.iter().zip(run.at) {
+            assert!((ours - theirs).abs() < 1e-5 * theirs.abs().max(1.0));
         }
         assert_eq!(stepped(&state, pull, 0.0), state, "no way, no change");
     }
@@ -289,7 +291,7 @@ mod tests {
                         let run = Run::along(curvature, rate, pull, length);
                         let other = Run::by_series(curvature, rate, pull, length);
                         // More than once round is no yarn.
-                        if other.at[ANGLE].abs() > 6.28 {
+                        if other.at[ANGLE].abs() > std::f64::consts::TAU {
                             continue;
                         }
                         let scale = other.at[CURVATURE].abs().max(curvature.abs()).max(1e-3);
