@@ -208,7 +208,7 @@ fn yarns_keep_their_lengths_between_the_states() {
     }
 }
 
-/// More warp tension never raises the warp's crimp.
+/// More warp tension never raises the warp's crimp: it lowers it.
 #[test]
 fn more_warp_tension_never_raises_warp_crimp() {
     for pattern in ["plain", "twill 2/1", "satin 5"] {
@@ -219,9 +219,28 @@ fn more_warp_tension_never_raises_warp_crimp() {
                 .cloth
                 .warp
                 .crimp;
-            assert!(crimp <= last * (1.0 + 1e-9), "{pattern} {warp_n}");
+            assert!(crimp < 0.99 * last, "{pattern} {warp_n}");
             last = crimp;
         }
+    }
+}
+
+/// What holds a measured crimp holds it in both states: with all of the pull left they are one, whichever was counted.
+#[test]
+fn a_measured_crimp_is_that_of_both_states_under_one_pull() {
+    for sett_at in ["finished", "loom"] {
+        let text = format!(
+            "name = \"t\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"100 tex\"\nflatness = 4\n[weave]\n\
+             pattern = \"plain\"\nrest = \"100 %\"\nsett_at = \"{sett_at}\"\n\
+             warp = {{ yarn = \"y\", sett = \"10 /cm\", tension = \"50 cN\", crimp = \"0.4 %\" }}\n\
+             weft = {{ yarn = \"y\", sett = \"9 /cm\", tension = \"50 cN\" }}\n"
+        );
+        let states = States::build(&spec(&text).weave, Varied::default()).unwrap();
+        let (rest, loom) = (&states.cloth, states.on_loom.as_ref().unwrap());
+        for cloth in [rest, loom] {
+            assert!((cloth.warp.crimp / 0.004 - 1.0).abs() < 1e-6);
+        }
+        assert!((rest.weft.crimp / loom.weft.crimp - 1.0).abs() < 1e-6);
     }
 }
 
@@ -250,4 +269,14 @@ fn measured_crimp_and_thickness_are_met() {
     )
     .unwrap();
     assert!((states.cloth.thickness_mm / thickness - 1.0).abs() < 1e-6);
+}
+
+/// A crimp of nothing is met: the warp lies straight, as the taut one does.
+#[test]
+fn a_straight_warp_is_no_jam() {
+    let text = "name = \"t\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"68 tex\"\n[weave]\npattern = \"plain\"\n\
+                warp = { yarn = \"y\", sett = \"10 /cm\", crimp = \"0 %\" }\nweft = { yarn = \"y\", sett = \"10 /cm\" }\n";
+    let states = States::build(&spec(text).weave, Varied::default()).unwrap();
+    assert!(!states.cloth.closed.jam_limited);
+    assert!(states.cloth.warp.crimp < 1e-9);
 }

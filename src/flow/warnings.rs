@@ -5,7 +5,7 @@ use crate::bend::{Stage, SystemName};
 use crate::judge::{Limit, State};
 use crate::passage::chain;
 use crate::quantity::significant;
-use crate::spec::{Passage, Spec};
+use crate::spec::{Passage, SettAt, Spec};
 
 /// Everything to be said beside the verdict, in a stable order.
 pub fn warnings(spec: &Spec, outcome: &Outcome) -> Vec<String> {
@@ -36,12 +36,17 @@ pub fn warnings(spec: &Spec, outcome: &Outcome) -> Vec<String> {
 
 /// Measured crimps that the cloth does not have.
 fn crimps(spec: &Spec, outcome: &Outcome) -> Vec<String> {
-    let (weave, cloth) = (&spec.weave, &outcome.cloth);
+    let weave = &spec.weave;
+    // Crimp is measured in the state in which the sett was counted.
+    let cloth = match (weave.sett_at, &outcome.on_loom) {
+        (SettAt::Loom, Some(on_loom)) => on_loom,
+        _ => &outcome.cloth,
+    };
     [("warp", &weave.warp, &cloth.warp), ("weft", &weave.weft, &cloth.weft)]
         .into_iter()
         .filter_map(|(word, system, woven)| {
             let given = system.crimp?;
-            let off = (woven.crimp - given).abs() > 0.02 * given.max(woven.crimp);
+            let off = (woven.crimp - given).abs() > 0.02 * given.max(woven.crimp).max(1e-5);
             let percent = |crimp: f64| significant(100.0 * crimp, 3);
             off.then(|| {
                 format!(

@@ -238,7 +238,7 @@ pub const YARN: &[Key] = &[
         "bending_rigidity",
         "rigidity, \"0.05 N mm2\"",
         "from filaments and binding",
-        "measured rigidity of the yarn; counts with a binding above 0",
+        "measured rigidity of the yarn: it shapes its path and, with a binding above 0, eases its bends",
     ),
     key(
         "tension_spread",
@@ -268,7 +268,7 @@ pub const WEAVE: &[Key] = &[
         "thickness",
         "length, \"0.23 mm\"",
         "from the yarns",
-        "measured cloth thickness; the yarns' thicknesses are scaled to meet it",
+        "measured cloth thickness, in the state of the sett; the yarns' thicknesses are scaled to meet it",
     ),
     key(
         "path",
@@ -320,7 +320,7 @@ pub const SYSTEM: &[Key] = &[
         "crimp",
         "share, \"2.1 %\"",
         "found from equilibrium",
-        "measured crimp, straightened over cloth length less 1",
+        "measured crimp, straightened over cloth length less 1, in the state of the sett",
     ),
 ];
 

@@ -3,7 +3,7 @@
 //! From today's value the lever is moved in steps of a fifth, to the better side where the place does not hold and to
 //! the worse side where it does, until the margin changes sign or the reach ends. In that bracket `root` finds the
 //! zero on the whole flow. The value is rounded to the lever's steps on the better side and run again; where rounding
-//! several keys at once misses by a hair it is eased by up to ten steps, and tightened where a step further holds too.
+//! several keys at once misses by a hair it is eased by up to ten steps, and tightened as long as a step further holds too.
 
 use super::lever::{Better, Lever};
 use super::margin::{Target, margin_of};
@@ -95,11 +95,8 @@ pub fn solve(document: &Document, weaves: &Weaves, lever: &Lever, target: &Targe
             value = lever.eased(value);
             continue;
         };
-        // Rounded keys may reach a step further than the exact ones did.
-        for _ in 0..10 {
-            let Some(beyond) = told(lever.tightened(value)) else {
-                break;
-            };
+        // Rounded keys may reach further than the exact ones did, near a jam by many steps.
+        while let Some(beyond) = told(lever.tightened(value)) {
             (value, margin) = (lever.tightened(value), beyond);
         }
         return Found::Holds {

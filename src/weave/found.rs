@@ -18,6 +18,8 @@ pub(super) struct FoundState<'a> {
     pub spacings: Spacings,
     pub balanced: Balanced,
     pub closed: Closed,
+    /// Weight of the warp's energy: 1 but where a measured crimp is met.
+    pub warp_weight: f64,
 }
 
 impl FoundState<'_> {

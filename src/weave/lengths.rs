@@ -32,7 +32,9 @@ impl<'a> Pulled<'a> {
             counted.spacings.0 * (1.0 + c2),
             counted.spacings.1 * (1.0 + c1),
         );
-        let mut balanced = self.at(counted.spacings, 1.0, Some(&counted.balanced))?;
+        // What held a measured crimp holds on.
+        let weight = counted.warp_weight;
+        let mut balanced = self.at(counted.spacings, weight, Some(&counted.balanced))?;
         let miss = |spacings: Spacings, balanced: &Balanced| {
             let (c1, c2) = self.crimps(spacings, balanced);
             (
@@ -57,6 +59,7 @@ impl<'a> Pulled<'a> {
                         jam_limited,
                         mismatch: None,
                     },
+                    warp_weight: weight,
                 });
             }
             let step = (
@@ -69,7 +72,7 @@ impl<'a> Pulled<'a> {
             for halving in 0..6 {
                 let share = 0.5_f64.powi(halving);
                 let tried = (spacings.0 + share * step.0, spacings.1 + share * step.1);
-                if let Ok(there) = self.at(tried, 1.0, Some(&balanced)) {
+                if let Ok(there) = self.at(tried, weight, Some(&balanced)) {
                     let next = miss(tried, &there);
                     if size(next) < size(missed) {
                         found = Some((tried, there, next, share));
@@ -85,7 +88,7 @@ impl<'a> Pulled<'a> {
                     break;
                 }
                 measured = true;
-                inverse = self.measured_inverse(spacings, missed, &balanced, &miss)?;
+                inverse = self.measured_inverse(spacings, missed, (&balanced, weight), &miss)?;
                 continue;
             };
             let step = (share * step.0, share * step.1);
@@ -118,11 +121,11 @@ impl<'a> Pulled<'a> {
         &self,
         spacings: Spacings,
         missed: (f64, f64),
-        balanced: &Balanced,
+        (balanced, weight): (&Balanced, f64),
         miss: &impl Fn(Spacings, &Balanced) -> (f64, f64),
     ) -> Result<[[f64; 2]; 2], ClothError> {
         let by = |moved: Spacings, step: f64| -> Result<(f64, f64), ClothError> {
-            let next = miss(moved, &self.at(moved, 1.0, Some(balanced))?);
+            let next = miss(moved, &self.at(moved, weight, Some(balanced))?);
             Ok(((next.0 - missed.0) / step, (next.1 - missed.1) / step))
         };
         let (ends, picks) = (PART * spacings.0, PART * spacings.1);

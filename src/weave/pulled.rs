@@ -1,6 +1,7 @@
 //! Stiff yarns under the pull of one state, and the heights at which they balance.
 //!
-//! A measured crimp is met by weighting the warp's energy: by `heights`, what holds the cloth in that shape is not asked.
+//! A measured crimp is met by weighting the warp's energy (`heights`): what holds the cloth in that shape is not asked, and
+//! it holds it in the other state too (`lengths`).
 
 use super::cloth::{Cloth, ClothError, ClothYarn};
 use super::found::FoundState;
@@ -132,7 +133,7 @@ impl<'a> Pulled<'a> {
     pub(super) fn balanced(self) -> Result<FoundState<'a>, ClothError> {
         let weave = self.weave;
         let spacings = (weave.warp.spacing_mm(), weave.weft.spacing_mm());
-        let (balanced, closed) = match (weave.warp.crimp, weave.weft.crimp) {
+        let (balanced, closed, warp_weight) = match (weave.warp.crimp, weave.weft.crimp) {
             (None, None) => {
                 let balanced = self.at(spacings, 1.0, None)?;
                 let closed = Closed {
@@ -140,7 +141,7 @@ impl<'a> Pulled<'a> {
                     jam_limited: balanced.jam_limited,
                     mismatch: None,
                 };
-                (balanced, closed)
+                (balanced, closed, 1.0)
             }
             (warp, weft) => self.with_crimp(spacings, warp, weft)?,
         };
@@ -149,16 +150,17 @@ impl<'a> Pulled<'a> {
             spacings,
             balanced,
             closed,
+            warp_weight,
         })
     }
 
-    /// The balance with a measured crimp, by weighting the warp's energy.
+    /// The balance with a measured crimp, and the weight of the warp's energy that gives it.
     fn with_crimp(
         &self,
         spacings: Spacings,
         warp: Option<f64>,
         weft: Option<f64>,
-    ) -> Result<(Balanced, Closed), ClothError> {
+    ) -> Result<(Balanced, Closed, f64), ClothError> {
         let by = match (warp, weft) {
             (Some(warp), Some(weft)) => Closure::BothCrimps(warp, weft),
             (Some(warp), None) => Closure::WarpCrimp(warp),
@@ -221,10 +223,14 @@ impl<'a> Pulled<'a> {
         }
         let balanced = weighted(weight, &best)?.unwrap_or(best);
         let (c1, c2) = self.crimps(spacings, &balanced);
+        // A crimp of nothing is met by less than can be measured.
+        let met = |crimp: f64, asked: f64| (crimp - asked).abs() <= 1e-6 * asked.max(1e-3);
         let reached = match by {
-            Closure::BothCrimps(warp, weft) => (c1 * weft - c2 * warp).abs() <= 1e-6 * warp * weft,
-            Closure::WarpCrimp(warp) => (c1 - warp).abs() <= 1e-6 * warp,
-            Closure::WeftCrimp(weft) => (c2 - weft).abs() <= 1e-6 * weft,
+            Closure::BothCrimps(warp, weft) => {
+                (c1 * weft - c2 * warp).abs() <= 1e-6 * warp.max(1e-3) * weft.max(1e-3)
+            }
+            Closure::WarpCrimp(warp) => met(c1, warp),
+            Closure::WeftCrimp(weft) => met(c2, weft),
             _ => true,
         };
         // Heights go as the square root of crimp.
@@ -236,10 +242,10 @@ impl<'a> Pulled<'a> {
         };
         let closed = Closed {
             by: SharedBy::Closure(by),
-            jam_limited: balanced.jam_limited || !reached,
+            jam_limited: !reached,
             mismatch,
         };
-        Ok((balanced, closed))
+        Ok((balanced, closed, weight.exp()))
     }
 
     /// Mean crimp of warp and weft.
