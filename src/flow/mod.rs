@@ -10,7 +10,7 @@ pub use assumptions::assumptions;
 pub use warnings::warnings;
 
 use crate::bend::{Bend, SystemName};
-use crate::judge::{Finding, State, judge};
+use crate::judge::{Count, Finding, Required, State, judge};
 use crate::spec::Spec;
 use crate::weave::{Cloth, ClothError, States, crowns};
 use crate::{drape, passage};
@@ -22,7 +22,9 @@ pub struct Outcome {
     pub cloth: Cloth,
     /// The cloth on the loom; absent for taut yarns.
     pub on_loom: Option<Cloth>,
-    /// Every bend, judged, in the order of the way from package to tool.
+    /// Every bend, in the order of the way from package to tool.
+    pub bends: Vec<Bend>,
+    /// Every bend, judged, in that order; heat has a finding of its own behind its bend's.
     pub findings: Vec<Finding>,
 }
 
@@ -54,6 +56,18 @@ pub fn run(spec: &Spec, flatness: f64) -> Result<Outcome, ClothError> {
 /// # Errors
 /// As [`run`].
 pub fn run_varied(spec: &Spec, varied: Varied) -> Result<Outcome, ClothError> {
+    run_counting(spec, varied, Count::Leave)
+}
+
+/// Runs the flow and counts broken filaments at every bend, for a report.
+///
+/// # Errors
+/// As [`run`].
+pub fn run_counted(spec: &Spec) -> Result<Outcome, ClothError> {
+    run_counting(spec, Varied::default(), Count::Tell)
+}
+
+fn run_counting(spec: &Spec, varied: Varied, count: Count) -> Result<Outcome, ClothError> {
     let States { cloth, on_loom } = States::build(&spec.weave, varied)?;
     let mut bends: Vec<Bend> = passage::stations(spec, &cloth);
     bends.extend(crowns(
@@ -63,19 +77,24 @@ pub fn run_varied(spec: &Spec, varied: Varied) -> Result<Outcome, ClothError> {
     ));
     bends.extend(drape::corners(spec, &cloth));
     bends.sort_by_key(|bend| bend.stage);
+    let required = Required {
+        reserve: spec.require.reserve,
+        count: spec.require.broken_per_m.map_or(count, Count::Allow),
+    };
     let mut findings = Vec::with_capacity(bends.len());
     for bend in &bends {
         let (system, woven) = match bend.system {
             SystemName::Warp => (&spec.weave.warp, &cloth.warp),
             SystemName::Weft => (&spec.weave.weft, &cloth.weft),
         };
-        let (finding, heat) = judge(bend, &system.yarn, &woven.laid, spec.require.reserve);
+        let (finding, heat) = judge(bend, &system.yarn, &woven.laid, required);
         findings.push(finding);
         findings.extend(heat);
     }
     Ok(Outcome {
         cloth,
         on_loom,
+        bends,
         findings,
     })
 }

@@ -8,25 +8,31 @@
 //! | `easing` | how far a filament stays away by its own stiffness, elastic and past yield |
 //! | `filament` | how each filament through the yarn's thickness is bent and pulled at a bend |
 //! | `limits` | the limits of brittle, fibrillar and ductile fibres under pull and bending |
+//! | `flaws` | how many breaks to expect of flaws under a stress |
+//! | `count` | broken filaments over a bend and all filaments |
 //! | `kinked` | the kinked section: elastic in tension, yielding in compression |
 //! | `code` | states, limits, and the stable codes of their methods |
 //! | `finding` | the limits ranked, and the finding itself |
 //! | `explain` | the method behind every code |
 
 mod code;
+mod count;
 mod easing;
 mod explain;
 mod filament;
 mod finding;
+mod flaws;
 mod kinked;
 mod limits;
 #[cfg(test)]
 mod tests;
 
 pub use code::{Code, Limit, State};
+pub use count::broken_per_m;
 pub use explain::{Explanation, explain};
 pub use filament::{Filament, Position, filaments};
 pub use finding::{Finding, Judged};
+pub use flaws::Flaws;
 pub use kinked::{Section, break_bend, kinked_section};
 pub use limits::{Check, KINK_STRAIN_LIMIT, checks};
 
@@ -34,14 +40,35 @@ use crate::bend::Bend;
 use crate::yarn::{Laid, Yarn};
 use std::sync::Arc;
 
-/// Judges one bend of a yarn: the worst limit over all filaments and stretches, and a finding of its own for a
-/// temperature above the fibre's limit.
+/// What must be met.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub struct Required {
+    /// Smallest reserve that counts as holding.
+    pub reserve: f64,
+    /// What is done about broken filaments.
+    pub count: Count,
+}
+
+/// What is done about broken filaments.
+#[derive(Debug, Clone, Copy, PartialEq)]
+pub enum Count {
+    /// They are not counted: nothing hangs on it, and counting takes time.
+    Leave,
+    /// They are counted and told.
+    Tell,
+    /// They are counted and held against the number allowed per metre of yarn.
+    Allow(f64),
+}
+
+/// Judges one bend of a yarn: the worst limit over all filaments and stretches, the broken filaments to expect, and a finding
+/// of its own for a temperature above the fibre's limit.
 pub fn judge(
     bend: &Bend,
     yarn: &Arc<Yarn>,
     laid: &Laid,
-    reserve: f64,
+    required: Required,
 ) -> (Finding, Option<Finding>) {
+    let reserve = required.reserve;
     let mut worst: Option<(Judged, Filament)> = None;
     for filament in filaments(bend, yarn, laid) {
         let judged = Judged::of(checks(yarn, &filament), reserve);
@@ -61,7 +88,17 @@ pub fn judge(
         let straight = Filament::straight(yarn.axial_stress_mpa(bend.pull_n));
         (Judged::of(checks(yarn, &straight), reserve), straight)
     });
-    let finding = Finding::new(bend, Arc::clone(yarn), filament, judged);
+    let flaws = Flaws::of(&yarn.fibre).filter(|_| required.count != Count::Leave);
+    let broken = flaws.map(|flaws| broken_per_m(&flaws, bend, yarn, laid));
+    let judged = match (flaws, broken, required.count) {
+        (Some(flaws), Some(expected), Count::Allow(allowed)) => {
+            let [a, b, c, _] = judged.checks;
+            let count = Check::filaments(expected, allowed, flaws.modulus);
+            Judged::of([a, b, c, count], reserve)
+        }
+        _ => judged,
+    };
+    let finding = Finding::new(bend, Arc::clone(yarn), filament, judged, broken);
     let heat = match (bend.temperature_c, yarn.fibre.max_temp_c) {
         (Some(here), Some(limit)) if here > limit => Some(finding.overheated(bend, here, limit)),
         _ => None,
