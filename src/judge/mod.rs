@@ -10,6 +10,7 @@
 //! | `limits` | the limits of brittle, fibrillar and ductile fibres under pull and bending |
 //! | `flaws` | how many breaks to expect of flaws under a stress |
 //! | `count` | broken filaments over a bend and all filaments |
+//! | `history` | what the way adds up to, bend after bend |
 //! | `kinked` | the kinked section: elastic in tension, yielding in compression |
 //! | `code` | states, limits, and the stable codes of their methods |
 //! | `finding` | the limits ranked, and the finding itself |
@@ -22,6 +23,7 @@ mod explain;
 mod filament;
 mod finding;
 mod flaws;
+mod history;
 mod kinked;
 mod limits;
 #[cfg(test)]
@@ -33,6 +35,7 @@ pub use explain::{Explanation, explain};
 pub use filament::{Filament, Position, filaments};
 pub use finding::{Finding, Judged};
 pub use flaws::Flaws;
+pub use history::{Step, history};
 pub use kinked::{Section, break_bend, kinked_section};
 pub use limits::{Check, KINK_STRAIN_LIMIT, checks};
 

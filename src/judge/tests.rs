@@ -10,7 +10,7 @@ fn fibre(name: &str) -> Fibre {
 }
 
 /// A yarn of this fibre, 0.2 mm thick and 1 mm wide.
-fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
+pub(super) fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
     let fibre = fibre(name);
     let given = CountGiven {
         linear_density_tex: None,
@@ -37,7 +37,7 @@ fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
     }
 }
 
-fn bend(radius_mm: f64, pull_n: f64) -> Bend {
+pub(super) fn bend(radius_mm: f64, pull_n: f64) -> Bend {
     Bend {
         place: "by hand".into(),
         stage: Stage::Weaving,
