@@ -11,7 +11,7 @@
 //! ```
 //!
 //! Both are integrals over f from 0 to where the stress vanishes, with 1/pi or (2/pi) sin² f as weight; by Gauss-Legendre
-//! in four parts, cut off where less than e^-40 is left. With t = s_b/(s_a + s_b) it is (s_a + s_b)^m times a function of t
+//! in two to four parts, cut off where less than e^-40 is left. With t = s_b/(s_a + s_b) it is (s_a + s_b)^m times a function of t
 //! alone, which a fibre keeps as Chebyshev series: three up to 1/2, where all of the section is pulled, and one beyond. Homogeneous
 //! of degree m in the stress: the m-th root of allowed over expected breaks is a reserve on the stress scale.
 //!
@@ -29,8 +29,11 @@ use std::f64::consts::PI;
 /// Ranges of t of the Chebyshev series, and their terms.
 const BOUNDS: [f64; 5] = [0.0, 0.06, 0.2, 0.5, 1.0];
 const TERMS: usize = 14;
-/// Parts of the integral.
-const PARTS: usize = 4;
+/// Parts of the integral: the larger m, the narrower its peak.
+fn parts(m: f64) -> usize {
+    if m <= 12.0 { 2 } else { 4 }
+}
+
 /// The integrand below e^-40 of its largest is left out.
 const LEFT: f64 = 40.0;
 
@@ -153,7 +156,7 @@ pub(super) fn mean_power(a: f64, b: f64, m: f64, in_volume: bool) -> f64 {
     }
     let end = (-a / b).clamp(-1.0, 1.0).acos();
     let cut = (1.0 - LEFT * top / (m * b)).max(-1.0).acos();
-    let sum: f64 = places(0.0, end.min(cut), PARTS)
+    let sum: f64 = places(0.0, end.min(cut), parts(m))
         .map(|(f, weight)| {
             let cosine = f.cos();
             let share = ((a + b * cosine) / top).max(0.0).powf(m);

@@ -46,6 +46,8 @@ struct Length {
     /// On all of the way so far, every bend on the same side; and in the cloth alone.
     way: Met,
     cloth: Met,
+    /// What both have broken so far, per metre.
+    broken: (f64, f64),
 }
 
 /// What every bend of a yarn's way adds, in its order. All bends are of this yarn.
@@ -67,6 +69,7 @@ pub fn history(flaws: &Flaws, bends: &[&Bend], yarn: &Yarn, laid: &Laid) -> Vec<
             share: pair[1] - pair[0],
             way: Met::new(),
             cloth: Met::new(),
+            broken: (0.0, 0.0),
         })
         .collect();
     let shares = |stretch: &Stretch, bend: &Bend| -> Vec<f64> {
@@ -118,15 +121,17 @@ pub fn history(flaws: &Flaws, bends: &[&Bend], yarn: &Yarn, laid: &Laid) -> Vec<
                         (met, alone)
                     }
                 };
-                let before = broken(&length.way);
-                raise(&mut length.way, &loaded);
-                let new = length.share * (broken(&length.way) - before);
+                let before = length.broken;
                 step.alone_per_m += length.share * alone;
-                step.new_least_per_m += new;
+                if raise(&mut length.way, &loaded) {
+                    length.broken.0 = broken(&length.way);
+                }
+                step.new_least_per_m += length.share * (length.broken.0 - before.0);
                 if in_cloth {
-                    let before = broken(&length.cloth);
-                    raise(&mut length.cloth, &loaded);
-                    step.new_most_per_m += length.share * (broken(&length.cloth) - before);
+                    if raise(&mut length.cloth, &loaded) {
+                        length.broken.1 = broken(&length.cloth);
+                    }
+                    step.new_most_per_m += length.share * (length.broken.1 - before.1);
                 } else {
                     step.new_most_per_m += length.share * alone;
                 }
@@ -202,14 +207,18 @@ fn loaded(
     met
 }
 
-fn raise(met: &mut Met, by: &Met) {
+/// Raises what was met to what is met now; whether any of it was more.
+fn raise(met: &mut Met, by: &Met) -> bool {
     if met.is_empty() {
         met.clone_from(by);
-        return;
+        return true;
     }
+    let mut raised = false;
     for (so_far, now) in met.iter_mut().zip(by) {
+        raised |= *now > *so_far;
         *so_far = so_far.max(*now);
     }
+    raised
 }
 
 #[cfg(test)]

@@ -45,22 +45,22 @@ use std::sync::Arc;
 
 /// What must be met.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub struct Required {
+pub struct Required<'a> {
     /// Smallest reserve that counts as holding.
     pub reserve: f64,
     /// What is done about broken filaments.
-    pub count: Count,
+    pub count: Count<'a>,
 }
 
 /// What is done about broken filaments.
 #[derive(Debug, Clone, Copy, PartialEq)]
-pub enum Count {
-    /// They are not counted: nothing hangs on it, and counting takes time.
+pub enum Count<'a> {
+    /// They are not counted: nothing hangs on it and counting takes time, or the scatter of strength is not known.
     Leave,
     /// They are counted and told.
-    Tell,
+    Tell(&'a Flaws),
     /// They are counted and held against the number allowed per metre of yarn.
-    Allow(f64),
+    Allow(&'a Flaws, f64),
 }
 
 /// Judges one bend of a yarn: the worst limit over all filaments and stretches, the broken filaments to expect, and a finding
@@ -69,7 +69,7 @@ pub fn judge(
     bend: &Bend,
     yarn: &Arc<Yarn>,
     laid: &Laid,
-    required: Required,
+    required: Required<'_>,
 ) -> (Finding, Option<Finding>) {
     let reserve = required.reserve;
     let mut worst: Option<(Judged, Filament)> = None;
@@ -91,15 +91,15 @@ pub fn judge(
         let straight = Filament::straight(yarn.axial_stress_mpa(bend.pull_n));
         (Judged::of(checks(yarn, &straight), reserve), straight)
     });
-    let flaws = Flaws::of(&yarn.fibre).filter(|_| required.count != Count::Leave);
-    let broken = flaws.map(|flaws| broken_per_m(&flaws, bend, yarn, laid));
-    let judged = match (flaws, broken, required.count) {
-        (Some(flaws), Some(expected), Count::Allow(allowed)) => {
+    let (broken, judged) = match required.count {
+        Count::Leave => (None, judged),
+        Count::Tell(flaws) => (Some(broken_per_m(flaws, bend, yarn, laid)), judged),
+        Count::Allow(flaws, allowed) => {
+            let expected = broken_per_m(flaws, bend, yarn, laid);
             let [a, b, c, _] = judged.checks;
             let count = Check::filaments(expected, allowed, flaws.modulus);
-            Judged::of([a, b, c, count], reserve)
+            (Some(expected), Judged::of([a, b, c, count], reserve))
         }
-        _ => judged,
     };
     let finding = Finding::new(bend, Arc::clone(yarn), filament, judged, broken);
     let heat = match (bend.temperature_c, yarn.fibre.max_temp_c) {

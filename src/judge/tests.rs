@@ -57,7 +57,7 @@ pub(super) fn bend(radius_mm: f64, pull_n: f64) -> Bend {
 }
 
 /// A reserve of 2, and no filament counted.
-const HOLDING: Required = Required {
+const HOLDING: Required<'_> = Required {
     reserve: 2.0,
     count: Count::Leave,
 };
