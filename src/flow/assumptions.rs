@@ -87,7 +87,7 @@ pub fn assumptions(spec: &Spec, outcome: &Outcome) -> Vec<String> {
         ));
     }
     said.push(
-        "pressure of upper filaments on lower ones, abrasion, repeated bending and the scatter of strength are left out"
+        "pressure of upper filaments on lower ones, abrasion and repeated bending are left out; strength scatters only where broken filaments are counted"
             .to_owned(),
     );
     said
