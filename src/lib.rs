@@ -12,6 +12,7 @@ pub mod pattern;
 pub mod quantity;
 pub mod report;
 pub mod root;
+pub mod route;
 pub mod span;
 pub mod spec;
 pub mod study;
