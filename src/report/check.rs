@@ -7,6 +7,7 @@ use super::cautions::cautions;
 use crate::bend::{Meets, Stage};
 use crate::flow::{Outcome, RigidityBound, Variation, assumptions, warnings};
 use crate::judge::{Finding, Limit, State};
+use crate::passage::{reed_strokes, sheddings};
 use crate::quantity::rounded;
 use crate::spec::{PathModel, Spec};
 use crate::weave::{Closure, Cloth, ClothYarn, SharedBy};
@@ -126,6 +127,10 @@ pub struct SystemReport {
     pub tension_n: Option<f64>,
     #[serde(skip_serializing_if = "Option::is_none")]
     pub contact_force_n: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub sheddings: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reed_strokes: Option<f64>,
 }
 
 /// One bend in the report.
@@ -341,7 +346,11 @@ impl ClothReport {
             crimp_mismatch: cloth.closed.mismatch.map(rounded),
             thickness_factor: cloth.thickness_factor.map(rounded),
             raised_packing: cloth.raised_packing.map(rounded),
-            warp: SystemReport::new(&weave.warp.yarn, &cloth.warp),
+            warp: SystemReport {
+                sheddings: sheddings(weave).map(rounded),
+                reed_strokes: reed_strokes(spec).map(rounded),
+                ..SystemReport::new(&weave.warp.yarn, &cloth.warp)
+            },
             weft: SystemReport::new(&weave.weft.yarn, &cloth.weft),
             thickness_mm: rounded(cloth.thickness_mm),
             free_height_mm: cloth.free_height_mm.map(rounded),
@@ -376,6 +385,8 @@ impl SystemReport {
             bending_rigidity_n_mm2: rounded(yarn.rigidity_n_mm2(&woven.laid)),
             tension_n: woven.solved().map(|system| rounded(system.pull_n)),
             contact_force_n: woven.solved().map(|system| rounded(system.push_n)),
+            sheddings: None,
+            reed_strokes: None,
         }
     }
 }

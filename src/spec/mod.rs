@@ -11,6 +11,8 @@ mod field;
 pub mod keys;
 mod problem;
 mod reader;
+mod route;
+mod shed;
 mod tree;
 mod way;
 mod weave;
@@ -18,6 +20,7 @@ mod yarn;
 
 pub use document::{Document, KeyPath, NewValue, SetError};
 pub use problem::Problem;
+pub use shed::Shed;
 pub use way::{Passage, Tool};
 pub use weave::{
     DEFAULT_PATH, DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, PathModel, SettAt, System,

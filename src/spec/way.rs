@@ -4,9 +4,10 @@ use super::field::Bound;
 use super::keys::{PASSAGE, TOOL};
 use super::problem::Problem;
 use super::reader::Table;
+use super::route::{Laid, lay, read_routes};
 use super::weave::{Weave, read_tension};
 use crate::bend::{Stage, SystemName};
-use crate::quantity::Dimension;
+use crate::quantity::{Dimension, parse};
 use crate::span::Span;
 
 /// Friction where neither spec nor fibre has one (common practice, no source).
@@ -36,10 +37,27 @@ pub struct Passage {
     pub tension_n: Option<f64>,
     /// Temperature of the yarn there, degrees C.
     pub temperature_c: Option<f64>,
+    /// Way of the reed along the warp at every pick, mm, where the route tells it.
+    pub reed_travel_mm: Option<f64>,
+    /// The ready route whose station it is.
+    pub route: Option<&'static str>,
+    /// Its number among the spec's own `[[passage]]`, from 1; `None` for a station that the spec takes as its route
+    /// has it.
+    pub number: Option<usize>,
     /// The line that governs: its radius.
     pub radius_span: Span,
     /// The temperature's place, where given.
     pub temperature_span: Option<Span>,
+}
+
+impl Passage {
+    /// The path of one of its keys, by which a document finds or adds it.
+    pub fn key(&self, last: &str) -> String {
+        match self.number {
+            Some(number) => format!("passage.{number}.{last}"),
+            None => format!("passage.{} {}.{last}", self.system.word(), self.name),
+        }
+    }
 }
 
 /// One corner the cloth is laid over.
@@ -55,7 +73,7 @@ pub struct Tool {
     pub radius_span: Span,
 }
 
-/// Reads every `[[passage]]`.
+/// Reads `route` and every `[[passage]]`: the stations of the routes, then the spec's other passages.
 pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
     let tables = spec.tables("passage", PASSAGE);
     if let Some(one_too_many) = tables.get(MOST_PASSAGES) {
@@ -69,13 +87,16 @@ pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
         );
         return Vec::new();
     }
-    let mut passages: Vec<Passage> = Vec::new();
-    for table in tables {
-        let Some(passage) = read_passage(&table, weave) else {
+    let laid = lay(&tables, &read_routes(spec), weave);
+    let mut passages: Vec<Passage> = Vec::with_capacity(laid.len());
+    for laid in &laid {
+        let table = spec.beside(&laid.values, laid.span.clone(), laid.what.clone(), PASSAGE);
+        let Some(passage) = read_passage(&table, weave, laid) else {
             continue;
         };
-        // Reports, advice and varied keys find a passage by its name.
-        if passages.iter().any(|other| other.name == passage.name) {
+        // Reports, advice and varied keys find a passage by its yarn and name.
+        let same = |other: &Passage| other.name == passage.name && other.system == passage.system;
+        if passages.iter().any(same) {
             let span = table
                 .text("name")
                 .given()
@@ -83,7 +104,11 @@ pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
             spec.push(
                 Problem::at(
                     span,
-                    format!("two passages are named `{}`", passage.name),
+                    format!(
+                        "two passages of the {} are named `{}`",
+                        passage.system.word(),
+                        passage.name
+                    ),
                     "there already",
                 )
                 .help("give each its own name, \"heald eye, back shaft\""),
@@ -94,7 +119,7 @@ pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
     passages
 }
 
-fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
+fn read_passage(table: &Table<'_>, weave: Option<&Weave>, laid: &Laid) -> Option<Passage> {
     let systems = [("warp", SystemName::Warp), ("weft", SystemName::Weft)];
     let stages = [
         ("winding", Stage::Winding),
@@ -157,6 +182,13 @@ fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
         tension_n,
         temperature_span: temperature.as_ref().map(|placed| placed.span.clone()),
         temperature_c: temperature.map(|placed| placed.value),
+        reed_travel_mm: laid
+            .travel
+            .as_deref()
+            .and_then(|text| parse(text, &[Dimension::Length]).ok())
+            .map(|travel| travel.value),
+        route: laid.route,
+        number: laid.number,
         radius_span: radius.span,
     })
 }
