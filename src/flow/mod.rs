@@ -38,7 +38,7 @@ pub struct Variation {
 /// Runs the flow; `flatness` varies the assumed outlines (1 for the spec as it stands).
 ///
 /// # Errors
-/// Where there is no cloth: the yarns do not fit or do not interlace.
+/// Where there is no cloth: the yarns do not fit or do not interlace; or it has no room inside a corner.
 pub fn run(spec: &Spec, flatness: f64) -> Result<Outcome, ClothError> {
     run_varied(
         spec,
@@ -61,7 +61,7 @@ pub fn run_varied(spec: &Spec, varied: Varied) -> Result<Outcome, ClothError> {
         &cloth,
         on_loom.as_ref().unwrap_or(&cloth),
     ));
-    bends.extend(drape::corners(spec, &cloth));
+    bends.extend(drape::corners(spec, &cloth)?);
     bends.sort_by_key(|bend| bend.stage);
     let mut findings = Vec::with_capacity(bends.len());
     for bend in &bends {

@@ -12,7 +12,9 @@
 //! with the binding b: free filaments (b = 0) ease each about its own axis, a bonded yarn as a whole. k_free is what
 //! an elastic filament (with binding: the yarn) needs to get round at all under its pull (`easing`). A twisted
 //! yarn's filaments lie on a helix: `path::helix`, the exact form for the centreline's radius R + t/2; eased, at most
-//! the straight helix's curvature and k_free together. A larger bend on top (a corner of a tool) adds its curvature.
+//! the straight helix's curvature and k_free together. A larger bend on top (a corner of a tool) adds its curvature; one to
+//! the other side (the corner's inner face) takes it off, and what is left is judged by its size, whichever side it
+//! turns to: then the outermost filament, bent least by the crown, may be bent most.
 //!
 //! Free filaments carry the same pull and the innermost is bent most, so it stands for all. In a bonded yarn the
 //! stresses are fractions linear in y, so their largest lies at one of both ends, and both are judged. Left out: pressure of the upper filaments on the lower, migration, and in flat
@@ -138,9 +140,9 @@ fn on_stretch(
     let axial = |y: f64| pull + yarn.fibre.modulus_mpa * yarn.binding * y * centre;
     let filament = |position: Position, y: f64, lying: f64, eased: f64| Filament {
         position,
-        curvature_per_mm: lying.min(eased) + added,
-        lying_per_mm: lying + added,
-        free_per_mm: free_per_mm.map(|free| free + added),
+        curvature_per_mm: (lying.min(eased) + added).abs(),
+        lying_per_mm: (lying + added).abs(),
+        free_per_mm: free_per_mm.map(|free| (free + added).abs()),
         axial_stress_mpa: axial(y),
     };
     let at = |position: Position, e: f64| {
@@ -162,20 +164,22 @@ fn on_stretch(
         };
         // The filament passes the inside and the outside in turn: both signs of the bonded strain are met.
         let of = |y: f64| {
-            Some(filament(
-                Position::Surface,
-                y,
-                on_surface,
-                straight + eased(-r),
-            ))
+            let mut found = filament(Position::Surface, y, on_surface, straight + eased(-r));
+            if centre < 0.0 {
+                // Bent to the other side it is the same helix on the same curve.
+                found.curvature_per_mm =
+                    bent_helix_peak_per_mm(r, yarn.twist_per_mm, -1.0 / centre);
+                found.lying_per_mm = found.curvature_per_mm;
+            }
+            Some(found)
         };
         [of(-r), of(r).filter(|_| yarn.binding > 0.0)]
     } else {
-        // Free filaments all carry the same pull, and none is bent more than the innermost.
-        let bonded = yarn.binding > 0.0;
+        // Free filaments all carry the same pull, and none is bent more than the innermost, unless to the other side.
+        let both = yarn.binding > 0.0 || added < 0.0;
         [
             Some(at(Position::Inside, inside)),
-            bonded.then(|| at(Position::Outside, outside)),
+            both.then(|| at(Position::Outside, outside)),
         ]
     };
     found.into_iter().flatten()

@@ -436,6 +436,18 @@ pub const TOOL: &[Key] = &[
         "both systems bent fully",
         "direction of the corner's edge",
     ),
+    key(
+        "corner",
+        "\"outside\" or \"inside\"",
+        "outside",
+        "over a convex edge (male tool) or into a concave one (female tool)",
+    ),
+    key(
+        "layer",
+        "whole number, 3",
+        "1",
+        "which layer of the lay, counted from the tool, each as thick as the cloth",
+    ),
 ];
 
 /// `[require]`.

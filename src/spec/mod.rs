@@ -21,7 +21,7 @@ mod yarn;
 pub use document::{Document, KeyPath, NewValue, SetError};
 pub use problem::Problem;
 pub use shed::Shed;
-pub use way::{Passage, Tool};
+pub use way::{Corner, Passage, Tool};
 pub use weave::{
     DEFAULT_PATH, DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, PathModel, SettAt, System,
     Weave,

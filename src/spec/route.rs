@@ -272,3 +272,127 @@ fn no_station(table: &Table<'_>, routes: &Routes) -> Option<Problem> {
         .help("a passage of its own needs `radius` and `turn`"),
     )
 }
+
+#[cfg(test)]
+mod tests {
+    use crate::bend::{Stage, SystemName};
+    use crate::pattern::Weaves;
+    use crate::span::SourceText;
+    use crate::spec::{Document, KeyPath, NewValue, Passage, Spec};
+
+    fn text(fibre: &str, route: &str, passages: &str) -> String {
+        format!(
+            "name = \"n\"\nroute = {route}\n[yarn.y]\nfibre = \"{fibre}\"\nlinear_density = \"68 tex\"\n[weave]\n\
+             pattern = \"plain\"\nwarp = {{ yarn = \"y\", sett = \"10 /cm\" }}\nweft = {{ yarn = \"y\", sett = \"10 /cm\" }}\n{passages}"
+        )
+    }
+
+    fn read(text: &str) -> Spec {
+        Spec::read(SourceText::new("n", text), &Weaves::builtin()).unwrap()
+    }
+
+    fn at<'s>(spec: &'s Spec, system: SystemName, name: &str) -> &'s Passage {
+        let here = |passage: &&Passage| passage.system == system && passage.name == name;
+        spec.passages.iter().find(here).unwrap()
+    }
+
+    #[test]
+    fn stations_follow_one_another_and_stand_at_their_route() {
+        let spec = read(&text(
+            "e-glass",
+            "[\"creel-warping\", \"rapier-weaving\"]",
+            "",
+        ));
+        let stages: Vec<Stage> = spec.passages.iter().map(|p| p.stage).collect();
+        assert!(stages.is_sorted() && stages.contains(&Stage::Warping));
+        let eye = at(&spec, SystemName::Warp, "heald eye");
+        assert_eq!(
+            (eye.radius_mm, eye.route, eye.number),
+            (0.3, Some("rapier-weaving"), None)
+        );
+        assert_eq!(
+            &spec.source.text[eye.radius_span.clone()],
+            "\"rapier-weaving\""
+        );
+        let creel = at(&spec, SystemName::Warp, "creel eyelet");
+        // 1 cN/tex on 68 tex.
+        assert!((creel.tension_n.unwrap() - 0.68).abs() < 1e-12);
+        assert!((at(&spec, SystemName::Warp, "backrest").friction - 0.05).abs() < 1e-12);
+    }
+
+    #[test]
+    fn the_family_of_the_yarn_decides() {
+        let carbon = read(&text("carbon-pan-sm", "\"rapier-weaving\"", ""));
+        assert_eq!(at(&carbon, SystemName::Warp, "heald eye").radius_mm, 1.0);
+        let own = text(
+            "own",
+            "\"rapier-weaving\"",
+            "[fibre.own]\nlike = \"alumina\"\n",
+        );
+        assert_eq!(
+            at(&read(&own), SystemName::Warp, "heald eye").radius_mm,
+            1.0
+        );
+    }
+
+    #[test]
+    fn a_station_of_both_yarns_stands_there_for_each() {
+        let spec = read(&text("e-glass", "\"winding\"", ""));
+        for system in [SystemName::Warp, SystemName::Weft] {
+            assert_eq!(at(&spec, system, "traverse guide").radius_mm, 2.0);
+        }
+    }
+
+    #[test]
+    fn a_passage_overrides_what_it_gives() {
+        let over = "[[passage]]\nyarn = \"warp\"\nname = \"whip roll\"\nradius = \"20 mm\"\nturn = \"5 deg\"\n\
+            [[passage]]\nyarn = \"warp\"\nname = \"heald eye\"\nradius = \"0.5 mm\"\ntemperature = \"310 degC\"\n";
+        let spec = read(&text("e-glass", "\"rapier-weaving\"", over));
+        let eye = at(&spec, SystemName::Warp, "heald eye");
+        assert_eq!(
+            (eye.radius_mm, eye.temperature_c, eye.number),
+            (0.5, Some(310.0), Some(2))
+        );
+        assert!((eye.turn_rad - 12f64.to_radians()).abs() < 1e-12);
+        assert_eq!(&spec.source.text[eye.radius_span.clone()], "\"0.5 mm\"");
+        assert_eq!(
+            &spec.source.text[eye.temperature_span.clone().unwrap()],
+            "\"310 degC\""
+        );
+        // It keeps its place on the way; the other one comes behind the route.
+        assert_eq!(spec.passages.last().unwrap().name, "whip roll");
+        assert_eq!(
+            spec.passages
+                .iter()
+                .filter(|p| p.name == "heald eye")
+                .count(),
+            1
+        );
+    }
+
+    #[test]
+    fn a_study_overrides_stations_of_a_route() {
+        let weaves = Weaves::builtin();
+        let text = text("e-glass", "[\"winding\", \"rapier-weaving\"]", "");
+        let mut document = Document::parse(SourceText::new("n", text)).unwrap();
+        let mut set = |key: &str, value: &str| {
+            let value = NewValue::Text(value.to_owned());
+            document.set(&KeyPath::parse(key).unwrap(), &value)
+        };
+        set("passage.heald eye.radius", "0.7 mm").unwrap();
+        set("passage.weft traverse guide.radius", "3 mm").unwrap();
+        set("passage.weft traverse guide.turn", "20 deg").unwrap();
+        let unknown = set("passage.heald eyes.radius", "1 mm")
+            .unwrap_err()
+            .to_string();
+        assert!(unknown.ends_with("the nearest is `heald eye`"), "{unknown}");
+        let spec = document.spec(&weaves).unwrap();
+        assert_eq!(at(&spec, SystemName::Warp, "heald eye").radius_mm, 0.7);
+        assert_eq!(at(&spec, SystemName::Warp, "traverse guide").radius_mm, 2.0);
+        let guide = at(&spec, SystemName::Weft, "traverse guide");
+        assert!(
+            (guide.radius_mm - 3.0).abs() < 1e-12
+                && (guide.turn_rad - 20f64.to_radians()).abs() < 1e-12
+        );
+    }
+}

@@ -60,6 +60,15 @@ impl Passage {
     }
 }
 
+/// To which side the cloth is laid round a corner.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Corner {
+    /// Over a convex (male) edge: the tool lies inside the bend.
+    Outside,
+    /// Into a concave (female) edge: the tool lies outside of the bend.
+    Inside,
+}
+
 /// One corner the cloth is laid over.
 #[derive(Debug, Clone, PartialEq)]
 pub struct Tool {
@@ -67,6 +76,10 @@ pub struct Tool {
     pub name: String,
     /// Radius of the corner, mm.
     pub radius_mm: f64,
+    /// To which side the cloth is laid round it.
+    pub corner: Corner,
+    /// Which layer of the lay, counted from the tool, from 1.
+    pub layer: u32,
     /// Direction of the corner's edge from the warp, rad; `None` where it is not known.
     pub bend_axis_rad: Option<f64>,
     /// The line that governs: its radius.
@@ -203,8 +216,13 @@ pub fn read_tools(spec: &Table<'_>) -> Vec<Tool> {
         let axis = table
             .measure("bend_axis", Dimension::Angle, Bound::Any)
             .value();
+        let corners = [("outside", Corner::Outside), ("inside", Corner::Inside)];
+        let corner = table.word("corner", &corners).value();
+        let layer = table.count("layer").value();
         if let (Some(name), Some(radius)) = (name, radius) {
             tools.push(Tool {
+                corner: corner.unwrap_or(Corner::Outside),
+                layer: layer.unwrap_or(1),
                 name: name.value,
                 radius_mm: radius.value,
                 bend_axis_rad: axis,

@@ -3,6 +3,7 @@
 use super::lever::{Better, Lever};
 use super::margin::Target;
 use crate::bend::{Stage, SystemName};
+use crate::drape::is_at;
 use crate::flow::Outcome;
 use crate::passage::OPEN_SHED;
 use crate::spec::{KeyPath, Spec, System};
@@ -99,10 +100,7 @@ pub fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Lever>> {
     if place == OPEN_SHED {
         return shed(spec);
     }
-    let corner = spec
-        .tools
-        .iter()
-        .position(|tool| place.starts_with(&format!("{}, outer", tool.name)));
+    let corner = spec.tools.iter().position(|tool| is_at(tool, place));
     let of_corner = |index: usize| {
         let key = format!("tool.{}.radius", index + 1);
         Lever::of_key(
