@@ -346,8 +346,14 @@ fn way(spec: &Spec) -> Vec<String> {
             guessed.join(", ")
         ));
     }
-    let elsewhere =
-        |passage: &&Passage| passage.stage != Stage::Weaving && passage.tension_n.is_none();
+    // A tension anywhere on a stage is the chain's for the whole of it.
+    let chained = |passage: &Passage| {
+        spec.passages.iter().any(|other| {
+            (other.system, other.stage) == (passage.system, passage.stage)
+                && other.tension_n.is_some()
+        })
+    };
+    let elsewhere = |passage: &&Passage| passage.stage != Stage::Weaving && !chained(passage);
     if let Some(passage) = spec.passages.iter().find(elsewhere) {
         said.push(format!(
             "pull while {} taken as that of weaving where no station gives one",
