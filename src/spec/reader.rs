@@ -150,7 +150,14 @@ impl<'a> Table<'a> {
             format!("{wanted} needed"),
         );
         if wanted == "a table" {
-            problem = problem.help(format!("write `[{key}]`"));
+            let inside = self
+                .what
+                .strip_prefix('[')
+                .and_then(|what| what.strip_suffix(']'));
+            problem = problem.help(match inside {
+                Some(outer) => format!("write `[{outer}.{key}]`"),
+                None => format!("write `[{key}]`"),
+            });
         }
         self.push(problem);
         Field::Wrong

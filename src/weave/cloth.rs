@@ -178,7 +178,8 @@ pub enum ClothError {
     },
     /// A layer that has no room inside of a tool's corner.
     #[error(
-        "layer {layer} has no room inside the corner `{name}`: {layer} layers of {thickness_mm:.3} mm close its radius of {radius_mm} mm"
+        "layer {layer} has no room inside the corner `{name}`: its middle lies {:.3} mm from the tool, the corner's radius is {radius_mm} mm",
+        (f64::from(*layer) - 0.5) * thickness_mm
     )]
     Corner {
         /// What the spec calls the corner.
