@@ -119,7 +119,7 @@ fn a_finer_filament_comes_with_its_count() {
 /// Stations that only a route has are named and changed too, and so is the shed: each proposal holds when it is set.
 #[test]
 fn advice_reaches_the_stations_of_a_route_and_the_shed() {
-    let text = "name = \"t\"\nroute = [\"creel-warping\", \"shuttle-weaving\"]\n[yarn.y]\nfibre = \"carbon-pitch-uhm\"\n\
+    let text = "name = \"t\"\nroute = [\"winding\", \"creel-warping\", \"rapier-weaving\"]\n[yarn.y]\nfibre = \"carbon-pitch-uhm\"\n\
         linear_density = \"320 tex\"\nfilaments = 2000\n[weave]\npattern = \"twill 2/2 z\"\n\
         shed = { depth = \"40 mm\", front = \"150 mm\", back = \"500 mm\", let_off = 0.5 }\n\
         warp = { yarn = \"y\", sett = \"5 /cm\" }\nweft = { yarn = \"y\", sett = \"5 /cm\" }\n";
@@ -139,7 +139,11 @@ fn advice_reaches_the_stations_of_a_route_and_the_shed() {
         }
         keys.extend(proposal.set.into_iter().map(|(key, _)| key));
     }
-    for key in ["passage.weft shuttle eye.radius", "weave.shed.let_off"] {
+    for key in [
+        "passage.weft traverse guide.radius",
+        "passage.warp traverse guide.radius",
+        "weave.shed.let_off",
+    ] {
         assert!(keys.iter().any(|known| known == key), "{key} {keys:?}");
     }
     let bounds = limits(&document, &weaves, &spec, &outcome);

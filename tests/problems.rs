@@ -182,6 +182,11 @@ const CASES: &[(&str, &str, &str)] = &[
         "route = [\"winding\", \"maypole-braiding\"]\n[fibre.own]",
     ),
     (
+        "one route twice",
+        "[fibre.own]",
+        "route = [\"winding\", \"Winding\"]\n[fibre.own]",
+    ),
+    (
         "two routes with one station",
         "[fibre.own]",
         "route = [\"rapier-weaving\", \"shuttle-weaving\"]\n[fibre.own]",
@@ -305,7 +310,7 @@ const CASES: &[(&str, &str, &str)] = &[
 
 #[test]
 fn every_wrong_spec_gets_its_message() {
-    assert!(CASES.len() >= 78, "the number of cases never falls");
+    assert!(CASES.len() >= 79, "the number of cases never falls");
     for (name, from, to) in CASES {
         let mut spoilt = GOOD.replacen(from, to, 1);
         if name.starts_with("too many") {

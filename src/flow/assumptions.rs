@@ -338,7 +338,7 @@ fn way(spec: &Spec) -> Vec<String> {
         .passages
         .iter()
         .filter(|passage| !passage.friction_given)
-        .map(|passage| format!("{} {}", passage.name, plain(passage.friction, 3)))
+        .map(|passage| format!("{} {}", passage.place, plain(passage.friction, 3)))
         .collect();
     if !guessed.is_empty() {
         said.push(format!(

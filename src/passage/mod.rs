@@ -87,7 +87,7 @@ fn station(passage: &Passage, cloth: &Cloth, pull_n: f64) -> Bend {
     };
     let centre_mm = passage.radius_mm + 0.5 * laid.outline.thickness_mm();
     Bend {
-        place: passage.name.clone().into(),
+        place: passage.place.clone().into(),
         stage: passage.stage,
         system: passage.system,
         profile: vec![Stretch {
@@ -113,6 +113,7 @@ mod tests {
     fn station(friction: f64, turn_deg: f64, tension_n: Option<f64>) -> Passage {
         Passage {
             name: "station".into(),
+            place: "station".into(),
             system: SystemName::Warp,
             stage: Stage::Weaving,
             radius_mm: 1.0,

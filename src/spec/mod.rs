@@ -9,6 +9,7 @@ mod document;
 mod fibre;
 mod field;
 pub mod keys;
+mod laid;
 mod problem;
 mod reader;
 mod route;

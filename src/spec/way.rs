@@ -2,9 +2,10 @@
 
 use super::field::Bound;
 use super::keys::{PASSAGE, TOOL};
+use super::laid::{Laid, lay};
 use super::problem::Problem;
 use super::reader::Table;
-use super::route::{Laid, lay, read_routes};
+use super::route::read_routes;
 use super::weave::{Weave, read_tension};
 use crate::bend::{Stage, SystemName};
 use crate::quantity::{Dimension, parse};
@@ -21,6 +22,8 @@ const MOST_PASSAGES: usize = 500;
 pub struct Passage {
     /// What the spec calls it.
     pub name: String,
+    /// What reports call it: its name, with the yarn where both yarns have one of that name.
+    pub place: String,
     /// Which yarn runs over it.
     pub system: SystemName,
     /// Where on the way.
@@ -129,7 +132,25 @@ pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
         }
         passages.push(passage);
     }
+    name_places(&mut passages);
     passages
+}
+
+/// Tells apart the places of passages of one name on the ways of both yarns.
+fn name_places(passages: &mut [Passage]) {
+    let shared: Vec<bool> = passages
+        .iter()
+        .map(|passage| {
+            let twin =
+                |other: &Passage| other.name == passage.name && other.system != passage.system;
+            passages.iter().any(twin)
+        })
+        .collect();
+    for (passage, shared) in passages.iter_mut().zip(shared) {
+        if shared {
+            passage.place = format!("{}, {}", passage.name, passage.system.word());
+        }
+    }
 }
 
 fn read_passage(table: &Table<'_>, weave: Option<&Weave>, laid: &Laid) -> Option<Passage> {
@@ -185,6 +206,7 @@ fn read_passage(table: &Table<'_>, weave: Option<&Weave>, laid: &Laid) -> Option
     }
     let default_friction = yarn.and_then(|yarn| yarn.fibre.friction_on_guide);
     Some(Passage {
+        place: name.value.clone(),
         name: name.value,
         system: system.value,
         stage: stage.unwrap_or(Stage::Weaving),

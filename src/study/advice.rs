@@ -88,7 +88,7 @@ fn cooler(spec: &Spec, finding: &Finding, here_c: f64, limit_c: f64) -> Proposal
     let passage = spec
         .passages
         .iter()
-        .find(|passage| passage.name == finding.place && passage.system == finding.system)
+        .find(|passage| passage.place == finding.place && passage.system == finding.system)
         .map(|passage| passage.key("temperature"));
     Proposal {
         place: Target::of(finding).name(),

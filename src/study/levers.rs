@@ -55,7 +55,7 @@ pub fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Lever>> {
     if let Some(passage) = spec
         .passages
         .iter()
-        .find(|passage| passage.name == place && passage.system == of)
+        .find(|passage| passage.place == place && passage.system == of)
     {
         let key = |last: &str| passage.key(last);
         let turn = passage.turn_rad.to_degrees();
@@ -153,7 +153,7 @@ pub fn tension_at(spec: &Spec, target: &Target) -> Option<Lever> {
         return None;
     };
     let own = spec.passages.iter().any(|passage| {
-        passage.name == *place && passage.system == *system && passage.tension_n.is_some()
+        passage.place == *place && passage.system == *system && passage.tension_n.is_some()
     });
     match system {
         _ if own => None,
