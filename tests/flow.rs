@@ -214,6 +214,19 @@ fn both_faces_of_a_corner_are_judged() {
     let crown = curvature(&wide, "outer") - full;
     assert!(crown > 2.0 * full);
     assert!((curvature(&wide, "inner") - (crown - full)).abs() < 1e-9);
+    // Half of a yarn's crowns lie on either face.
+    let met = |finding: &Finding| match finding.meets {
+        lissom::bend::Meets::TimesPerMetre(times) => times,
+        lissom::bend::Meets::All => f64::NAN,
+    };
+    let at_rest = |f: &&Finding| {
+        f.stage == lissom::bend::Stage::Rest && f.system == lissom::bend::SystemName::Weft
+    };
+    let all = met(wide.findings.iter().find(at_rest).unwrap());
+    for face in ["outer", "inner"] {
+        let here = met(finding(&wide, &format!("edge, {face} weft crown")));
+        assert!((here - 0.5 * all).abs() < 1e-9, "{here} {all}");
+    }
     let full = 1.0 / (6.0 + thickness / 2.0);
     let inner = curvature(&tool("radius = \"6 mm\""), "inner");
     assert!(

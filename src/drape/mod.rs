@@ -13,7 +13,7 @@
 //! side. Both faces are judged, at rest's pull. Left out: sliding of the yarns over the corner, the pull of laying, and
 //! that the layers press on one another.
 
-use crate::bend::{Bend, Stage, SystemName};
+use crate::bend::{Bend, Meets, Stage, SystemName};
 use crate::spec::{Corner, Spec, Tool};
 use crate::weave::{Cloth, ClothError, crowns};
 use std::f64::consts::FRAC_PI_2;
@@ -81,6 +81,10 @@ fn corner(tool: &Tool, radius_mm: f64, crown: &Bend, (face, sense): (&str, f64))
     bend.stage = Stage::Draping;
     bend.added_per_mm = sense * normal_curvature_per_mm(radius_mm, angle);
     bend.governed_by = tool.radius_span.clone();
+    // Every change of side has a half crown on either face: each face has half of them.
+    if let Meets::TimesPerMetre(times) = &mut bend.meets {
+        *times *= 0.5;
+    }
     bend
 }
 
