@@ -9,6 +9,7 @@ pub mod judge;
 pub mod passage;
 pub mod path;
 pub mod pattern;
+pub mod quadrature;
 pub mod quantity;
 pub mod report;
 pub mod root;

@@ -109,6 +109,7 @@ impl Check {
             &outcome,
             &variations,
             &stiffer,
+            &flow::broken(&spec, &outcome),
             proposals.collect(),
             self.strict,
         ))
@@ -135,7 +136,7 @@ pub(super) fn read_checked(
     };
     let document = Document::parse(source.clone()).map_err(|problems| wrong(&problems))?;
     let spec = document.spec(weaves).map_err(|problems| wrong(&problems))?;
-    let outcome = flow::run(&spec, 1.0).map_err(|why| {
+    let outcome = flow::run_counted(&spec).map_err(|why| {
         let jammed = Jammed::new(&spec.weave, why);
         wrong(&[report::jammed(&spec, &jammed)])
     })?;

@@ -3,15 +3,18 @@
 //! Every command and study runs this and nothing else. It takes no decisions of its own.
 
 mod assumptions;
+mod broken;
+mod losses;
 mod warnings;
 
 pub use crate::weave::{RigidityBound, Varied};
 pub use assumptions::assumptions;
+pub use broken::{Broken, broken};
 pub use warnings::warnings;
 
 use crate::bend::{Bend, SystemName};
-use crate::judge::{Finding, State, judge};
-use crate::spec::Spec;
+use crate::judge::{Count, Finding, Flaws, Required, State, judge};
+use crate::spec::{Spec, System};
 use crate::weave::{Cloth, ClothError, States, crowns};
 use crate::{drape, passage};
 
@@ -22,7 +25,9 @@ pub struct Outcome {
     pub cloth: Cloth,
     /// The cloth on the loom; absent for taut yarns.
     pub on_loom: Option<Cloth>,
-    /// Every bend, judged, in the order of the way from package to tool.
+    /// Every bend, in the order of the way from package to tool.
+    pub bends: Vec<Bend>,
+    /// Every bend, judged, in that order; heat has a finding of its own behind its bend's.
     pub findings: Vec<Finding>,
 }
 
@@ -54,6 +59,19 @@ pub fn run(spec: &Spec, flatness: f64) -> Result<Outcome, ClothError> {
 /// # Errors
 /// As [`run`].
 pub fn run_varied(spec: &Spec, varied: Varied) -> Result<Outcome, ClothError> {
+    run_counting(spec, varied, false)
+}
+
+/// Runs the flow and counts broken filaments at every bend, for a report.
+///
+/// # Errors
+/// As [`run`].
+pub fn run_counted(spec: &Spec) -> Result<Outcome, ClothError> {
+    run_counting(spec, Varied::default(), true)
+}
+
+/// Broken filaments are counted where it is asked for or the spec allows a number.
+fn run_counting(spec: &Spec, varied: Varied, count: bool) -> Result<Outcome, ClothError> {
     let States { cloth, on_loom } = States::build(&spec.weave, varied)?;
     let mut bends: Vec<Bend> = passage::stations(spec, &cloth);
     bends.extend(crowns(
@@ -63,19 +81,34 @@ pub fn run_varied(spec: &Spec, varied: Varied) -> Result<Outcome, ClothError> {
     ));
     bends.extend(drape::corners(spec, &cloth)?);
     bends.sort_by_key(|bend| bend.stage);
+    let allowed = spec.require.broken_per_m;
+    let flaws = |system: &System| {
+        let counted = count || allowed.is_some();
+        counted.then(|| Flaws::of(&system.yarn.fibre)).flatten()
+    };
+    let (warp_flaws, weft_flaws) = (flaws(&spec.weave.warp), flaws(&spec.weave.weft));
     let mut findings = Vec::with_capacity(bends.len());
     for bend in &bends {
-        let (system, woven) = match bend.system {
-            SystemName::Warp => (&spec.weave.warp, &cloth.warp),
-            SystemName::Weft => (&spec.weave.weft, &cloth.weft),
+        let (system, woven, flaws) = match bend.system {
+            SystemName::Warp => (&spec.weave.warp, &cloth.warp, &warp_flaws),
+            SystemName::Weft => (&spec.weave.weft, &cloth.weft, &weft_flaws),
         };
-        let (finding, heat) = judge(bend, &system.yarn, &woven.laid, spec.require.reserve);
+        let required = Required {
+            reserve: spec.require.reserve,
+            count: match (flaws, allowed) {
+                (None, _) => Count::Leave,
+                (Some(flaws), None) => Count::Tell(flaws),
+                (Some(flaws), Some(allowed)) => Count::Allow(flaws, allowed),
+            },
+        };
+        let (finding, heat) = judge(bend, &system.yarn, &woven.laid, required);
         findings.push(finding);
         findings.extend(heat);
     }
     Ok(Outcome {
         cloth,
         on_loom,
+        bends,
         findings,
     })
 }

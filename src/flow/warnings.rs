@@ -1,6 +1,7 @@
 //! What a reader must not miss: where the result is not what the spec asked for, or is known to mislead.
 
 use super::Outcome;
+use super::losses::known_losses;
 use crate::bend::{Stage, SystemName};
 use crate::judge::{Limit, State};
 use crate::passage::chain;
@@ -15,6 +16,7 @@ pub fn warnings(spec: &Spec, outcome: &Outcome) -> Vec<String> {
     said.extend(past_yield(outcome));
     said.extend(chains(spec));
     said.extend(designations(spec));
+    said.extend(known_losses(spec));
     if let Some(packing) = outcome.cloth.raised_packing {
         said.push(format!(
             "packing had to be raised to {} before these yarns could interlace: measure their width and thickness",

@@ -11,6 +11,8 @@ pub enum State {
     Kinks,
     /// The bend stays.
     Yields,
+    /// More filaments break than the spec allows.
+    Sheds,
     /// The yarn is hotter than its fibre stands.
     Overheats,
     /// It breaks.
@@ -25,6 +27,7 @@ impl State {
             Self::Close => "close",
             Self::Kinks => "kinks",
             Self::Yields => "yields",
+            Self::Sheds => "sheds",
             Self::Overheats => "overheats",
             Self::Breaks => "breaks",
         }
@@ -48,6 +51,8 @@ pub enum Limit {
     Strain,
     /// Temperature in air.
     Temperature,
+    /// Broken filaments per metre of yarn.
+    Filaments,
 }
 
 impl Limit {
@@ -60,6 +65,7 @@ impl Limit {
             Self::Yield => "yield",
             Self::Strain => "strain",
             Self::Temperature => "temperature",
+            Self::Filaments => "filaments",
         }
     }
 
@@ -75,6 +81,7 @@ impl Limit {
             Self::Kink | Self::KinkStrain => State::Kinks,
             Self::Yield => State::Yields,
             Self::Temperature => State::Overheats,
+            Self::Filaments => State::Sheds,
         }
     }
 
@@ -88,6 +95,7 @@ impl Limit {
             Self::Yield => Code::YieldOnset,
             Self::Strain => Code::StrainAtBreak,
             Self::Temperature => Code::OverTemperature,
+            Self::Filaments => Code::BrokenFilaments,
         }
     }
 }
@@ -111,13 +119,15 @@ pub enum Code {
     StrainAtBreak,
     /// Hotter than the fibre stands.
     OverTemperature,
+    /// More filaments break than the spec allows.
+    BrokenFilaments,
     /// Yarns that cannot interlace.
     Jammed,
 }
 
 impl Code {
     /// Every code, in the order of the documents.
-    pub const ALL: [Self; 9] = [
+    pub const ALL: [Self; 10] = [
         Self::TensionFracture,
         Self::CompressionFracture,
         Self::KinkOnset,
@@ -125,6 +135,7 @@ impl Code {
         Self::YieldOnset,
         Self::StrainAtBreak,
         Self::OverTemperature,
+        Self::BrokenFilaments,
         Self::NoLimit,
         Self::Jammed,
     ];
@@ -140,6 +151,7 @@ impl Code {
             Self::YieldOnset => "yield-onset",
             Self::StrainAtBreak => "strain-at-break",
             Self::OverTemperature => "over-temperature",
+            Self::BrokenFilaments => "broken-filaments",
             Self::Jammed => "jammed",
         }
     }

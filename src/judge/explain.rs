@@ -20,7 +20,7 @@ pub fn explain(code: Code) -> Explanation {
                 \n    s_a + E d k/2 = s_t        s_t: mean tensile strength\n\n\
                 Reserve = s_t / (s_a + E d k/2). Without pull this is the smallest radius E d/(2 s_t).\n\n\
                 Source: beam theory of Euler and Bernoulli (filaments are slender); the radius is common practice, no source. For kinked fibrillar fibres the tension side is that of the kinked section (see kink-onset).\n\n\
-                Limits: a handbook strength is a mean at a gauge length of some centimetres. Some filaments are weaker, and a bend of a tenth of a millimetre is stronger; flaws are not counted here.",
+                Limits: a handbook strength is a mean at a gauge length of some centimetres. Some filaments are weaker, and a bend of a tenth of a millimetre is stronger; flaws are not counted here (see broken-filaments).",
         },
         Code::CompressionFracture => Explanation {
             title: "fracture on the compressed side of a bent filament",
@@ -57,6 +57,14 @@ pub fn explain(code: Code) -> Explanation {
         Code::OverTemperature => Explanation {
             title: "hotter than the fibre stands in air",
             text: "Each record has a limit for handling in air: polymers soften or age, sized glass loses strength above 250 to 300 degC, carbon's size goes at 300. A station hotter than that is a finding of its own; the strength in the other findings is not lowered for it.",
+        },
+        Code::BrokenFilaments => Explanation {
+            title: "more broken filaments than the spec allows",
+            text: "Strength is a distribution (Weibull 1951): a filament breaks where a flaw meets enough stress. Bent under pull it carries s_a + s_b cos f round its surface, and the breaks to expect per length are\n\
+                \n    h = (1/L0) mean over f of (max(0, s_a + s_b cos f)/s_0)^m        s_0 = s/Gamma(1 + 1/m)\n\n\
+                with the mean strength s at the gauge length L0 and the Weibull modulus m; flaws in the volume take the mean over the disc. Added up over the bend and all filaments through the yarn's thickness. A crown holds its own length of yarn; over a guide all yarn travels, so its breaks per metre are 1000 h at the sharpest place.\n\n\
+                Filament reserve = (allowed/expected)^(1/m): it stands on the stress scale, beside the handbook reserve, and the smaller decides. It is judged only where `require.broken_filaments` allows a number.\n\n\
+                Limits: strengths of strands and yarns hide the scatter of filaments, so a count from them is indicative; flaws made on the way (abrasion, lost size), fatigue and moisture are left out; at twice the strength few flaws are known.",
         },
         Code::NoLimit => Explanation {
             title: "nothing to judge",

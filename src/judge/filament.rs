@@ -16,13 +16,15 @@
 //! the other side (the corner's inner face) takes it off, and what is left is judged by its size, whichever side it
 //! turns to: then the outermost filament, bent least by the crown, may be bent most.
 //!
-//! Free filaments carry the same pull and the innermost is bent most, so it stands for all. In a bonded yarn the
-//! stresses are fractions linear in y, so their largest lies at one of both ends, and both are judged. Left out: pressure of the upper filaments on the lower, migration, and in flat
+//! Free filaments carry the same pull and the innermost is bent most, so it governs for all. In a bonded yarn the
+//! stresses are fractions linear in y, so their largest lies at one of both ends, and both are judged. Where breaks are
+//! counted all filaments are, in 16 layers. Left out: pressure of the upper filaments on the lower, migration, and in flat
 //! twisted yarns the helix's change over the width.
 
 use super::easing::{Free, free_curvature_per_mm};
 use crate::bend::{Bend, Stretch};
 use crate::path::{bent_helix_peak_per_mm, helix_curvature_per_mm};
+use crate::quadrature::places;
 use crate::yarn::{Laid, Yarn};
 
 /// Which filament of the yarn.
@@ -49,6 +51,19 @@ impl Position {
             Self::Any => "every filament",
             Self::Outside => "outermost filament",
             Self::Surface => "surface filament",
+        }
+    }
+
+    /// Why it governs.
+    pub fn why(self) -> &'static str {
+        match self {
+            Self::Single => "the yarn is one filament",
+            Self::Inside => "nearest to what the yarn is bent over it is bent most",
+            Self::Any => "where nothing is bent all carry the same",
+            Self::Outside => {
+                "bonded to the others it is stretched by the yarn's own bend besides, or bent most to the other side"
+            }
+            Self::Surface => "on the longest helix it passes the inside of every bend",
         }
     }
 }
@@ -89,98 +104,167 @@ pub fn filaments<'a>(
 ) -> impl Iterator<Item = Filament> + 'a {
     bend.profile
         .iter()
-        .flat_map(move |stretch| on_stretch(stretch, bend, yarn, laid))
+        .flat_map(move |stretch| Bundle::new(stretch, bend, yarn, laid).governing())
+        .flatten()
 }
 
-fn on_stretch(
-    stretch: &Stretch,
-    bend: &Bend,
-    yarn: &Yarn,
-    laid: &Laid,
-) -> impl Iterator<Item = Filament> + use<> {
-    let thickness = laid.outline.thickness_mm();
-    let diameter = yarn.count.filament_diameter_mm;
-    let added = bend.added_per_mm;
-    let lying = |e: f64| {
-        stretch.lies_on_mm.map_or(0.0, |radius| {
+/// The filaments of a yarn on one stretch.
+pub(super) struct Bundle<'a> {
+    yarn: &'a Yarn,
+    thickness_mm: f64,
+    lies_on_mm: Option<f64>,
+    added_per_mm: f64,
+    free_per_mm: Option<f64>,
+    /// What it is bent at least, past yield.
+    least_per_mm: f64,
+    /// Curvature of the centreline, 1/mm: what is bonded is strained by it.
+    centre_per_mm: f64,
+    pull_mpa: f64,
+}
+
+impl<'a> Bundle<'a> {
+    pub(super) fn new(stretch: &Stretch, bend: &Bend, yarn: &'a Yarn, laid: &Laid) -> Self {
+        let thickness_mm = laid.outline.thickness_mm();
+        let mut bundle = Self {
+            yarn,
+            thickness_mm,
+            lies_on_mm: stretch.lies_on_mm,
+            added_per_mm: bend.added_per_mm,
+            free_per_mm: None,
+            least_per_mm: 0.0,
+            centre_per_mm: 0.0,
+            pull_mpa: yarn.axial_stress_mpa(bend.pull_n),
+        };
+        let path_per_mm = bundle.lying(0.5 * thickness_mm);
+        (bundle.free_per_mm, bundle.least_per_mm) =
+            match free_curvature_per_mm(stretch.easing, path_per_mm, bend.pull_n, yarn, laid) {
+                Free::Held => (None, 0.0),
+                Free::Eased(free) => (Some(free), 0.0),
+                Free::Gathered(free) => (Some(free), free),
+            };
+        // Plane sections: the yarn's own curvature strains what is bonded.
+        bundle.centre_per_mm =
+            bundle.lying(0.5 * thickness_mm).min(bundle.eased(0.0)) + bundle.added_per_mm;
+        bundle
+    }
+
+    /// Curvature `e` above what it lies on, lying on fully, 1/mm.
+    fn lying(&self, e: f64) -> f64 {
+        let lying = self.lies_on_mm.map_or(0.0, |radius| {
             // Inside of the centreline's own centre there is no room: only the filament's stiffness bounds it.
             if radius + e > 0.0 {
                 1.0 / (radius + e)
             } else {
                 f64::INFINITY
             }
-        })
-    };
-    let free = free_curvature_per_mm(
-        stretch.easing,
-        lying(0.5 * thickness),
-        bend.pull_n,
-        yarn,
-        laid,
-    );
-    let (free_per_mm, least_per_mm) = match free {
-        Free::Held => (None, 0.0),
-        Free::Eased(free) => (Some(free), 0.0),
-        Free::Gathered(free) => (Some(free), free),
-    };
-    let lying = |e: f64| lying(e).max(least_per_mm);
-    let eased = |y: f64| {
-        let free = free_per_mm.unwrap_or(f64::INFINITY);
+        });
+        lying.max(self.least_per_mm)
+    }
+
+    /// Curvature `y` from the centreline by its own stiffness, 1/mm.
+    fn eased(&self, y: f64) -> f64 {
+        let free = self.free_per_mm.unwrap_or(f64::INFINITY);
         // A bonded yarn that eases bends its inner filaments more than its centreline, to a point at most.
-        let inner = 1.0 + yarn.binding * y * free;
+        let inner = 1.0 + self.yarn.binding * y * free;
         if inner > 0.0 {
             free / inner
         } else {
             f64::INFINITY
         }
-    };
-    // Plane sections: the yarn's own curvature strains what is bonded.
-    let centre = lying(0.5 * thickness).min(eased(0.0)) + added;
-    let pull = yarn.axial_stress_mpa(bend.pull_n);
-    let axial = |y: f64| pull + yarn.fibre.modulus_mpa * yarn.binding * y * centre;
-    let filament = |position: Position, y: f64, lying: f64, eased: f64| Filament {
-        position,
-        curvature_per_mm: (lying.min(eased) + added).abs(),
-        lying_per_mm: (lying + added).abs(),
-        free_per_mm: free_per_mm.map(|free| (free + added).abs()),
-        axial_stress_mpa: axial(y),
-    };
-    let at = |position: Position, e: f64| {
-        let y = e - 0.5 * thickness;
-        filament(position, y, lying(e), eased(y))
-    };
-    let (inside, outside) = (
-        0.5 * diameter,
-        (thickness - 0.5 * diameter).max(0.5 * diameter),
-    );
-    let found: [Option<Filament>; 2] = if yarn.is_monofilament() {
-        [Some(at(Position::Single, inside)), None]
-    } else if yarn.twist_per_mm > 0.0 {
-        let r = (0.5 * (thickness - diameter)).max(0.0);
-        let straight = helix_curvature_per_mm(r, yarn.twist_per_mm);
-        let on_surface = match stretch.lies_on_mm {
-            Some(radius) => bent_helix_peak_per_mm(r, yarn.twist_per_mm, radius + 0.5 * thickness),
+    }
+
+    fn filament(&self, position: Position, y: f64, lying: f64, eased: f64) -> Filament {
+        let added = self.added_per_mm;
+        let strain = self.yarn.binding * y * self.centre_per_mm;
+        Filament {
+            position,
+            curvature_per_mm: (lying.min(eased) + added).abs(),
+            lying_per_mm: (lying + added).abs(),
+            free_per_mm: self.free_per_mm.map(|free| (free + added).abs()),
+            axial_stress_mpa: self.pull_mpa + self.yarn.fibre.modulus_mpa * strain,
+        }
+    }
+
+    /// The filament whose axis is `e` above what the yarn lies on, mm.
+    fn at(&self, position: Position, e: f64) -> Filament {
+        let y = e - 0.5 * self.thickness_mm;
+        self.filament(position, y, self.lying(e), self.eased(y))
+    }
+
+    /// Distance of the innermost and the outermost filament's axis from what the yarn lies on, mm.
+    fn ends_mm(&self) -> (f64, f64) {
+        let half = 0.5 * self.yarn.count.filament_diameter_mm;
+        (half, (self.thickness_mm - half).max(half))
+    }
+
+    /// The filaments that may govern.
+    pub(super) fn governing(&self) -> [Option<Filament>; 2] {
+        let (inside, outside) = self.ends_mm();
+        let bonded = self.yarn.binding > 0.0;
+        if self.yarn.is_monofilament() {
+            [Some(self.at(Position::Single, inside)), None]
+        } else if self.yarn.twist_per_mm > 0.0 {
+            // The filament passes the inside and the outside in turn: both signs of the bonded strain are met.
+            let [inner, outer] = self.on_the_surface();
+            [Some(inner), bonded.then_some(outer)]
+        } else {
+            // Free filaments all carry the same pull, and none is bent more than the innermost, unless to the other side.
+            let both = bonded || self.added_per_mm < 0.0;
+            [
+                Some(self.at(Position::Inside, inside)),
+                both.then(|| self.at(Position::Outside, outside)),
+            ]
+        }
+    }
+
+    /// A surface filament of a twisted yarn where it passes the inside and the outside.
+    fn on_the_surface(&self) -> [Filament; 2] {
+        let (thickness, twist) = (self.thickness_mm, self.yarn.twist_per_mm);
+        let r = (0.5 * (thickness - self.yarn.count.filament_diameter_mm)).max(0.0);
+        let straight = helix_curvature_per_mm(r, twist);
+        let on_surface = match self.lies_on_mm {
+            Some(radius) => bent_helix_peak_per_mm(r, twist, radius + 0.5 * thickness),
             None => straight,
         };
-        // The filament passes the inside and the outside in turn: both signs of the bonded strain are met.
-        let of = |y: f64| {
-            let mut found = filament(Position::Surface, y, on_surface, straight + eased(-r));
-            if centre < 0.0 {
+        [-r, r].map(|y| {
+            let mut found =
+                self.filament(Position::Surface, y, on_surface, straight + self.eased(-r));
+            if self.centre_per_mm < 0.0 {
                 // Bent to the other side it is the same helix on the same curve.
                 found.curvature_per_mm =
-                    bent_helix_peak_per_mm(r, yarn.twist_per_mm, -1.0 / centre);
+                    bent_helix_peak_per_mm(r, twist, -1.0 / self.centre_per_mm);
                 found.lying_per_mm = found.curvature_per_mm;
             }
-            Some(found)
-        };
-        [of(-r), of(r).filter(|_| yarn.binding > 0.0)]
-    } else {
-        // Free filaments all carry the same pull, and none is bent more than the innermost, unless to the other side.
-        let both = yarn.binding > 0.0 || added < 0.0;
-        [
-            Some(at(Position::Inside, inside)),
-            both.then(|| at(Position::Outside, outside)),
-        ]
-    };
-    found.into_iter().flatten()
+            found
+        })
+    }
+
+    /// All filaments by their share, from the inside to the outside: through the thickness by the outline's width there;
+    /// of a twisted yarn all as those on the surface are, which is the most.
+    pub(super) fn layers(&self, laid: &Laid) -> Vec<(f64, Filament)> {
+        if self.yarn.is_monofilament() {
+            return vec![(1.0, self.at(Position::Single, self.ends_mm().0))];
+        }
+        if self.yarn.twist_per_mm > 0.0 {
+            return self
+                .on_the_surface()
+                .map(|filament| (0.5, filament))
+                .to_vec();
+        }
+        let (inside, outside) = self.ends_mm();
+        let middle = 0.5 * self.thickness_mm;
+        // A lens has its edge in the middle: two parts.
+        let mut layers: Vec<(f64, Filament)> = places(inside, middle, 1)
+            .chain(places(middle, outside, 1))
+            .map(|(e, weight)| {
+                let share = weight * laid.outline.width_at_mm(e - middle);
+                (share, self.at(Position::Any, e))
+            })
+            .collect();
+        let whole: f64 = layers.iter().map(|(share, _)| share).sum();
+        for (share, _) in &mut layers {
+            *share /= whole;
+        }
+        layers
+    }
 }

@@ -2,9 +2,10 @@
 
 use super::code::{Code, Limit, State};
 use super::filament::Filament;
+use super::kinked::break_bend;
 use super::limits::Check;
 use crate::bend::{Bend, Meets, Stage, SystemName};
-use crate::fibre::Kind;
+use crate::fibre::{Kind, Mechanism};
 use crate::span::Span;
 use crate::yarn::Yarn;
 use std::borrow::Cow;
@@ -14,14 +15,14 @@ use std::sync::Arc;
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Judged {
     /// Every limit that applies, the governing one first.
-    pub checks: [Option<Check>; 3],
+    pub checks: [Option<Check>; 4],
     /// The worst state of them.
     pub state: State,
 }
 
 impl Judged {
     /// Ranks the limits: worst state first, then smallest reserve.
-    pub fn of(mut checks: [Option<Check>; 3], required: f64) -> Self {
+    pub fn of(mut checks: [Option<Check>; 4], required: f64) -> Self {
         let state_of = |check: &Check| match check.reserve() {
             // A reserve that is no number fails.
             reserve if reserve.is_nan() || reserve < 1.0 => check.limit.failed(),
@@ -97,6 +98,8 @@ pub struct Finding {
     pub state: State,
     /// The method's stable code.
     pub code: Code,
+    /// Broken filaments to expect per metre of yarn; absent where the scatter of strength is not known.
+    pub broken_per_m: Option<f64>,
     /// Temperature here and the fibre's limit, degrees C, where the finding is about heat.
     pub heat_c: Option<(f64, f64)>,
     /// The line of the spec that governs.
@@ -104,7 +107,13 @@ pub struct Finding {
 }
 
 impl Finding {
-    pub(super) fn new(bend: &Bend, yarn: Arc<Yarn>, filament: Filament, judged: Judged) -> Self {
+    pub(super) fn new(
+        bend: &Bend,
+        yarn: Arc<Yarn>,
+        filament: Filament,
+        judged: Judged,
+        broken_per_m: Option<f64>,
+    ) -> Self {
         let limit = judged.checks[0].map(|check| check.limit);
         Self {
             place: bend.place.clone(),
@@ -118,6 +127,7 @@ impl Finding {
             limit,
             state: judged.state,
             code: limit.map_or(Code::NoLimit, Limit::code),
+            broken_per_m,
             heat_c: None,
             governed_by: bend.governed_by.clone(),
         }
@@ -129,7 +139,8 @@ impl Finding {
         heat.limit = Some(Limit::Temperature);
         heat.state = State::Overheats;
         heat.code = Code::OverTemperature;
-        heat.judged.checks = [None; 3];
+        heat.judged.checks = [None; 4];
+        heat.broken_per_m = None;
         heat.heat_c = Some((here_c, limit_c));
         if let Some(span) = &bend.heated_by {
             heat.governed_by = span.clone();
@@ -139,7 +150,22 @@ impl Finding {
 
     /// The handbook reserve: limit over applied; absent where no limit applies.
     pub fn reserve(&self) -> Option<f64> {
-        self.judged.checks[0].map(|check| check.reserve())
+        let mut checks = self.judged.checks.iter().flatten();
+        let handbook = checks.find(|check| check.limit != Limit::Filaments);
+        handbook.map(Check::reserve)
+    }
+
+    /// The filament reserve: allowed over expected breaks, on the stress scale; absent where the spec allows no number.
+    pub fn filament_reserve(&self) -> Option<f64> {
+        let mut checks = self.judged.checks.iter().flatten();
+        let filaments = checks.find(|check| check.limit == Limit::Filaments);
+        filaments.map(Check::reserve)
+    }
+
+    /// The smaller of both reserves: the one that decides.
+    pub fn deciding_reserve(&self) -> Option<f64> {
+        let both = [self.reserve(), self.filament_reserve()];
+        both.into_iter().flatten().reduce(f64::min)
     }
 
     /// Radius of the filament's axis, mm; absent where it is straight.
@@ -149,20 +175,34 @@ impl Finding {
 
     /// Bending stress of the filament by the elastic formula, MPa.
     pub fn bending_stress_mpa(&self) -> f64 {
-        self.yarn.fibre.modulus_mpa
-            * self.yarn.count.filament_diameter_mm
-            * self.filament.curvature_per_mm
-            / 2.0
+        self.yarn.bending_stress_mpa(self.filament.curvature_per_mm)
     }
 
     /// Whether the finding fails a check: `refuse_kinks` as the spec says, `strict` as the command does.
     pub fn fails(&self, refuse_kinks: bool, strict: bool) -> bool {
         match self.state {
-            State::Breaks | State::Overheats => true,
+            State::Breaks | State::Overheats | State::Sheds => true,
             State::Kinks => refuse_kinks || strict || self.code == Code::KinkStrain,
             State::Yields | State::Close => strict,
             State::Holds => false,
         }
+    }
+
+    /// Radii of the filament's axis at which a fibrillar fibre kinks and breaks at this axial stress, mm; absent for others, and
+    /// where binding makes the axial stress go with the radius.
+    pub fn fibrillar_radii_mm(&self) -> Option<(f64, f64)> {
+        let fibre = &self.yarn.fibre;
+        let Mechanism::Fibrillar { compression, .. } = fibre.mechanism else {
+            return None;
+        };
+        if self.yarn.binding > 0.0 {
+            return None;
+        }
+        let onset = compression.in_bending_mpa();
+        let axial = self.filament.axial_stress_mpa;
+        let radius = |bending_mpa: f64| self.yarn.bending_stress_mpa(1.0) / bending_mpa;
+        let bend = break_bend(fibre.strength_mpa / onset, axial / onset);
+        (bend > 0.0).then(|| (radius(onset + axial), radius(bend * onset)))
     }
 
     /// Radius of the filament's axis at which the governing limit would be met with a reserve of 1 at this axial
@@ -181,7 +221,7 @@ impl Finding {
             Limit::Fracture | Limit::Yield => check.allowed - axial,
             Limit::Compression | Limit::Kink => check.allowed + axial,
             Limit::Strain => check.allowed * fibre.modulus_mpa - axial,
-            Limit::KinkStrain | Limit::Temperature => return None,
+            Limit::KinkStrain | Limit::Temperature | Limit::Filaments => return None,
         };
         (allowed > 0.0).then_some(half / allowed)
     }

@@ -25,10 +25,12 @@ pub const KINK_STRAIN_LIMIT: f64 = 0.03;
 pub struct Check {
     /// Which limit.
     pub limit: Limit,
-    /// Applied: MPa, or a strain for `Limit::Strain`.
+    /// Applied: MPa, a strain for `Limit::Strain`, broken filaments per metre for `Limit::Filaments`.
     pub applied: f64,
-    /// Allowed: MPa, or a strain.
+    /// Allowed: MPa, a strain, or a number per metre.
     pub allowed: f64,
+    /// Power of allowed over applied that is a reserve on the stress scale: 1, of a count of breaks 1/m.
+    power: f64,
 }
 
 impl Check {
@@ -42,21 +44,30 @@ impl Check {
             limit,
             applied,
             allowed,
+            power: 1.0,
         })
     }
 
-    /// Allowed over applied.
+    /// Broken filaments per metre of yarn against the number allowed; m is the Weibull modulus.
+    pub(super) fn filaments(expected_per_m: f64, allowed_per_m: f64, m: f64) -> Option<Self> {
+        Some(Self {
+            power: 1.0 / m,
+            ..Self::new(Limit::Filaments, expected_per_m, allowed_per_m)?
+        })
+    }
+
+    /// Allowed over applied, on the stress scale.
     pub fn reserve(&self) -> f64 {
-        self.allowed / self.applied
+        (self.allowed / self.applied).powf(self.power)
     }
 }
 
-/// Every limit that applies to the filament.
-pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 3] {
+/// Every limit that applies to the filament; the last place is kept for the count of broken ones.
+pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 4] {
     let fibre = &yarn.fibre;
     let modulus = fibre.modulus_mpa;
     let axial = filament.axial_stress_mpa;
-    let bending = modulus * yarn.count.filament_diameter_mm * filament.curvature_per_mm / 2.0;
+    let bending = yarn.bending_stress_mpa(filament.curvature_per_mm);
     let fracture = Check::new(Limit::Fracture, axial + bending, fibre.strength_mpa);
     match fibre.mechanism {
         Mechanism::Brittle { compression } => {
@@ -67,7 +78,7 @@ pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 3] {
                     compression.in_bending_mpa(),
                 )
             });
-            [fracture, compressed, None]
+            [fracture, compressed, None, None]
         }
         Mechanism::Fibrillar { compression, .. } => {
             let onset = compression.in_bending_mpa();
@@ -84,7 +95,7 @@ pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 3] {
                     KINK_STRAIN_LIMIT,
                 )
             });
-            [tension, kink, strain.flatten()]
+            [tension, kink, strain.flatten(), None]
         }
         Mechanism::Ductile {
             yield_mpa,
@@ -95,6 +106,7 @@ pub fn checks(yarn: &Yarn, filament: &Filament) -> [Option<Check>; 3] {
             [
                 Check::new(Limit::Strain, strain, strain_at_break),
                 yields,
+                None,
                 None,
             ]
         }

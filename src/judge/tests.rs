@@ -3,14 +3,14 @@
 use super::*;
 use crate::bend::{Crown, Easing, Flanks, Meets, Stage, Stretch, SystemName};
 use crate::fibre::{Fibre, library};
-use crate::yarn::{Count, CountGiven, Shape, Vary, YarnForm};
+use crate::yarn::{Count as YarnCount, CountGiven, Shape, Vary, YarnForm};
 
 fn fibre(name: &str) -> Fibre {
     library().find(name).unwrap().fibre().unwrap()
 }
 
 /// A yarn of this fibre, 0.2 mm thick and 1 mm wide.
-fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
+pub(super) fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
     let fibre = fibre(name);
     let given = CountGiven {
         linear_density_tex: None,
@@ -25,7 +25,7 @@ fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
     };
     Yarn {
         name: "y".into(),
-        count: Count::resolve(given, fibre.diameter_mm, fibre.density_g_cm3).unwrap(),
+        count: YarnCount::resolve(given, fibre.diameter_mm, fibre.density_g_cm3).unwrap(),
         fibre,
         twist_per_mm: 0.0,
         twist_direction: None,
@@ -37,7 +37,7 @@ fn yarn(name: &str, filaments: u32, um: f64) -> Yarn {
     }
 }
 
-fn bend(radius_mm: f64, pull_n: f64) -> Bend {
+pub(super) fn bend(radius_mm: f64, pull_n: f64) -> Bend {
     Bend {
         place: "by hand".into(),
         stage: Stage::Weaving,
@@ -56,9 +56,15 @@ fn bend(radius_mm: f64, pull_n: f64) -> Bend {
     }
 }
 
+/// A reserve of 2, and no filament counted.
+const HOLDING: Required<'_> = Required {
+    reserve: 2.0,
+    count: Count::Leave,
+};
+
 fn judged(bend: &Bend, yarn: Yarn) -> Finding {
     let laid = yarn.laid_at(2.0, Vary::default()).unwrap();
-    judge(bend, &Arc::new(yarn), &laid, 2.0).0
+    judge(bend, &Arc::new(yarn), &laid, HOLDING).0
 }
 
 /// E-glass, 9 um, on R = 0.5: the innermost axis lies 4.5 um above: s_b = 73 000 x 0.009/(2 x 0.5045) = 651.1 MPa;
@@ -336,7 +342,7 @@ fn heat_is_a_finding_of_its_own() {
     oven.heated_by = Some(7..9);
     let glass = yarn("e-glass", 1000, 9.0);
     let laid = glass.laid_at(2.0, Vary::default()).unwrap();
-    let (bent, heat) = judge(&oven, &Arc::new(glass.clone()), &laid, 2.0);
+    let (bent, heat) = judge(&oven, &Arc::new(glass.clone()), &laid, HOLDING);
     assert_eq!(bent.state, State::Holds);
     let heat = heat.unwrap();
     assert_eq!(
@@ -346,7 +352,7 @@ fn heat_is_a_finding_of_its_own() {
     assert_eq!(heat.governed_by, 7..9);
     assert!(heat.fails(false, false));
     oven.temperature_c = Some(300.0);
-    assert!(judge(&oven, &Arc::new(glass), &laid, 2.0).1.is_none());
+    assert!(judge(&oven, &Arc::new(glass), &laid, HOLDING).1.is_none());
 }
 
 #[test]

@@ -27,6 +27,8 @@ pub enum Dimension {
     Rigidity,
     /// Mass per volume, g/cm3.
     Density,
+    /// A number per length, 1/m.
+    Number,
 }
 
 /// One unit: its symbol, other ways to write it, and how to get to the internal unit.
@@ -129,6 +131,9 @@ pub(super) const UNITS: &[Unit] = {
         ),
         unit("g/cm3", &["g/cm^3"], Density, 1.0),
         unit("kg/m3", &["kg/m^3"], Density, 1e-3),
+        unit("/m", &["1/m"], Number, 1.0),
+        unit("/km", &["1/km"], Number, 1e-3),
+        unit("/in", &["1/in"], Number, 1e3 / INCH_MM),
     ]
 };
 
@@ -155,6 +160,7 @@ impl Dimension {
             Self::Share => "a share",
             Self::Rigidity => "a bending rigidity",
             Self::Density => "a density",
+            Self::Number => "a number per length",
         }
     }
 
@@ -174,6 +180,7 @@ impl Dimension {
             Self::Share => (1e-9, 1e3),
             Self::Rigidity => (1e-15, 1e9),
             Self::Density => (1e-3, 1e2),
+            Self::Number => (1e-12, 1e12),
         }
     }
 

@@ -3,13 +3,13 @@
 //! Keys may be added, never renamed; a value that does not exist is an absent key. Numbers are kept with seven
 //! significant digits.
 
+use super::bend::BendRow;
+use super::broken::BrokenReport;
 use super::cautions::cautions;
-use crate::bend::{Meets, Stage};
-use crate::flow::{Outcome, RigidityBound, Variation, assumptions, warnings};
-use crate::judge::{Finding, Limit, State};
+use crate::flow::{Broken, Outcome, RigidityBound, Variation, assumptions, warnings};
 use crate::passage::{reed_strokes, sheddings};
 use crate::quantity::rounded;
-use crate::spec::{PathModel, Spec};
+use crate::spec::Spec;
 use crate::weave::{Closure, Cloth, ClothYarn, SharedBy};
 use serde::Serialize;
 use sha2::{Digest, Sha256};
@@ -35,6 +35,9 @@ pub struct CheckReport {
     pub bends: Vec<BendRow>,
     /// Index in `bends` of the one that decides.
     pub worst: usize,
+    /// Broken filaments to expect, for each yarn whose scatter of strength is known.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub broken_filaments: Vec<BrokenReport>,
     /// Whether the state changes with the assumed outlines.
     pub hangs_on_width: bool,
     /// The worst at other flatnesses of the assumed outlines.
@@ -133,79 +136,6 @@ pub struct SystemReport {
     pub reed_strokes: Option<f64>,
 }
 
-/// One bend in the report.
-#[derive(Debug, Clone, PartialEq, Serialize)]
-#[expect(
-    missing_docs,
-    reason = "the units are in the names; the meanings stand in the README's table"
-)]
-pub struct BendRow {
-    pub place: String,
-    pub stage: &'static str,
-    pub system: &'static str,
-    pub yarn: String,
-    pub fibre: String,
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub radius_mm: Option<f64>,
-    pub curvature_per_mm: f64,
-    pub lying_curvature_per_mm: f64,
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub free_curvature_per_mm: Option<f64>,
-    pub governs: &'static str,
-    /// Half crowns per metre of yarn; absent where all of it travels over the bend.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub half_crowns_per_m: Option<f64>,
-    pub tension_n: f64,
-    pub axial_stress_mpa: f64,
-    pub bending_stress_mpa: f64,
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub temperature_c: Option<f64>,
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub max_temperature_c: Option<f64>,
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub limit: Option<&'static str>,
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub reserve: Option<f64>,
-    pub state: &'static str,
-    pub fails: bool,
-    pub code: &'static str,
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub limit_radius_mm: Option<f64>,
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub strength_loss: Option<f64>,
-    pub limits: Vec<LimitRow>,
-    pub line: usize,
-    /// Whether the yarn follows a path of least energy there.
-    #[serde(skip)]
-    pub on_path: bool,
-    /// The text of that line.
-    #[serde(skip)]
-    pub quoted: String,
-}
-
-/// One limit of a bend.
-#[derive(Debug, Clone, PartialEq, Serialize)]
-pub struct LimitRow {
-    /// Which.
-    pub limit: &'static str,
-    /// The method's code.
-    pub code: &'static str,
-    /// Applied stress, MPa; absent where the limit is a strain.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub applied_mpa: Option<f64>,
-    /// Allowed stress, MPa.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub allowed_mpa: Option<f64>,
-    /// Applied strain; absent where the limit is a stress.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub applied_strain: Option<f64>,
-    /// Allowed strain.
-    #[serde(skip_serializing_if = "Option::is_none")]
-    pub allowed_strain: Option<f64>,
-    /// Allowed over applied.
-    pub reserve: f64,
-}
-
 /// The worst at another flatness.
 #[derive(Debug, Clone, PartialEq, Serialize)]
 pub struct SensitivityRow {
@@ -261,6 +191,7 @@ impl CheckReport {
         outcome: &Outcome,
         variations: &[Variation],
         rigidity: &[Variation],
+        broken: &[Broken],
         advice: Vec<Advice>,
         strict: bool,
     ) -> Self {
@@ -287,6 +218,10 @@ impl CheckReport {
                 .map(|finding| BendRow::new(spec, finding, strict))
                 .collect(),
             worst: outcome.worst(spec.require.refuse_kinks),
+            broken_filaments: broken
+                .iter()
+                .map(|broken| BrokenReport::new(spec, broken))
+                .collect(),
             sensitivity,
             rigidity: rigidity.iter().map(RigidityRow::new).collect(),
             warnings: warnings(spec, outcome),
@@ -387,73 +322,6 @@ impl SystemReport {
             contact_force_n: woven.solved().map(|system| rounded(system.push_n)),
             sheddings: None,
             reed_strokes: None,
-        }
-    }
-}
-
-impl BendRow {
-    fn new(spec: &Spec, finding: &Finding, strict: bool) -> Self {
-        let line = spec.source.line_column(finding.governed_by.start).line;
-        let strength_loss = match finding.yarn.fibre.mechanism {
-            crate::fibre::Mechanism::Fibrillar {
-                kink_strength_loss, ..
-            } if finding.state == State::Kinks => kink_strength_loss,
-            _ => None,
-        };
-        Self {
-            place: finding.place.to_string(),
-            stage: finding.stage.word(),
-            system: finding.system.word(),
-            yarn: finding.yarn.name.clone(),
-            fibre: finding.yarn.fibre.id.clone(),
-            radius_mm: finding.radius_mm().map(rounded),
-            curvature_per_mm: rounded(finding.filament.curvature_per_mm),
-            lying_curvature_per_mm: rounded(finding.filament.lying_per_mm),
-            free_curvature_per_mm: finding.filament.free_per_mm.map(rounded),
-            governs: finding.filament.position.word(),
-            half_crowns_per_m: match finding.meets {
-                Meets::TimesPerMetre(times) => Some(rounded(times)),
-                Meets::All => None,
-            },
-            tension_n: rounded(finding.tension_n),
-            axial_stress_mpa: rounded(finding.filament.axial_stress_mpa),
-            bending_stress_mpa: rounded(finding.bending_stress_mpa()),
-            temperature_c: finding.heat_c.map(|(here, _)| rounded(here)),
-            max_temperature_c: finding.heat_c.map(|(_, limit)| rounded(limit)),
-            limit: finding.limit.map(Limit::word),
-            reserve: finding.reserve().map(rounded),
-            state: finding.state.word(),
-            fails: finding.fails(spec.require.refuse_kinks, strict),
-            code: finding.code.word(),
-            limit_radius_mm: finding.limit_radius_mm().map(rounded),
-            strength_loss,
-            limits: finding
-                .judged
-                .checks
-                .iter()
-                .flatten()
-                .map(LimitRow::new)
-                .collect(),
-            line,
-            on_path: spec.weave.path == PathModel::Stiff
-                && matches!(finding.stage, Stage::Loom | Stage::Rest | Stage::Draping),
-            quoted: spec.source.line(line).trim().to_owned(),
-        }
-    }
-}
-
-impl LimitRow {
-    fn new(check: &crate::judge::Check) -> Self {
-        let strain = check.limit.is_strain();
-        let (applied, allowed) = (Some(rounded(check.applied)), Some(rounded(check.allowed)));
-        Self {
-            limit: check.limit.word(),
-            code: check.limit.code().word(),
-            applied_mpa: applied.filter(|_| !strain),
-            allowed_mpa: allowed.filter(|_| !strain),
-            applied_strain: applied.filter(|_| strain),
-            allowed_strain: allowed.filter(|_| strain),
-            reserve: rounded(check.reserve()),
         }
     }
 }

@@ -98,7 +98,7 @@ impl WovenRow {
         Self {
             verdict: outcome.verdict(),
             fails: outcome.fails(spec, false),
-            reserve: worst.and_then(|finding| finding.reserve()),
+            reserve: worst.and_then(|finding| finding.deciding_reserve()),
             place: worst.map_or_else(String::new, |finding| {
                 format!("{} ({})", finding.place, finding.stage.word())
             }),
@@ -336,7 +336,7 @@ impl BriefRow {
     pub fn new(spec: &Spec, outcome: &Outcome) -> Self {
         let worst = outcome.worst_finding(spec.require.refuse_kinks);
         let cloth = &outcome.cloth;
-        let reserve = worst.and_then(|finding| finding.reserve());
+        let reserve = worst.and_then(|finding| finding.deciding_reserve());
         let digits = |number: f64| significant(number, 6);
         Self {
             verdict: outcome.verdict(),

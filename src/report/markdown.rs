@@ -1,9 +1,10 @@
 //! Markdown made for attaching and for comparing by line: stable order, fixed digits, one fact a line.
 
+use super::bend_words::{BEND_COLUMNS, bend_cells, bend_sentences};
+use super::broken::{BROKEN_COLUMNS, broken_rows, broken_sentences};
 use super::check::CheckReport;
 use super::text::{
-    BEND_COLUMNS, HANGS_ON_WIDTH, bend_cells, bend_sentences, cloth_lines, loom_lines, loom_rows,
-    pattern_line, stiff_as, system_rows,
+    HANGS_ON_WIDTH, cloth_lines, loom_lines, loom_rows, pattern_line, stiff_as, system_rows,
 };
 use crate::quantity::{plain, significant};
 use std::fmt::Write as _;
@@ -119,6 +120,17 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     head(out, &BEND_COLUMNS)?;
     for bend in &report.bends {
         row(out, &bend_cells(bend))?;
+    }
+    if !report.broken_filaments.is_empty() {
+        writeln!(out, "\n## Broken filaments to expect\n")?;
+        for sentence in broken_sentences(&report.broken_filaments) {
+            writeln!(out, "- {}", escaped(&sentence))?;
+        }
+        writeln!(out)?;
+        head(out, &BROKEN_COLUMNS)?;
+        for cells in broken_rows(&report.broken_filaments) {
+            row(out, &cells)?;
+        }
     }
     let at_rest = if report.cloth_on_loom.is_some() {
         " at rest"

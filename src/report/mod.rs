@@ -3,6 +3,8 @@
 //! | file | what is in it |
 //! | --- | --- |
 //! | `check` | the one report of `check`, from which all formats are printed; its fields are the JSON contract |
+//! | `bend`, `bend_words` | one bend: its part of the contract, and it in words |
+//! | `broken` | broken filaments to expect |
 //! | `limits` | how far a spec may go |
 //! | `compare` | the report of a comparison, in all formats |
 //! | `text`, `markdown`, `json` | the formats |
@@ -11,6 +13,9 @@
 //! | `problems` | problems of a spec with the line and a mark under the place |
 //! | `fibres`, `weaves`, `routes` | listings of the library, of the named weaves and of the ready routes |
 
+mod bend;
+mod bend_words;
+mod broken;
 mod cautions;
 mod check;
 mod compare;
@@ -24,10 +29,11 @@ mod table;
 mod text;
 mod weaves;
 
+pub use bend::{BendRow, LimitRow};
+pub use broken::{BrokenReport, StepRow};
 pub use cautions::cautions;
 pub use check::{
-    Advice, BendRow, CheckReport, ClothReport, LimitRow, SensitivityRow, Setting, SpecReport,
-    SystemReport,
+    Advice, CheckReport, ClothReport, SensitivityRow, Setting, SpecReport, SystemReport,
 };
 pub use compare::{
     BriefRow, CompareCsv, CompareReport, Merit, VariantRow, VaryCell, VaryColumn, WovenRow,

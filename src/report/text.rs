@@ -1,6 +1,9 @@
 //! Text for a terminal: the verdict first, the worst bend, then every bend, the cloth, what it hangs on.
 
-use super::check::{Advice, BendRow, CheckReport, ClothReport, LimitRow, SystemReport};
+use super::bend::BendRow;
+use super::bend_words::{BEND_COLUMNS, bend_cells, bend_sentences};
+use super::broken::{BROKEN_COLUMNS, broken_rows, broken_sentences};
+use super::check::{Advice, CheckReport, ClothReport, SystemReport};
 use super::table::{folded, table};
 use crate::quantity::{plain, significant};
 use anstyle::{AnsiColor, Style};
@@ -35,7 +38,7 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     for (index, bend) in report.bends.iter().enumerate() {
         if bend.fails && index != report.worst {
             let reserve = bend
-                .reserve
+                .deciding_reserve
                 .map_or_else(String::new, |r| format!(" reserve {}", significant(r, 3)));
             let line = format!(
                 "Also fails: {} ({}): {}, {}{reserve} [{}]",
@@ -76,6 +79,15 @@ fn write_report(out: &mut String, report: &CheckReport) -> std::fmt::Result {
     }
     heading(out, "Bends, in the order of the way")?;
     writeln!(out, "{}", bend_table(&report.bends))?;
+    if !report.broken_filaments.is_empty() {
+        heading(out, "Broken filaments to expect")?;
+        for sentence in broken_sentences(&report.broken_filaments) {
+            writeln!(out, "{}", folded(&sentence, "- ", "  "))?;
+        }
+        let rows = broken_rows(&report.broken_filaments);
+        let rows = rows.into_iter().map(|row| row.to_vec());
+        writeln!(out, "{}", table(BROKEN_COLUMNS, rows, &[3, 4, 5]))?;
+    }
     heading(
         out,
         if report.cloth_on_loom.is_some() {
@@ -164,7 +176,7 @@ fn places(advice: &[Advice]) -> Vec<&str> {
 
 fn verdict_style(verdict: &str) -> Style {
     let colour = match verdict {
-        "breaks" | "overheats" => AnsiColor::Red,
+        "breaks" | "overheats" | "sheds" => AnsiColor::Red,
         "holds" => AnsiColor::Green,
         _ => AnsiColor::Yellow,
     };
@@ -200,144 +212,11 @@ fn write_bend(
     writeln!(out, "  {}:{}: {}", report.spec.file, bend.line, bend.quoted)
 }
 
-/// What a bend does to the fibre, in sentences; shared by text and Markdown.
-pub(super) fn bend_sentences(bend: &BendRow) -> Vec<String> {
-    let mut said = Vec::new();
-    if let (Some(here), Some(limit)) = (bend.temperature_c, bend.max_temperature_c) {
-        return vec![format!(
-            "{}: {} degC, and {} stands {} degC in air [{}]",
-            bend.state,
-            plain(here, 4),
-            bend.fibre,
-            plain(limit, 4),
-            bend.code
-        )];
-    }
-    let (Some(limit), Some(reserve)) = (bend.limit, bend.reserve) else {
-        return vec![format!(
-            "{}: nothing bends or pulls it [{}]",
-            bend.state, bend.code
-        )];
-    };
-    let radius = bend.radius_mm.map_or_else(
-        || "straight".to_owned(),
-        |radius| format!("bent to {} mm", significant(radius, 3)),
-    );
-    // Past yield a stress by the elastic formula means nothing to a reader: tell the strain.
-    let bending = match bend.limits.iter().find_map(|row| row.applied_strain) {
-        Some(strain) => format!(
-            "{} % of strain at the surface",
-            significant(100.0 * strain, 3)
-        ),
-        None => format!("{} MPa of bending", significant(bend.bending_stress_mpa, 3)),
-    };
-    said.push(format!(
-        "{}: {limit} reserve {} [{}]; {} {radius}, {bending}, {} MPa of pull ({} cN)",
-        bend.state,
-        significant(reserve, 3),
-        bend.code,
-        bend.governs,
-        significant(bend.axial_stress_mpa, 3),
-        significant(100.0 * bend.tension_n, 3)
-    ));
-    if let Some(radius) = bend.limit_radius_mm {
-        said.push(format!(
-            "at this pull the limit is met at a filament radius of {} mm",
-            significant(radius, 3)
-        ));
-    }
-    if let Some(free) = bend.free_curvature_per_mm {
-        let eased = free < bend.lying_curvature_per_mm;
-        let at = |per_mm: f64| significant(1.0 / per_mm, 3);
-        if bend.lying_curvature_per_mm > 0.0 && free > 0.0 {
-            said.push(if bend.on_path {
-                format!(
-                    "laid along the yarn's path it would be bent to {} mm, by its own stiffness to {} mm: {} governs",
-                    at(bend.lying_curvature_per_mm),
-                    at(free),
-                    if eased { "stiffness" } else { "the path" }
-                )
-            } else {
-                format!(
-                    "lying on it would bend it to {} mm, its own stiffness to {} mm: {} governs",
-                    at(bend.lying_curvature_per_mm),
-                    at(free),
-                    if eased { "stiffness" } else { "the surface" }
-                )
-            });
-        }
-    }
-    if let Some(loss) = bend.strength_loss {
-        said.push(format!(
-            "kinked, not broken: about {} % of tensile strength lost",
-            plain(100.0 * loss, 2)
-        ));
-    }
-    for other in bend.limits.iter().skip(1) {
-        said.push(format!(
-            "{} reserve {} [{}]",
-            other.limit,
-            significant(other.reserve, 3),
-            other.code
-        ));
-    }
-    said
-}
-
-/// Columns of the table of bends: head and value; shared by text and Markdown.
-pub(super) const BEND_COLUMNS: [&str; 9] = [
-    "state",
-    "reserve",
-    "limit",
-    "place",
-    "stage",
-    "of",
-    "radius mm",
-    "pull cN",
-    "bend MPa",
-];
-
-/// The governing limit; where the fibre kinks or yields, also how far it is from breaking.
-fn limit_cell(bend: &BendRow) -> String {
-    let governs = bend.limit.unwrap_or("-");
-    let breaks = |row: &&LimitRow| ["fracture", "strain"].contains(&row.limit);
-    match bend.limits.iter().skip(1).find(breaks) {
-        Some(row) if ["kinks", "yields"].contains(&bend.state) => {
-            format!("{governs}; {} {}", row.limit, significant(row.reserve, 3))
-        }
-        _ => governs.to_owned(),
-    }
-}
-
-/// One bend as the cells of its row. Heat bends nothing: its row tells the temperatures.
-pub(super) fn bend_cells(bend: &BendRow) -> [String; 9] {
-    let heat = bend.temperature_c.zip(bend.max_temperature_c);
-    let number = |value: Option<f64>| {
-        let shown = value.filter(|_| heat.is_none());
-        shown.map_or_else(|| "-".to_owned(), |v| significant(v, 3))
-    };
-    let limit = match heat {
-        Some((here, limit)) => format!("{} over {} degC", plain(here, 4), plain(limit, 4)),
-        None => limit_cell(bend),
-    };
-    [
-        bend.state.to_owned(),
-        number(bend.reserve),
-        limit,
-        bend.place.clone(),
-        bend.stage.to_owned(),
-        bend.system.to_owned(),
-        number(bend.radius_mm),
-        number(Some(100.0 * bend.tension_n)),
-        number(Some(bend.bending_stress_mpa)),
-    ]
-}
-
 fn bend_table(bends: &[BendRow]) -> String {
     table(
         BEND_COLUMNS,
         bends.iter().map(|bend| bend_cells(bend).to_vec()),
-        &[1, 6, 7, 8],
+        &[1, 6, 7, 8, 9],
     )
 }
 

@@ -459,6 +459,12 @@ pub const REQUIRE: &[Key] = &[
         "smallest reserve that counts as holding",
     ),
     key(
+        "broken_filaments",
+        "number per length, \"5 /m\"",
+        "counted, not judged",
+        "broken filaments allowed per metre of one yarn",
+    ),
+    key(
         "kinks",
         "\"allow\" or \"refuse\"",
         "allow",

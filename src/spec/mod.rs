@@ -29,6 +29,7 @@ pub use weave::{
 };
 
 use crate::pattern::Weaves;
+use crate::quantity::Dimension;
 use crate::span::SourceText;
 use fibre::Fibres;
 use field::Bound;
@@ -45,6 +46,8 @@ pub struct Require {
     pub reserve: f64,
     /// Whether the spec gave it.
     pub reserve_given: bool,
+    /// Broken filaments per metre of yarn that are allowed, where given.
+    pub broken_per_m: Option<f64>,
     /// Whether kink bands fail the spec.
     pub refuse_kinks: bool,
 }
@@ -105,10 +108,16 @@ fn read_require(spec: &Table<'_>) -> Require {
             .number("reserve", Bound::Within(1.0, f64::MAX))
             .value()
     });
+    let broken = table.as_ref().and_then(|table| {
+        table
+            .measure("broken_filaments", Dimension::Number, Bound::Positive)
+            .value()
+    });
     let kinks = [("allow", false), ("refuse", true)];
     Require {
         reserve: reserve.unwrap_or(DEFAULT_RESERVE),
         reserve_given: reserve.is_some(),
+        broken_per_m: broken,
         refuse_kinks: table
             .and_then(|table| table.word("kinks", &kinks).value())
             .unwrap_or(false),
@@ -163,6 +172,7 @@ radius = "6 mm"
 bend_axis = "30 deg"
 [require]
 reserve = 1.5
+broken_filaments = "5000 /km"
 kinks = "refuse"
 "##;
 
@@ -207,6 +217,7 @@ kinks = "refuse"
         assert!(!passage.friction_given && passage.friction > 0.0);
         near(spec.tools[0].bend_axis_rad.unwrap(), 30f64.to_radians());
         assert!(spec.require.refuse_kinks);
+        near(spec.require.broken_per_m.unwrap(), 5.0);
         near(spec.require.reserve, 1.5);
         assert_eq!(&spec.source.text[passage.radius_span.clone()], "\"0 mm\"");
         assert_eq!(

@@ -67,7 +67,7 @@ pub fn margin(spec: &Spec, outcome: &Outcome, target: &Target) -> f64 {
 fn finding_margin(spec: &Spec, finding: &Finding) -> f64 {
     let required = spec.require.reserve;
     let needs = |limit: Limit| match limit {
-        Limit::Fracture | Limit::Compression | Limit::Strain => Some(required),
+        Limit::Fracture | Limit::Compression | Limit::Strain | Limit::Filaments => Some(required),
         Limit::Kink => spec.require.refuse_kinks.then_some(required),
         Limit::KinkStrain => Some(1.0),
         Limit::Yield | Limit::Temperature => None,

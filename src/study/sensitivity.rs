@@ -56,7 +56,7 @@ fn worst_of(spec: &Spec, varied: Varied) -> Variation {
             outcome.verdict(),
             outcome
                 .worst_finding(spec.require.refuse_kinks)
-                .and_then(|finding| finding.reserve()),
+                .and_then(|finding| finding.deciding_reserve()),
         )
     };
     Variation {

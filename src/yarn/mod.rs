@@ -106,6 +106,11 @@ impl Yarn {
         PI / 4.0 * self.count.filament_diameter_mm.powi(2)
     }
 
+    /// Bending stress at the surface of one filament by the elastic formula, MPa: E d k/2; curvature in 1/mm.
+    pub fn bending_stress_mpa(&self, curvature_per_mm: f64) -> f64 {
+        self.fibre.modulus_mpa * self.count.filament_diameter_mm * curvature_per_mm / 2.0
+    }
+
     /// Bending rigidity of one filament, N mm2: E pi d^4/64.
     pub fn filament_rigidity_n_mm2(&self) -> f64 {
         self.fibre.modulus_mpa * PI / 64.0 * self.count.filament_diameter_mm.powi(4)

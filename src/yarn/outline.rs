@@ -162,6 +162,23 @@ impl Outline {
         }
     }
 
+    /// Width at a height over the middle, mm; zero outside.
+    pub fn width_at_mm(&self, height_mm: f64) -> f64 {
+        let (w, t, y) = (self.width_mm, self.thickness_mm, height_mm.abs());
+        if 2.0 * y >= t {
+            return 0.0;
+        }
+        match self.shape {
+            Shape::Round | Shape::Ellipse => w * (1.0 - (2.0 * y / t).powi(2)).sqrt(),
+            Shape::Racetrack => w - t + (t * t - 4.0 * y * y).sqrt(),
+            Shape::Lens => {
+                let radius = (w * w + t * t) / (4.0 * t);
+                let below = radius - 0.5 * t + y;
+                2.0 * (radius * radius - below * below).max(0.0).sqrt()
+            }
+        }
+    }
+
     /// Second moment of the enclosed area about the axis along its width, mm4: the one that resists bending
     /// out of the cloth's plane.
     ///

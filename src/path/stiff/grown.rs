@@ -12,6 +12,7 @@
 //! width. a is the angle from level,
 //! positive where the outline falls to the right.
 
+use crate::quadrature::places;
 use crate::yarn::{Outline, Shape};
 use std::f64::consts::FRAC_PI_2;
 
@@ -297,11 +298,10 @@ impl Grown {
         bounds.push(to);
         let (mut length, mut squared) = (0.0, 0.0);
         for pair in bounds.windows(2) {
-            let width = pair[1] - pair[0];
-            for (node, weight) in super::series::NODES.iter().zip(super::series::WEIGHTS) {
-                let spot = self.at(pair[0] + width * node);
-                length += width * weight * spot.length_by;
-                squared += width * weight * spot.length_by * spot.curvature * spot.curvature;
+            for (mark, weight) in places(pair[0], pair[1], 1) {
+                let spot = self.at(mark);
+                length += weight * spot.length_by;
+                squared += weight * spot.length_by * spot.curvature * spot.curvature;
             }
         }
         (length, squared)

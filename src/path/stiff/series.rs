@@ -10,6 +10,7 @@
 )]
 
 use super::elastica::{ACROSS, ALONG, ANGLE, CURVATURE, RATE, Run};
+use crate::quadrature::{NODES, WEIGHTS};
 
 const ORDER: usize = 18;
 const TERM: f64 = 1e-11;
@@ -18,28 +19,6 @@ const STEP_TURN: f64 = 0.9;
 
 /// Steps of one run; a piece that takes more is no yarn.
 const STEPS: usize = 32;
-
-/// Nodes and weights of Gauss-Legendre with eight points on 0..1 (Abramowitz and Stegun 25.4.30).
-pub(super) const NODES: [f64; 8] = [
-    0.019_855_071_751_231_884,
-    0.101_666_761_293_186_63,
-    0.237_233_795_041_835_5,
-    0.408_282_678_752_175_1,
-    0.591_717_321_247_825,
-    0.762_766_204_958_164_5,
-    0.898_333_238_706_813_4,
-    0.980_144_928_248_768_1,
-];
-pub(super) const WEIGHTS: [f64; 8] = [
-    0.050_614_268_145_188_13,
-    0.111_190_517_226_687_24,
-    0.156_853_322_938_943_64,
-    0.181_341_891_689_181,
-    0.181_341_891_689_181,
-    0.156_853_322_938_943_64,
-    0.111_190_517_226_687_24,
-    0.050_614_268_145_188_13,
-];
 
 /// 1/((j + 1)(j + 2)) for the recurrences.
 pub(super) const INVERSE: [f64; ORDER + 1] = {
