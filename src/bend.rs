@@ -37,6 +37,8 @@ pub enum Stage {
     Warping,
     /// From beam or package to the fell.
     Weaving,
+    /// From the carrier's spool to the mandrel.
+    Braiding,
     /// In the cloth, at the peak of the loom's pull.
     Loom,
     /// In the cloth off the loom.
@@ -54,6 +56,7 @@ impl Stage {
             Self::Winding => "winding",
             Self::Warping => "warping",
             Self::Weaving => "weaving",
+            Self::Braiding => "braiding",
             Self::Loom => "loom",
             Self::Rest => "rest",
             Self::Finishing => "finishing",

@@ -13,6 +13,7 @@ pub mod quadrature;
 pub mod quantity;
 pub mod report;
 pub mod root;
+pub mod route;
 pub mod span;
 pub mod spec;
 pub mod study;

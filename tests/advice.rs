@@ -116,6 +116,44 @@ fn a_finer_filament_comes_with_its_count() {
     assert!(!crowns.is_empty() && crowns.iter().all(|bend| bend["state"] == "holds"));
 }
 
+/// Stations that only a route has are named and changed too, and so is the shed: each proposal holds when it is set.
+#[test]
+fn advice_reaches_the_stations_of_a_route_and_the_shed() {
+    let text = "name = \"t\"\nroute = [\"winding\", \"creel-warping\", \"rapier-weaving\"]\n[yarn.y]\nfibre = \"carbon-pitch-uhm\"\n\
+        linear_density = \"320 tex\"\nfilaments = 2000\n[weave]\npattern = \"twill 2/2 z\"\n\
+        shed = { depth = \"40 mm\", front = \"150 mm\", back = \"500 mm\", let_off = 0.5 }\n\
+        warp = { yarn = \"y\", sett = \"5 /cm\" }\nweft = { yarn = \"y\", sett = \"5 /cm\" }\n";
+    let weaves = Weaves::builtin();
+    let document = Document::parse(SourceText::new("t", text)).unwrap();
+    let spec = document.spec(&weaves).unwrap();
+    let outcome = run(&spec, 1.0).unwrap();
+    let targets: Vec<Target> = outcome.findings.iter().map(Target::of).collect();
+    let mut keys: Vec<String> = Vec::new();
+    for proposal in advice(&document, &weaves, &spec, &outcome) {
+        let mut changed = document.clone();
+        put(&mut changed, &proposal.set);
+        let here = |target: &&Target| target.name() == proposal.place;
+        let target = targets.iter().find(here).unwrap();
+        if !proposal.set.is_empty() {
+            assert!(margin_of(&changed, &weaves, target) >= 0.0, "{proposal:?}");
+        }
+        keys.extend(proposal.set.into_iter().map(|(key, _)| key));
+    }
+    for key in [
+        "passage.weft traverse guide.radius",
+        "passage.warp traverse guide.radius",
+        "weave.shed.let_off",
+    ] {
+        assert!(keys.iter().any(|known| known == key), "{key} {keys:?}");
+    }
+    let bounds = limits(&document, &weaves, &spec, &outcome);
+    let eyelet = |bound: &&lissom::study::Bound| {
+        bound.place.starts_with("creel eyelet") && bound.what == "smallest radius"
+    };
+    let set = &bounds.iter().find(eyelet).unwrap().set;
+    assert_eq!(set[0].0, "passage.warp creel eyelet.radius");
+}
+
 #[test]
 fn limits_are_shown_in_every_format() {
     let run = |format: &str| {

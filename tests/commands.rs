@@ -249,6 +249,42 @@ fn weaves_lists_and_draws() {
 }
 
 #[test]
+fn routes_lists_and_shows_every_figure_with_its_source() {
+    let list = out(&lissom(&["routes"], ""));
+    for name in [
+        "winding",
+        "creel-warping",
+        "rapier-weaving",
+        "shuttle-weaving",
+        "maypole-braiding",
+        "roll-up",
+    ] {
+        assert!(list.contains(name), "{name}");
+    }
+    insta::assert_snapshot!(
+        "routes-rapier-weaving",
+        out(&lissom(&["routes", "rapier-weaving"], ""))
+    );
+    let json: Value =
+        serde_json::from_slice(&lissom(&["routes", "--format", "json"], "").stdout).unwrap();
+    for route in json.as_array().unwrap() {
+        for station in route["stations"].as_array().unwrap() {
+            for key in ["radius", "turn"] {
+                let source = station[key]["source"].as_str().unwrap();
+                assert!(!source.is_empty(), "{route} {key}");
+            }
+        }
+    }
+    let unknown = lissom(&["routes", "rolling-up"], "");
+    assert_eq!(unknown.status.code(), Some(2));
+    assert!(
+        err(&unknown).contains("did you mean `roll-up`?"),
+        "{}",
+        err(&unknown)
+    );
+}
+
+#[test]
 fn a_folder_of_own_weaves_is_read() {
     let folder = tempfile::tempdir().unwrap();
     std::fs::write(
@@ -278,7 +314,7 @@ fn explain_tells_every_code() {
 #[test]
 fn help_is_as_its_snapshots_say() {
     for command in [
-        "", "check", "compare", "limits", "fibres", "weaves", "new", "explain",
+        "", "check", "compare", "limits", "fibres", "weaves", "routes", "new", "explain",
     ] {
         let arguments = [command, "--help"];
         let from = usize::from(command.is_empty());

@@ -54,7 +54,7 @@ fn the_readme_names_every_example_code_and_command() {
         );
     }
     for command in [
-        "check", "compare", "limits", "fibres", "weaves", "new", "explain",
+        "check", "compare", "limits", "fibres", "weaves", "routes", "new", "explain",
     ] {
         assert!(readme.contains(&format!("`lissom {command}")), "{command}");
     }
@@ -68,9 +68,17 @@ fn paths_in_the_documents_exist() {
     for name in ["README.md", "DEVELOPERS.md"] {
         let text = read(name);
         for word in text.split('`').skip(1).step_by(2) {
-            let is_path = ["src/", "tests/", "benches/", "examples/", "weaves/", ".ci/"]
-                .iter()
-                .any(|folder| word.starts_with(folder));
+            let is_path = [
+                "src/",
+                "tests/",
+                "benches/",
+                "examples/",
+                "weaves/",
+                "routes/",
+                ".ci/",
+            ]
+            .iter()
+            .any(|folder| word.starts_with(folder));
             if is_path && !word.contains(['*', ' ', 'N']) {
                 assert!(root().join(Path::new(word)).exists(), "{name} names {word}");
             }

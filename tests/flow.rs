@@ -150,3 +150,90 @@ fn a_diameter_other_than_the_designations_is_told() {
         "{other}"
     );
 }
+
+/// 68 tex of E-glass at 73 GPa, lifted 40 mm between 150 and 500 mm: 20.563 N (`passage::shed`), a tenth of it left by
+/// the let-off. With the mean of 0.5 N that is more than the peak of 1 N at the last station, whose mean is the fell's.
+#[test]
+fn an_open_shed_pulls_at_the_warps_stations_while_weaving() {
+    let with = |let_off: &str| {
+        let shed = format!(
+            "shed = {{ depth = \"40 mm\", front = \"150 mm\", back = \"500 mm\", let_off = {let_off} }}\n[[passage]]\nyarn = \"warp\"\n\
+             name = \"beam\"\nstage = \"warping\"\nradius = \"80 mm\"\nturn = \"90 deg\"\n[[passage]]\nyarn = \"warp\"\nname = \"reed\"\n\
+             radius = \"1 mm\"\nturn = \"5 deg\"\n[[passage]]\nyarn = \"weft\"\nname = \"eyelet\"\nradius = \"2 mm\"\nturn = \"60 deg\"\n"
+        );
+        outcome(&format!("{CLOTH}{shed}"))
+    };
+    let eased = with("0.9");
+    let near = |outcome: &lissom::flow::Outcome, place: &str, pull: f64| {
+        let ours = finding(outcome, place).tension_n;
+        assert!((ours / pull - 1.0).abs() < 1e-4, "{place} {ours} {pull}");
+    };
+    for place in ["reed", "open shed"] {
+        near(&eased, place, 0.5 + 2.0563);
+    }
+    near(&eased, "beam", 1.0);
+    near(&eased, "eyelet", 1.6);
+    let slack = with("1");
+    near(&slack, "reed", 1.0);
+    near(&slack, "open shed", 0.5);
+}
+
+/// A station of a route is heated as any other.
+#[test]
+fn a_routes_station_overheats() {
+    let text = CLOTH.replacen("name = \"t\"\n", "name = \"t\"\nroute = \"roll-up\"\n", 1);
+    let hot =
+        "[[passage]]\nyarn = \"warp\"\nname = \"take-up roller\"\ntemperature = \"330 degC\"\n";
+    let outcome = outcome(&format!("{text}{hot}"));
+    let heated = |f: &&Finding| f.state == State::Overheats;
+    let places: Vec<&str> = outcome
+        .findings
+        .iter()
+        .filter(heated)
+        .map(|f| f.place.as_ref())
+        .collect();
+    assert_eq!(places, ["take-up roller"]);
+}
+
+/// On the inner face a wide corner takes off what it adds on the outer; a sharp one bends the flanks of the crown to the
+/// other side, at most as the corner bends a straight yarn. Inside, it bends the more the further the layer.
+#[test]
+fn both_faces_of_a_corner_are_judged() {
+    let tool = |more: &str| {
+        let tool = format!("[[tool]]\nname = \"edge\"\nbend_axis = \"0 deg\"\n{more}\n");
+        outcome(&format!("{CLOTH}{tool}"))
+    };
+    let curvature = |outcome: &lissom::flow::Outcome, face: &str| {
+        finding(outcome, &format!("edge, {face} weft crown"))
+            .filament
+            .curvature_per_mm
+    };
+    let wide = tool("radius = \"60 mm\"");
+    let thickness = wide.cloth.thickness_mm;
+    let full = 1.0 / (60.0 + thickness / 2.0);
+    let crown = curvature(&wide, "outer") - full;
+    assert!(crown > 2.0 * full);
+    assert!((curvature(&wide, "inner") - (crown - full)).abs() < 1e-9);
+    // Half of a yarn's crowns lie on either face.
+    let met = |finding: &Finding| match finding.meets {
+        lissom::bend::Meets::TimesPerMetre(times) => times,
+        lissom::bend::Meets::All => f64::NAN,
+    };
+    let at_rest = |f: &&Finding| {
+        f.stage == lissom::bend::Stage::Rest && f.system == lissom::bend::SystemName::Weft
+    };
+    let all = met(wide.findings.iter().find(at_rest).unwrap());
+    for face in ["outer", "inner"] {
+        let here = met(finding(&wide, &format!("edge, {face} weft crown")));
+        assert!((here - 0.5 * all).abs() < 1e-9, "{here} {all}");
+    }
+    let full = 1.0 / (6.0 + thickness / 2.0);
+    let inner = curvature(&tool("radius = \"6 mm\""), "inner");
+    assert!(
+        inner > full - crown && inner <= full,
+        "{inner} {crown} {full}"
+    );
+    let third = tool("radius = \"6 mm\"\ncorner = \"inside\"\nlayer = 3");
+    let full = 1.0 / (6.0 - 2.5 * thickness);
+    assert!((curvature(&third, "outer") - crown - full).abs() < 1e-9);
+}

@@ -164,7 +164,77 @@ const CASES: &[(&str, &str, &str)] = &[
     (
         "two passages of one name",
         "[[passage]]",
-        "[[passage]]\nyarn = \"weft\"\nname = \"heald eye\"\nradius = \"2 mm\"\nturn = \"1 deg\"\n[[passage]]",
+        "[[passage]]\nyarn = \"warp\"\nname = \"heald eye\"\nradius = \"2 mm\"\nturn = \"1 deg\"\n[[passage]]",
+    ),
+    (
+        "unknown route",
+        "[fibre.own]",
+        "route = \"rapier-weeving\"\n[fibre.own]",
+    ),
+    (
+        "route of another kind",
+        "[fibre.own]",
+        "route = 7\n[fibre.own]",
+    ),
+    (
+        "route of a braid",
+        "[fibre.own]",
+        "route = [\"winding\", \"maypole-braiding\"]\n[fibre.own]",
+    ),
+    (
+        "one route twice",
+        "[fibre.own]",
+        "route = [\"winding\", \"Winding\"]\n[fibre.own]",
+    ),
+    (
+        "two routes with one station",
+        "[fibre.own]",
+        "route = [\"rapier-weaving\", \"shuttle-weaving\"]\n[fibre.own]",
+    ),
+    (
+        "no station of the route",
+        "[require]",
+        "[[passage]]\nyarn = \"weft\"\nname = \"weft eylet\"\nradius = \"1 mm\"\n[require]\nROUTE",
+    ),
+    (
+        "wrong value for a station of the route",
+        "[require]",
+        "[[passage]]\nyarn = \"weft\"\nname = \"weft eyelet\"\nradius = 1\n[require]\nROUTE",
+    ),
+    (
+        "shed without its front",
+        "pattern = \"plain\"",
+        "pattern = \"plain\"\nshed = { depth = \"40 mm\", back = \"500 mm\" }",
+    ),
+    (
+        "let-off over one",
+        "pattern = \"plain\"",
+        "pattern = \"plain\"\nshed = { depth = \"40 mm\", front = \"150 mm\", back = \"500 mm\", let_off = 90 }",
+    ),
+    (
+        "shed of another kind",
+        "pattern = \"plain\"",
+        "pattern = \"plain\"\nshed = \"40 mm\"",
+    ),
+    (
+        "corner nowhere",
+        "[require]",
+        "[[tool]]\nname = \"frame\"\nradius = \"6 mm\"\ncorner = \"inner\"\n[require]",
+    ),
+    (
+        "layer nought",
+        "[require]",
+        "[[tool]]\nname = \"frame\"\nradius = \"6 mm\"\nlayer = 0\n[require]",
+    ),
+    (
+        "layer without room",
+        "[require]",
+        "[[tool]]\nname = \"frame\"\nradius = \"2 mm\"\ncorner = \"inside\"\nlayer = 12\n[require]",
+    ),
+    (
+        "no layer inside an edge",
+        "[require]",
+        "[[tool]]\nname = \"frame\"\nradius = \"0 mm\"\ncorner = \"inside\"\n[require]",
     ),
     ("passage without radius", "radius = \"2 mm\"\n", ""),
     ("turn of many wraps", "\"12 deg\"", "\"12000 deg\""),
@@ -240,7 +310,7 @@ const CASES: &[(&str, &str, &str)] = &[
 
 #[test]
 fn every_wrong_spec_gets_its_message() {
-    assert!(CASES.len() >= 65, "the number of cases never falls");
+    assert!(CASES.len() >= 79, "the number of cases never falls");
     for (name, from, to) in CASES {
         let mut spoilt = GOOD.replacen(from, to, 1);
         if name.starts_with("too many") {
@@ -248,6 +318,13 @@ fn every_wrong_spec_gets_its_message() {
                 "[[passage]]\nyarn = \"warp\"\nname = \"p\"\nradius = \"2 mm\"\nturn = \"1 deg\"\n"
                     .repeat(501);
             spoilt = spoilt.replacen("PASSAGES", &many, 1);
+        }
+        if spoilt.contains("ROUTE") {
+            spoilt = spoilt.replacen("ROUTE", "", 1).replacen(
+                "[fibre.own]",
+                "route = \"rapier-weaving\"\n[fibre.own]",
+                1,
+            );
         }
         if name.starts_with("temperature") {
             spoilt = spoilt.replacen(

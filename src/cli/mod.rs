@@ -7,6 +7,7 @@ mod fibres;
 mod limits;
 mod new;
 mod out;
+mod routes;
 mod weaves;
 
 use clap::{Parser, Subcommand};
@@ -53,6 +54,8 @@ enum Command {
     Fibres(fibres::Fibres),
     /// List the named weaves, or draw one on point paper
     Weaves(weaves::Weaves),
+    /// List the ready routes, or show what the yarn runs over on one, with sources
+    Routes(routes::Routes),
     /// Write a commented spec to start from
     New(new::New),
     /// Tell the method behind a finding's code
@@ -81,6 +84,7 @@ pub(crate) fn run() -> ExitCode {
         Command::Limits(command) => command.run(&streams),
         Command::Fibres(command) => command.run(&streams),
         Command::Weaves(command) => command.run(&streams),
+        Command::Routes(command) => command.run(&streams),
         Command::New(command) => command.run(&streams),
         Command::Explain(command) => command.run(&streams),
     };

@@ -197,6 +197,7 @@ impl<'a> Builder<'a> {
         Ok(Fibre {
             id,
             name,
+            family: record.map(|record| record.family.clone()),
             mechanism,
             hazard: given
                 .hazard

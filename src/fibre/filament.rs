@@ -94,6 +94,8 @@ pub struct Fibre {
     pub id: String,
     /// Full name.
     pub name: String,
+    /// Family of the library's record it is or starts from, such as `glass`.
+    pub family: Option<String>,
     /// How it fails.
     pub mechanism: Mechanism,
     /// The caution that goes with it.

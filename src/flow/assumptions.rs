@@ -3,6 +3,7 @@
 use super::Outcome;
 use crate::bend::Stage;
 use crate::fibre::FigureName;
+use crate::passage::{reed_strokes, shed_pull_n, shed_strain, sheddings};
 use crate::quantity::{plain, significant};
 use crate::spec::{DEFAULT_TENSION_N_TEX, Passage, PathModel, SettAt, Spec, System};
 use crate::weave::{Closure, Cloth, ClothYarn, SharedBy};
@@ -80,6 +81,7 @@ pub fn assumptions(spec: &Spec, outcome: &Outcome) -> Vec<String> {
         ));
     }
     said.extend(way(spec));
+    said.extend(open_shed(spec));
     if !spec.require.reserve_given {
         said.push(format!(
             "a reserve of {} counts as holding (the default)",
@@ -282,13 +284,61 @@ fn tension(word: &str, system: &System) -> Option<String> {
     })
 }
 
-fn way(spec: &Spec) -> Vec<String> {
+/// The ready routes, and what the spec overrides of them.
+fn routes(spec: &Spec) -> Vec<String> {
+    let mut names: Vec<&str> = Vec::new();
+    for route in spec.passages.iter().filter_map(|passage| passage.route) {
+        if !names.contains(&route) {
+            names.push(route);
+        }
+    }
+    let told = |name: &&str| {
+        let overridden: Vec<String> = spec
+            .passages
+            .iter()
+            .filter(|passage| passage.route == Some(*name) && passage.number.is_some())
+            .map(|passage| format!("{} ({})", passage.name, passage.system.word()))
+            .collect();
+        let overridden = if overridden.is_empty() {
+            String::new()
+        } else {
+            format!("; overridden at: {}", overridden.join(", "))
+        };
+        format!(
+            "route `{name}`: radii, turns and tensions of its stations are common practice without a source where `lissom routes {name}` tells no other{overridden}"
+        )
+    };
+    names.iter().map(told).collect()
+}
+
+/// What the open shed does to the warp, and how often it and the reed come.
+fn open_shed(spec: &Spec) -> Vec<String> {
     let mut said = Vec::new();
+    if let (Some(shed), Some(times)) = (&spec.weave.shed, sheddings(&spec.weave)) {
+        said.push(format!(
+            "open shed: the warp is lengthened by {} % after let-off ({} of it taken up), elastically, which adds {} cN; a point of the warp sees {} sheddings, each counted once",
+            significant(100.0 * shed_strain(shed), 3),
+            plain(shed.let_off, 3),
+            significant(100.0 * shed_pull_n(&spec.weave), 3),
+            significant(times, 3)
+        ));
+    }
+    said.extend(reed_strokes(spec).map(|strokes| {
+        format!(
+            "a point of the warp meets {} strokes of the reed; its rubbing is left out",
+            significant(strokes, 3)
+        )
+    }));
+    said
+}
+
+fn way(spec: &Spec) -> Vec<String> {
+    let mut said = routes(spec);
     let guessed: Vec<String> = spec
         .passages
         .iter()
         .filter(|passage| !passage.friction_given)
-        .map(|passage| format!("{} {}", passage.name, plain(passage.friction, 3)))
+        .map(|passage| format!("{} {}", passage.place, plain(passage.friction, 3)))
         .collect();
     if !guessed.is_empty() {
         said.push(format!(
@@ -296,8 +346,14 @@ fn way(spec: &Spec) -> Vec<String> {
             guessed.join(", ")
         ));
     }
-    let elsewhere =
-        |passage: &&Passage| passage.stage != Stage::Weaving && passage.tension_n.is_none();
+    // A tension anywhere on a stage is the chain's for the whole of it.
+    let chained = |passage: &Passage| {
+        spec.passages.iter().any(|other| {
+            (other.system, other.stage) == (passage.system, passage.stage)
+                && other.tension_n.is_some()
+        })
+    };
+    let elsewhere = |passage: &&Passage| passage.stage != Stage::Weaving && !chained(passage);
     if let Some(passage) = spec.passages.iter().find(elsewhere) {
         said.push(format!(
             "pull while {} taken as that of weaving where no station gives one",

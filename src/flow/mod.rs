@@ -43,7 +43,7 @@ pub struct Variation {
 /// Runs the flow; `flatness` varies the assumed outlines (1 for the spec as it stands).
 ///
 /// # Errors
-/// Where there is no cloth: the yarns do not fit or do not interlace.
+/// Where there is no cloth: the yarns do not fit or do not interlace; or it has no room inside a corner.
 pub fn run(spec: &Spec, flatness: f64) -> Result<Outcome, ClothError> {
     run_varied(
         spec,
@@ -79,7 +79,7 @@ fn run_counting(spec: &Spec, varied: Varied, count: bool) -> Result<Outcome, Clo
         &cloth,
         on_loom.as_ref().unwrap_or(&cloth),
     ));
-    bends.extend(drape::corners(spec, &cloth));
+    bends.extend(drape::corners(spec, &cloth)?);
     bends.sort_by_key(|bend| bend.stage);
     let allowed = spec.require.broken_per_m;
     let flaws = |system: &System| {

@@ -12,7 +12,9 @@
 //! with the binding b: free filaments (b = 0) ease each about its own axis, a bonded yarn as a whole. k_free is what
 //! an elastic filament (with binding: the yarn) needs to get round at all under its pull (`easing`). A twisted
 //! yarn's filaments lie on a helix: `path::helix`, the exact form for the centreline's radius R + t/2; eased, at most
-//! the straight helix's curvature and k_free together. A larger bend on top (a corner of a tool) adds its curvature.
+//! the straight helix's curvature and k_free together. A larger bend on top (a corner of a tool) adds its curvature; one to
+//! the other side (the corner's inner face) takes it off, and what is left is judged by its size, whichever side it
+//! turns to: then the outermost filament, bent least by the crown, may be bent most.
 //!
 //! Free filaments carry the same pull and the innermost is bent most, so it governs for all. In a bonded yarn the
 //! stresses are fractions linear in y, so their largest lies at one of both ends, and both are judged. Where breaks are
@@ -58,7 +60,9 @@ impl Position {
             Self::Single => "the yarn is one filament",
             Self::Inside => "nearest to what the yarn is bent over it is bent most",
             Self::Any => "where nothing is bent all carry the same",
-            Self::Outside => "bonded to the others it is stretched by the yarn's own bend besides",
+            Self::Outside => {
+                "bonded to the others it is stretched by the yarn's own bend besides, or bent most to the other side"
+            }
             Self::Surface => "on the longest helix it passes the inside of every bend",
         }
     }
@@ -174,9 +178,9 @@ impl<'a> Bundle<'a> {
         let strain = self.yarn.binding * y * self.centre_per_mm;
         Filament {
             position,
-            curvature_per_mm: lying.min(eased) + added,
-            lying_per_mm: lying + added,
-            free_per_mm: self.free_per_mm.map(|free| free + added),
+            curvature_per_mm: (lying.min(eased) + added).abs(),
+            lying_per_mm: (lying + added).abs(),
+            free_per_mm: self.free_per_mm.map(|free| (free + added).abs()),
             axial_stress_mpa: self.pull_mpa + self.yarn.fibre.modulus_mpa * strain,
         }
     }
@@ -204,10 +208,11 @@ impl<'a> Bundle<'a> {
             let [inner, outer] = self.on_the_surface();
             [Some(inner), bonded.then_some(outer)]
         } else {
-            // Free filaments all carry the same pull, and none is bent more than the innermost.
+            // Free filaments all carry the same pull, and none is bent more than the innermost, unless to the other side.
+            let both = bonded || self.added_per_mm < 0.0;
             [
                 Some(self.at(Position::Inside, inside)),
-                bonded.then(|| self.at(Position::Outside, outside)),
+                both.then(|| self.at(Position::Outside, outside)),
             ]
         }
     }
@@ -221,7 +226,17 @@ impl<'a> Bundle<'a> {
             Some(radius) => bent_helix_peak_per_mm(r, twist, radius + 0.5 * thickness),
             None => straight,
         };
-        [-r, r].map(|y| self.filament(Position::Surface, y, on_surface, straight + self.eased(-r)))
+        [-r, r].map(|y| {
+            let mut found =
+                self.filament(Position::Surface, y, on_surface, straight + self.eased(-r));
+            if self.centre_per_mm < 0.0 {
+                // Bent to the other side it is the same helix on the same curve.
+                found.curvature_per_mm =
+                    bent_helix_peak_per_mm(r, twist, -1.0 / self.centre_per_mm);
+                found.lying_per_mm = found.curvature_per_mm;
+            }
+            found
+        })
     }
 
     /// All filaments by their share, from the inside to the outside: through the thickness by the outline's width there;

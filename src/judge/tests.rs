@@ -242,6 +242,38 @@ fn crowns_ease_and_corners_add() {
     assert!((judged(&crown, wire()).filament.curvature_per_mm - alone - 0.25).abs() < 1e-12);
 }
 
+/// On a corner's inner face the crown's curvature and the corner's lie opposite: what is left is judged by its size. By
+/// hand: a wire of 0.1 mm lying on 0.95 mm is bent to 1/mm; 0.25 less leaves 0.75, 1.5 less 0.5 to the other side. Of a yarn
+/// 0.2 mm thick on 1.9 mm the outermost filament is then bent most: 1/(1.9 + 0.2 - d/2) against 2/mm.
+#[test]
+fn opposite_bends_take_off_and_are_judged_by_their_size() {
+    let with = |radius: f64, added: f64, of: Yarn| {
+        let mut crown = bend(radius, 0.0);
+        crown.added_per_mm = added;
+        judged(&crown, of).filament
+    };
+    let wire = |added| with(0.95, added, yarn("stainless-annealed", 1, 100.0)).curvature_per_mm;
+    assert!((wire(-0.25) - 0.75).abs() < 1e-12 && (wire(-1.5) - 0.5).abs() < 1e-12);
+    let tow = with(1.9, -2.0, yarn("e-glass", 1000, 9.0));
+    assert_eq!(tow.position, Position::Outside);
+    assert!((tow.curvature_per_mm - (2.0 - 1.0 / (2.1 - 0.0045))).abs() < 1e-12);
+}
+
+/// A twisted yarn bent to the other side is the same helix.
+#[test]
+fn a_twisted_yarn_is_bent_alike_to_both_sides() {
+    let mut twisted = yarn("e-glass", 1000, 9.0);
+    twisted.twist_per_mm = 0.1;
+    let of = |radius: Option<f64>, added: f64| {
+        let mut corner = bend(1.0, 0.0);
+        corner.profile[0].lies_on_mm = radius;
+        corner.added_per_mm = added;
+        judged(&corner, twisted.clone()).filament.curvature_per_mm
+    };
+    // The centreline at 2 mm: lying on 1.9, or straight and bent back by a corner of 2 mm.
+    assert!((of(Some(1.9), 0.0) - of(None, -0.5)).abs() < 1e-12);
+}
+
 /// A stretch of a path of least energy, R = 2 mm on the centreline of a yarn 0.2 mm thick.
 fn on_path(pull_n: f64) -> Bend {
     let mut bend = bend(2.0 - 0.1, pull_n);

@@ -6,9 +6,15 @@
 //! largest, at the peak. Over a small turn a stiff strand does not close up to the guide: the edge law of
 //! `path::rod` caps the curvature, the judge takes the smaller.
 //!
+//! In an open shed the warp's pull is higher still (`shed`): its stations while weaving are judged at the larger of both.
+//!
 //! Left out: the outline a yarn has on a guide (it is judged in that of the cloth), bending of the strand as a whole taking up some pull; guides that roll; speed.
 
-use crate::bend::{Bend, Easing, Meets, Stretch, SystemName};
+mod shed;
+
+pub use shed::{OPEN_SHED, open_shed, reed_strokes, shed_pull_n, shed_strain, sheddings};
+
+use crate::bend::{Bend, Easing, Meets, Stage, Stretch, SystemName};
 use crate::path::tension_after;
 use crate::spec::{Passage, Spec, Weave};
 use crate::weave::Cloth;
@@ -38,7 +44,7 @@ pub fn chain(stations: &[&Passage], fell_n: f64) -> Vec<f64> {
     behind
 }
 
-/// One bend for each station of the spec, in its order.
+/// One bend for each station of the spec, in its order, and one for the open shed.
 pub fn stations(spec: &Spec, cloth: &Cloth) -> Vec<Bend> {
     let same_route = |a: &Passage, b: &Passage| a.system == b.system && a.stage == b.stage;
     spec.passages
@@ -55,8 +61,15 @@ pub fn stations(spec: &Spec, cloth: &Cloth) -> Vec<Bend> {
                 .filter(|other| same_route(other, passage))
                 .count();
             let pulls = chain(&route, mean_tension_n(&spec.weave, passage.system));
-            station(passage, cloth, spec.weave.peak * pulls[place])
+            let mean_n = pulls[place];
+            let at_peak_n = spec.weave.peak * mean_n;
+            let in_shed_n = match (passage.system, passage.stage) {
+                (SystemName::Warp, Stage::Weaving) => mean_n + shed_pull_n(&spec.weave),
+                _ => 0.0,
+            };
+            station(passage, cloth, at_peak_n.max(in_shed_n))
         })
+        .chain(open_shed(&spec.weave))
         .collect()
 }
 
@@ -74,7 +87,7 @@ fn station(passage: &Passage, cloth: &Cloth, pull_n: f64) -> Bend {
     };
     let centre_mm = passage.radius_mm + 0.5 * laid.outline.thickness_mm();
     Bend {
-        place: passage.name.clone().into(),
+        place: passage.place.clone().into(),
         stage: passage.stage,
         system: passage.system,
         profile: vec![Stretch {
@@ -96,11 +109,11 @@ fn station(passage: &Passage, cloth: &Cloth, pull_n: f64) -> Bend {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::bend::Stage;
 
     fn station(friction: f64, turn_deg: f64, tension_n: Option<f64>) -> Passage {
         Passage {
             name: "station".into(),
+            place: "station".into(),
             system: SystemName::Warp,
             stage: Stage::Weaving,
             radius_mm: 1.0,
@@ -109,6 +122,9 @@ mod tests {
             friction_given: true,
             tension_n,
             temperature_c: None,
+            reed_travel_mm: None,
+            route: None,
+            number: None,
             radius_span: 0..0,
             temperature_span: None,
         }

@@ -7,6 +7,7 @@ use super::bend::BendRow;
 use super::broken::BrokenReport;
 use super::cautions::cautions;
 use crate::flow::{Broken, Outcome, RigidityBound, Variation, assumptions, warnings};
+use crate::passage::{reed_strokes, sheddings};
 use crate::quantity::rounded;
 use crate::spec::Spec;
 use crate::weave::{Closure, Cloth, ClothYarn, SharedBy};
@@ -129,6 +130,10 @@ pub struct SystemReport {
     pub tension_n: Option<f64>,
     #[serde(skip_serializing_if = "Option::is_none")]
     pub contact_force_n: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub sheddings: Option<f64>,
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub reed_strokes: Option<f64>,
 }
 
 /// The worst at another flatness.
@@ -276,7 +281,11 @@ impl ClothReport {
             crimp_mismatch: cloth.closed.mismatch.map(rounded),
             thickness_factor: cloth.thickness_factor.map(rounded),
             raised_packing: cloth.raised_packing.map(rounded),
-            warp: SystemReport::new(&weave.warp.yarn, &cloth.warp),
+            warp: SystemReport {
+                sheddings: sheddings(weave).map(rounded),
+                reed_strokes: reed_strokes(spec).map(rounded),
+                ..SystemReport::new(&weave.warp.yarn, &cloth.warp)
+            },
             weft: SystemReport::new(&weave.weft.yarn, &cloth.weft),
             thickness_mm: rounded(cloth.thickness_mm),
             free_height_mm: cloth.free_height_mm.map(rounded),
@@ -311,6 +320,8 @@ impl SystemReport {
             bending_rigidity_n_mm2: rounded(yarn.rigidity_n_mm2(&woven.laid)),
             tension_n: woven.solved().map(|system| rounded(system.pull_n)),
             contact_force_n: woven.solved().map(|system| rounded(system.push_n)),
+            sheddings: None,
+            reed_strokes: None,
         }
     }
 }

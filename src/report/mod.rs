@@ -11,7 +11,7 @@
 //! | `table` | tables in text |
 //! | `cautions` | what every report warns of, by fibre |
 //! | `problems` | problems of a spec with the line and a mark under the place |
-//! | `fibres`, `weaves` | listings of the library and of the named weaves |
+//! | `fibres`, `weaves`, `routes` | listings of the library, of the named weaves and of the ready routes |
 
 mod bend;
 mod bend_words;
@@ -24,6 +24,7 @@ mod json;
 mod limits;
 mod markdown;
 mod problems;
+mod routes;
 mod table;
 mod text;
 mod weaves;
@@ -42,5 +43,6 @@ pub use json::to_json;
 pub use limits::{LimitsReport, LimitsRow};
 pub use markdown::markdown;
 pub use problems::{jammed, problems};
+pub use routes::{route_text, routes_json, routes_text};
 pub use text::text;
 pub use weaves::{weave_text, weaves_json, weaves_text};

@@ -62,6 +62,27 @@ pub fn jammed(spec: &Spec, jammed: &Jammed) -> Problem {
         ),
         other => other.to_string(),
     };
+    if let ClothError::Corner {
+        name,
+        layer,
+        thickness_mm,
+        radius_mm,
+    } = &jammed.why
+    {
+        let place = spec.tools.iter().find(|tool| tool.name == *name);
+        let span = place.map_or_else(|| weave.span.clone(), |tool| tool.radius_span.clone());
+        let layers = layers_inside(*radius_mm, *thickness_mm);
+        let fits = match layers {
+            0 => "no layer fits at this radius".to_owned(),
+            _ => format!("at this radius the last layer that fits is {layers}"),
+        };
+        return Problem::at(span, message, "no room")
+            .help(fits)
+            .help(format!(
+                "layer {layer} needs a radius above {} mm",
+                significant(ceil_3_digits((f64::from(*layer) - 0.5) * thickness_mm), 3)
+            ));
+    }
     let span = match jammed.why {
         ClothError::Thickness { .. } => weave.span.clone(),
         _ => weave.warp.sett_span.clone(),
@@ -103,6 +124,17 @@ pub fn jammed(spec: &Spec, jammed: &Jammed) -> Problem {
     problem
         .help("or a weave with longer floats, or yarns measured flatter in the cloth (`width`, `thickness`)")
         .help("`lissom explain jammed` tells the method")
+}
+
+/// The last layer whose middle lies at a radius above zero.
+fn layers_inside(radius_mm: f64, thickness_mm: f64) -> u32 {
+    ((radius_mm / thickness_mm + 0.5).ceil() - 1.0).max(0.0) as u32
+}
+
+/// Rounded up to three digits, for a limit that has to be passed.
+fn ceil_3_digits(value: f64) -> f64 {
+    let scale = 10f64.powf(2.0 - value.log10().floor());
+    (value * scale).ceil() / scale
 }
 
 fn floor_4_digits(value: f64) -> f64 {

@@ -1,7 +1,9 @@
 //! A spec's TOML tree with places, whose values can be replaced before it is read: what a study varies.
 //!
 //! Keys are named by a path: `weave.warp.sett`, `weave.pattern`, `yarn.face.width`, `fibre.own.modulus`,
-//! `passage.heald eye.radius` (or its number from 1), `tool.corner.radius`, `require.reserve`. A replaced
+//! `passage.heald eye.radius` (or its number from 1; `passage.weft eyelet.radius` where both yarns have one of that
+//! name), `tool.corner.radius`, `require.reserve`. A station that only a route has is overridden: it gets a `[[passage]]`
+//! of its own. A replaced
 //! value keeps the place of what it replaced; an added one takes that of its table, so that problems of a
 //! variant still point into the text.
 
@@ -9,6 +11,7 @@ use super::field::{Placed, Problems};
 use super::keys::{self, Key};
 use super::problem::{Problem, nearest_of};
 use super::reader::Table;
+use super::route::{RouteStation, read_routes};
 use super::tree::{self, Branch, Value};
 use super::{Spec, read_parts};
 use crate::pattern::Weaves;
@@ -81,6 +84,11 @@ impl KeyPath {
     /// Where no spec has such a key.
     pub fn parse(text: &str) -> Result<Self, SetError> {
         let text = text.trim();
+        let in_weave = if text.starts_with("weave.shed.") {
+            keys::SHED
+        } else {
+            keys::SYSTEM
+        };
         let tables: [(&str, &'static [Key], bool); 7] = [
             ("fibre", keys::FIBRE, true),
             ("yarn", keys::YARN, true),
@@ -88,7 +96,7 @@ impl KeyPath {
             ("tool", keys::TOOL, true),
             ("weave", keys::WEAVE, false),
             ("require", keys::REQUIRE, false),
-            ("weave", keys::SYSTEM, true),
+            ("weave", in_weave, true),
         ];
         let (top, rest) = text.split_once('.').unwrap_or((text, ""));
         let (middle, last) = match rest.rsplit_once('.') {
@@ -111,7 +119,7 @@ impl KeyPath {
                 known: known.join(", "),
             });
         };
-        let system = *top != "weave" || matches!(middle, None | Some("warp" | "weft"));
+        let system = *top != "weave" || matches!(middle, None | Some("warp" | "weft" | "shed"));
         match known.iter().find(|key| key.name == last) {
             Some(key) if system => Ok(Self {
                 text: text.to_owned(),
@@ -239,13 +247,17 @@ impl Document {
             return Ok(self.root.enter(key.top, &everywhere));
         };
         match key.top {
-            "passage" | "tool" => {
+            "passage" => self.passage_of(name),
+            "tool" => {
                 let Some(Value::List(list)) =
                     self.root.get_mut(key.top).map(|found| &mut found.value)
                 else {
                     return Err(no_such(key.top, name, Vec::new()));
                 };
-                let names: Vec<String> = list.iter().map(|item| name_of(&item.value)).collect();
+                let names: Vec<String> = list
+                    .iter()
+                    .map(|item| text_of(&item.value, "name"))
+                    .collect();
                 let number = name
                     .parse::<usize>()
                     .ok()
@@ -278,6 +290,73 @@ impl Document {
         }
     }
 
+    /// The table of a passage and its place, made where only a route has it.
+    fn passage_of(&mut self, name: &str) -> Result<(&mut Branch, Span), SetError> {
+        let stations: Vec<RouteStation> = {
+            let unheard = Problems::default();
+            let spec = Table::new(&unheard, &self.root, 0..0, "the spec", keys::SPEC);
+            read_routes(&spec).stations().collect()
+        };
+        let own: Vec<(String, String)> = match self.root.get("passage").map(|found| &found.value) {
+            Some(Value::List(list)) => list
+                .iter()
+                .map(|item| (text_of(&item.value, "yarn"), text_of(&item.value, "name")))
+                .collect(),
+            _ => Vec::new(),
+        };
+        let is_called =
+            |yarn: &str, known: &str| name.strip_prefix(yarn).map(str::trim_start) == Some(known);
+        let bare = own.iter().position(|(_, known)| known == name);
+        let at = bare.or_else(|| own.iter().position(|(yarn, known)| is_called(yarn, known)));
+        let of_route = |station: &&RouteStation| {
+            let known = station.station.name.as_str();
+            known == name || is_called(station.system.word(), known)
+        };
+        let at = match (at, stations.iter().find(of_route)) {
+            (Some(at), _) => Some(at),
+            (None, Some(station)) => {
+                self.override_station(station);
+                Some(own.len())
+            }
+            (None, None) => name
+                .parse::<usize>()
+                .ok()
+                .and_then(|number| number.checked_sub(1)),
+        };
+        let known: Vec<String> = own
+            .into_iter()
+            .map(|(_, name)| name)
+            .chain(stations.iter().map(|station| station.station.name.clone()))
+            .collect();
+        let list = match self.root.get_mut("passage").map(|found| &mut found.value) {
+            Some(Value::List(list)) => Some(list),
+            _ => None,
+        };
+        let item = list.and_then(|list| list.get_mut(at?)).and_then(as_branch);
+        item.ok_or_else(|| SetError::NoSuch {
+            what: "passage",
+            name: name.to_owned(),
+            nearest: nearest_of(name, known.iter().map(String::as_str)).map(str::to_owned),
+            known,
+        })
+    }
+
+    /// Adds a `[[passage]]` that overrides nothing yet.
+    fn override_station(&mut self, of: &RouteStation) {
+        let mut values = Branch::default();
+        for (key, word) in [("yarn", of.system.word()), ("name", &of.station.name)] {
+            values.put(key, Value::Text(word.to_owned()), &of.span);
+        }
+        let item = Placed {
+            value: Value::Table(values),
+            span: of.span.clone(),
+        };
+        match self.root.get_mut("passage").map(|found| &mut found.value) {
+            Some(Value::List(list)) => list.push(item),
+            _ => self.root.put("passage", Value::List(vec![item]), &of.span),
+        }
+    }
+
     /// Takes `filaments` out of the yarns whose diameter is varied and whose linear density is given.
     fn free_the_count(&mut self, key: &KeyPath) {
         let Some(Value::Table(yarns)) = self.root.get_mut("yarn").map(|found| &mut found.value)
@@ -300,9 +379,9 @@ impl Document {
     }
 }
 
-fn name_of(item: &Value) -> String {
+fn text_of(item: &Value, key: &str) -> String {
     match item {
-        Value::Table(table) => match table.get("name").map(|name| &name.value) {
+        Value::Table(table) => match table.get(key).map(|found| &found.value) {
             Some(Value::Text(name)) => name.clone(),
             _ => String::new(),
         },

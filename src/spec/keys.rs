@@ -53,10 +53,16 @@ pub const SPEC: &[Key] = &[
         "the weave and its two systems",
     ),
     key(
+        "route",
+        "route or list of routes, \"rapier-weaving\", [\"creel-warping\", \"rapier-weaving\"]",
+        "none",
+        "ready routes, in order; `lissom routes` lists them",
+    ),
+    key(
         "passage",
         "tables `[[passage]]`",
         "none",
-        "what a yarn runs over, in order",
+        "what a yarn runs over, in order; of the same `yarn` and `name` as a station of the route it overrides what it gives",
     ),
     key(
         "tool",
@@ -294,6 +300,12 @@ pub const WEAVE: &[Key] = &[
         "2.0",
         "peak over mean tension, on the loom and at every station",
     ),
+    key(
+        "shed",
+        "table, see below",
+        "none: no pull of its own",
+        "the open shed: it lengthens the warp and adds to its pull",
+    ),
 ];
 
 /// `warp` and `weft` under `[weave]`.
@@ -324,6 +336,34 @@ pub const SYSTEM: &[Key] = &[
     ),
 ];
 
+/// `shed` under `[weave]`.
+pub const SHED: &[Key] = &[
+    key(
+        "depth",
+        "length, \"40 mm\"",
+        "required",
+        "how far an end is lifted from the straight line between backrest and fell",
+    ),
+    key(
+        "front",
+        "length, \"150 mm\"",
+        "required",
+        "from the heald to the fell",
+    ),
+    key(
+        "back",
+        "length, \"500 mm\"",
+        "required",
+        "from the heald back to the backrest",
+    ),
+    key(
+        "let_off",
+        "number 0 to 1",
+        "0",
+        "share of the lengthening that an easing backrest or the let-off takes up",
+    ),
+];
+
 /// `[[passage]]`.
 pub const PASSAGE: &[Key] = &[
     key(
@@ -341,32 +381,37 @@ pub const PASSAGE: &[Key] = &[
     key(
         "stage",
         "\"winding\", \"warping\", \"weaving\" or \"finishing\"",
-        "weaving",
+        "the route's, else weaving",
         "where on the way it stands",
     ),
     key(
         "radius",
         "length, \"1.5 mm\"; \"0 mm\" is a knife edge",
-        "required",
+        "the route's, else required",
         "radius of the edge, guide or roller",
     ),
-    key("turn", "angle, \"12 deg\"", "required", "wrap angle"),
+    key(
+        "turn",
+        "angle, \"12 deg\"",
+        "the route's, else required",
+        "wrap angle",
+    ),
     key(
         "friction",
         "number, 0.25",
-        "the fibre's",
+        "the route's, else the fibre's",
         "coefficient of friction on it",
     ),
     key(
         "tension",
         "force or force per tex, \"20 cN\"",
-        "from the chain",
+        "the route's, else from the chain",
         "mean pull in front of it; restarts the chain (creel, beam, spool)",
     ),
     key(
         "temperature",
         "temperature, \"250 degC\"",
-        "none",
+        "the route's, else none",
         "temperature of the yarn there",
     ),
 ];
@@ -390,6 +435,18 @@ pub const TOOL: &[Key] = &[
         "angle from the warp, \"0 deg\"",
         "both systems bent fully",
         "direction of the corner's edge",
+    ),
+    key(
+        "corner",
+        "\"outside\" or \"inside\"",
+        "outside",
+        "over a convex edge (male tool) or into a concave one (female tool)",
+    ),
+    key(
+        "layer",
+        "whole number, 3",
+        "1",
+        "which layer of the lay, counted from the tool, each as thick as the cloth",
     ),
 ];
 
@@ -422,6 +479,7 @@ pub const TABLES: &[(&str, &[Key])] = &[
     ("[yarn.NAME]", YARN),
     ("[weave]", WEAVE),
     ("warp, weft", SYSTEM),
+    ("shed", SHED),
     ("[[passage]]", PASSAGE),
     ("[[tool]]", TOOL),
     ("[require]", REQUIRE),

@@ -9,8 +9,11 @@ mod document;
 mod fibre;
 mod field;
 pub mod keys;
+mod laid;
 mod problem;
 mod reader;
+mod route;
+mod shed;
 mod tree;
 mod way;
 mod weave;
@@ -18,7 +21,8 @@ mod yarn;
 
 pub use document::{Document, KeyPath, NewValue, SetError};
 pub use problem::Problem;
-pub use way::{Passage, Tool};
+pub use shed::Shed;
+pub use way::{Corner, Passage, Tool};
 pub use weave::{
     DEFAULT_PATH, DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, PathModel, SettAt, System,
     Weave,

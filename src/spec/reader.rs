@@ -60,6 +60,31 @@ impl<'a> Table<'a> {
         self.span.clone()
     }
 
+    /// Its keys and values as they stand.
+    pub fn values(&self) -> &'a Branch {
+        self.table
+    }
+
+    /// Another table whose problems are kept with this one's; its keys have been looked at.
+    pub fn beside<'b>(
+        &self,
+        table: &'b Branch,
+        span: Span,
+        what: String,
+        keys: &'static [Key],
+    ) -> Table<'b>
+    where
+        'a: 'b,
+    {
+        Table {
+            problems: self.problems,
+            table,
+            keys,
+            span,
+            what,
+        }
+    }
+
     /// Where the value of a key stands, if it is there.
     pub fn place_of(&self, key: &str) -> Option<Span> {
         self.raw(key).map(|found| found.span.clone())
@@ -125,7 +150,14 @@ impl<'a> Table<'a> {
             format!("{wanted} needed"),
         );
         if wanted == "a table" {
-            problem = problem.help(format!("write `[{key}]`"));
+            let inside = self
+                .what
+                .strip_prefix('[')
+                .and_then(|what| what.strip_suffix(']'));
+            problem = problem.help(match inside {
+                Some(outer) => format!("write `[{outer}.{key}]`"),
+                None => format!("write `[{key}]`"),
+            });
         }
         self.push(problem);
         Field::Wrong
@@ -350,6 +382,22 @@ impl<'a> Table<'a> {
             value: texts,
             span: found.span.clone(),
         })
+    }
+
+    /// A text, or a list of texts with the place of each.
+    pub fn one_or_more_texts(&self, key: &str) -> Field<Vec<Placed<String>>> {
+        match self.raw(key).map(|found| (found, &found.value)) {
+            None => Field::Absent,
+            Some((_, Value::List(_))) => self.texts(key),
+            Some((_, Value::Text(_))) => match self.text(key) {
+                Field::Given(one) => Field::Given(Placed {
+                    span: one.span.clone(),
+                    value: vec![one],
+                }),
+                Field::Absent | Field::Wrong => Field::Wrong,
+            },
+            Some((found, _)) => self.wrong_type(key, found, "a text or a list of texts"),
+        }
     }
 
     /// A table under a key.

@@ -75,6 +75,12 @@ impl Branch {
         }
     }
 
+    /// Puts a value with the places it has, instead of the one that is there.
+    pub fn lay_over(&mut self, key: &Placed<String>, value: &Placed<Value>) {
+        self.remove(&key.value);
+        self.0.push((key.clone(), value.clone()));
+    }
+
     /// The table under a key and its place, made where there is none; anything else there gives way to it.
     pub fn enter(&mut self, key: &str, place: &Span) -> (&mut Branch, Span) {
         let at = match self.0.iter().position(|(name, _)| name.value == key) {

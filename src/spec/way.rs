@@ -2,11 +2,13 @@
 
 use super::field::Bound;
 use super::keys::{PASSAGE, TOOL};
+use super::laid::{Laid, lay};
 use super::problem::Problem;
 use super::reader::Table;
+use super::route::read_routes;
 use super::weave::{Weave, read_tension};
 use crate::bend::{Stage, SystemName};
-use crate::quantity::Dimension;
+use crate::quantity::{Dimension, parse};
 use crate::span::Span;
 
 /// Friction where neither spec nor fibre has one (common practice, no source).
@@ -20,6 +22,8 @@ const MOST_PASSAGES: usize = 500;
 pub struct Passage {
     /// What the spec calls it.
     pub name: String,
+    /// What reports call it: its name, with the yarn where both yarns have one of that name.
+    pub place: String,
     /// Which yarn runs over it.
     pub system: SystemName,
     /// Where on the way.
@@ -36,10 +40,36 @@ pub struct Passage {
     pub tension_n: Option<f64>,
     /// Temperature of the yarn there, degrees C.
     pub temperature_c: Option<f64>,
+    /// Way of the reed along the warp at every pick, mm, where the route tells it.
+    pub reed_travel_mm: Option<f64>,
+    /// The ready route whose station it is.
+    pub route: Option<&'static str>,
+    /// Its number among the spec's own `[[passage]]`, from 1; `None` for a station that the spec takes as its route
+    /// has it.
+    pub number: Option<usize>,
     /// The line that governs: its radius.
     pub radius_span: Span,
     /// The temperature's place, where given.
     pub temperature_span: Option<Span>,
+}
+
+impl Passage {
+    /// The path of one of its keys, by which a document finds or adds it.
+    pub fn key(&self, last: &str) -> String {
+        match self.number {
+            Some(number) => format!("passage.{number}.{last}"),
+            None => format!("passage.{} {}.{last}", self.system.word(), self.name),
+        }
+    }
+}
+
+/// To which side the cloth is laid round a corner.
+#[derive(Debug, Clone, Copy, PartialEq, Eq)]
+pub enum Corner {
+    /// Over a convex (male) edge: the tool lies inside the bend.
+    Outside,
+    /// Into a concave (female) edge: the tool lies outside of the bend.
+    Inside,
 }
 
 /// One corner the cloth is laid over.
@@ -49,13 +79,17 @@ pub struct Tool {
     pub name: String,
     /// Radius of the corner, mm.
     pub radius_mm: f64,
+    /// To which side the cloth is laid round it.
+    pub corner: Corner,
+    /// Which layer of the lay, counted from the tool, from 1.
+    pub layer: u32,
     /// Direction of the corner's edge from the warp, rad; `None` where it is not known.
     pub bend_axis_rad: Option<f64>,
     /// The line that governs: its radius.
     pub radius_span: Span,
 }
 
-/// Reads every `[[passage]]`.
+/// Reads `route` and every `[[passage]]`: the stations of the routes, then the spec's other passages.
 pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
     let tables = spec.tables("passage", PASSAGE);
     if let Some(one_too_many) = tables.get(MOST_PASSAGES) {
@@ -69,13 +103,16 @@ pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
         );
         return Vec::new();
     }
-    let mut passages: Vec<Passage> = Vec::new();
-    for table in tables {
-        let Some(passage) = read_passage(&table, weave) else {
+    let laid = lay(&tables, &read_routes(spec), weave);
+    let mut passages: Vec<Passage> = Vec::with_capacity(laid.len());
+    for laid in &laid {
+        let table = spec.beside(&laid.values, laid.span.clone(), laid.what.clone(), PASSAGE);
+        let Some(passage) = read_passage(&table, weave, laid) else {
             continue;
         };
-        // Reports, advice and varied keys find a passage by its name.
-        if passages.iter().any(|other| other.name == passage.name) {
+        // Reports, advice and varied keys find a passage by its yarn and name.
+        let same = |other: &Passage| other.name == passage.name && other.system == passage.system;
+        if passages.iter().any(same) {
             let span = table
                 .text("name")
                 .given()
@@ -83,7 +120,11 @@ pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
             spec.push(
                 Problem::at(
                     span,
-                    format!("two passages are named `{}`", passage.name),
+                    format!(
+                        "two passages of the {} are named `{}`",
+                        passage.system.word(),
+                        passage.name
+                    ),
                     "there already",
                 )
                 .help("give each its own name, \"heald eye, back shaft\""),
@@ -91,10 +132,28 @@ pub fn read_passages(spec: &Table<'_>, weave: Option<&Weave>) -> Vec<Passage> {
         }
         passages.push(passage);
     }
+    name_places(&mut passages);
     passages
 }
 
-fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
+/// Tells apart the places of passages of one name on the ways of both yarns.
+fn name_places(passages: &mut [Passage]) {
+    let shared: Vec<bool> = passages
+        .iter()
+        .map(|passage| {
+            let twin =
+                |other: &Passage| other.name == passage.name && other.system != passage.system;
+            passages.iter().any(twin)
+        })
+        .collect();
+    for (passage, shared) in passages.iter_mut().zip(shared) {
+        if shared {
+            passage.place = format!("{}, {}", passage.name, passage.system.word());
+        }
+    }
+}
+
+fn read_passage(table: &Table<'_>, weave: Option<&Weave>, laid: &Laid) -> Option<Passage> {
     let systems = [("warp", SystemName::Warp), ("weft", SystemName::Weft)];
     let stages = [
         ("winding", Stage::Winding),
@@ -147,6 +206,7 @@ fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
     }
     let default_friction = yarn.and_then(|yarn| yarn.fibre.friction_on_guide);
     Some(Passage {
+        place: name.value.clone(),
         name: name.value,
         system: system.value,
         stage: stage.unwrap_or(Stage::Weaving),
@@ -157,6 +217,13 @@ fn read_passage(table: &Table<'_>, weave: Option<&Weave>) -> Option<Passage> {
         tension_n,
         temperature_span: temperature.as_ref().map(|placed| placed.span.clone()),
         temperature_c: temperature.map(|placed| placed.value),
+        reed_travel_mm: laid
+            .travel
+            .as_deref()
+            .and_then(|text| parse(text, &[Dimension::Length]).ok())
+            .map(|travel| travel.value),
+        route: laid.route,
+        number: laid.number,
         radius_span: radius.span,
     })
 }
@@ -171,8 +238,13 @@ pub fn read_tools(spec: &Table<'_>) -> Vec<Tool> {
         let axis = table
             .measure("bend_axis", Dimension::Angle, Bound::Any)
             .value();
+        let corners = [("outside", Corner::Outside), ("inside", Corner::Inside)];
+        let corner = table.word("corner", &corners).value();
+        let layer = table.count("layer").value();
         if let (Some(name), Some(radius)) = (name, radius) {
             tools.push(Tool {
+                corner: corner.unwrap_or(Corner::Outside),
+                layer: layer.unwrap_or(1),
                 name: name.value,
                 radius_mm: radius.value,
                 bend_axis_rad: axis,

@@ -4,6 +4,7 @@ use super::field::{Bound, Field, Placed};
 use super::keys::{SYSTEM, WEAVE};
 use super::problem::{Problem, nearest_of};
 use super::reader::Table;
+use super::shed::{Shed, read_shed};
 use super::yarn::SpecYarn;
 use crate::pattern::{Pattern, PatternError, Weaves, Woven};
 use crate::quantity::Dimension;
@@ -92,6 +93,8 @@ pub struct Weave {
     pub peak: f64,
     /// Whether the spec gave that ratio.
     pub peak_given: bool,
+    /// The open shed, where the spec tells it.
+    pub shed: Option<Shed>,
     /// Where the measured thickness stands, else the weave.
     pub span: Span,
 }
@@ -129,6 +132,7 @@ pub fn read_weave(spec: &Table<'_>, yarns: &[SpecYarn], weaves: &Weaves) -> Opti
         .measure("rest", Dimension::Share, Bound::Within(0.0, 1.0))
         .value();
     let peak = table.number("peak", Bound::Within(1.0, 100.0)).value();
+    let shed = read_shed(&table);
     let span = thickness
         .clone()
         .given()
@@ -147,6 +151,7 @@ pub fn read_weave(spec: &Table<'_>, yarns: &[SpecYarn], weaves: &Weaves) -> Opti
         rest_given: rest.is_some(),
         peak: peak.unwrap_or(DEFAULT_PEAK),
         peak_given: peak.is_some(),
+        shed,
         span,
     })
 }

@@ -88,8 +88,8 @@ fn cooler(spec: &Spec, finding: &Finding, here_c: f64, limit_c: f64) -> Proposal
     let passage = spec
         .passages
         .iter()
-        .position(|passage| passage.name == finding.place)
-        .map(|index| format!("passage.{}.temperature", index + 1));
+        .find(|passage| passage.place == finding.place && passage.system == finding.system)
+        .map(|passage| passage.key("temperature"));
     Proposal {
         place: Target::of(finding).name(),
         text: format!(

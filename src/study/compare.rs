@@ -168,9 +168,12 @@ impl Grid {
         };
         match run(&spec, 1.0) {
             Ok(outcome) => Ok(Told::Woven(tell(&spec, &outcome))),
-            Err(ClothError::Jammed | ClothError::Lay { .. } | ClothError::Thickness { .. }) => {
-                Ok(Told::Jammed)
-            }
+            Err(
+                ClothError::Jammed
+                | ClothError::Lay { .. }
+                | ClothError::Thickness { .. }
+                | ClothError::Corner { .. },
+            ) => Ok(Told::Jammed),
             Err(
                 ClothError::NoPath { .. }
                 | ClothError::NoBalance { .. }

@@ -2,8 +2,10 @@
 
 use super::lever::{Better, Lever};
 use super::margin::Target;
-use crate::bend::SystemName;
+use crate::bend::{Stage, SystemName};
+use crate::drape::is_at;
 use crate::flow::Outcome;
+use crate::passage::OPEN_SHED;
 use crate::spec::{KeyPath, Spec, System};
 use crate::yarn::{Basis, Followed};
 
@@ -50,13 +52,12 @@ pub fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Lever>> {
         SystemName::Warp => &spec.weave.warp,
         SystemName::Weft => &spec.weave.weft,
     };
-    if let Some(index) = spec
+    if let Some(passage) = spec
         .passages
         .iter()
-        .position(|passage| passage.name == place && passage.system == of)
+        .find(|passage| passage.place == place && passage.system == of)
     {
-        let passage = &spec.passages[index];
-        let key = |last: &str| format!("passage.{}.{last}", index + 1);
+        let key = |last: &str| passage.key(last);
         let turn = passage.turn_rad.to_degrees();
         let mut levers = Vec::new();
         if let Some(newton) = passage.tension_n {
@@ -91,12 +92,15 @@ pub fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Lever>> {
                 0.1,
             ),
         ]);
+        if of == SystemName::Warp && passage.stage == Stage::Weaving {
+            levers.extend(shed(spec));
+        }
         return levers;
     }
-    let corner = spec
-        .tools
-        .iter()
-        .position(|tool| place.starts_with(&format!("{}, outer", tool.name)));
+    if place == OPEN_SHED {
+        return shed(spec);
+    }
+    let corner = spec.tools.iter().position(|tool| is_at(tool, place));
     let of_corner = |index: usize| {
         let key = format!("tool.{}.radius", index + 1);
         Lever::of_key(
@@ -112,6 +116,32 @@ pub fn station(spec: &Spec, place: &str, of: SystemName) -> Vec<Option<Lever>> {
     corner.map(of_corner).into_iter().collect()
 }
 
+/// Let-off and depth of the open shed.
+fn shed(spec: &Spec) -> Vec<Option<Lever>> {
+    let Some(shed) = &spec.weave.shed else {
+        return Vec::new();
+    };
+    let let_off = Lever::of_key(
+        "let-off of the shed",
+        "weave.shed.let_off",
+        "",
+        shed.let_off,
+        Better::Up,
+        (0.0, 1.0),
+        0.01,
+    );
+    let depth = Lever::of_key(
+        "depth of the shed",
+        "weave.shed.depth",
+        "mm",
+        shed.depth_mm,
+        Better::Down,
+        (0.0, 10.0 * shed.depth_mm.max(1.0)),
+        1.0,
+    );
+    vec![let_off, depth]
+}
+
 /// Below this a yarn hangs loose on a machine: 0.1 cN/tex (common practice, no source).
 fn least_tension_cn(system: &System) -> f64 {
     0.1 * system.yarn.count.linear_density_tex
@@ -123,7 +153,7 @@ pub fn tension_at(spec: &Spec, target: &Target) -> Option<Lever> {
         return None;
     };
     let own = spec.passages.iter().any(|passage| {
-        passage.name == *place && passage.system == *system && passage.tension_n.is_some()
+        passage.place == *place && passage.system == *system && passage.tension_n.is_some()
     });
     match system {
         _ if own => None,

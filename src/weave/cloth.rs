@@ -176,6 +176,21 @@ pub enum ClothError {
         /// The thickest cloth that can be.
         most_mm: f64,
     },
+    /// A layer that has no room inside of a tool's corner.
+    #[error(
+        "layer {layer} has no room inside the corner `{name}`: its middle lies {:.3} mm from the tool, the corner's radius is {radius_mm} mm",
+        (f64::from(*layer) - 0.5) * thickness_mm
+    )]
+    Corner {
+        /// What the spec calls the corner.
+        name: String,
+        /// The layer asked for.
+        layer: u32,
+        /// Thickness of the cloth, mm.
+        thickness_mm: f64,
+        /// Radius of the corner, mm.
+        radius_mm: f64,
+    },
 }
 
 /// Mass per area of two systems, g/m2: threads per mm, tex, crimp of each.

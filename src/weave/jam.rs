@@ -36,6 +36,7 @@ impl Jammed {
             ClothError::NoPath { .. }
                 | ClothError::NoBalance { .. }
                 | ClothError::NoOtherState { .. }
+                | ClothError::Corner { .. }
         ) {
             // Not jammed: no sett would be an answer.
             let fits = Fits {
