@@ -8,7 +8,8 @@
 //! A guide loads one side of the yarn and nobody knows which, as the yarn turns on its way. Two bounds: at least what breaks if
 //! every bend loads the same side (a later, milder one then adds nothing), at most what breaks if every guide loads a fresh side
 //! (they add up). In the cloth a yarn no longer turns: its crowns on the loom, at rest and over a tool load the same side, and
-//! what the later adds to the earlier is the same in both bounds.
+//! what the later adds to the earlier is the same in both bounds. A corner of a tool is met by the crowns of one face, half of
+//! all, and by no metre but those that lie on it: it adds to the way that made the cloth, not to other corners.
 //!
 //! Yarn is told apart by where in a crown it comes to lie, the sharpest part first, and by layer; the integral round the
 //! filament is taken at 24 places, so counts here agree with those of `flaws` to 1e-3. In one plane: a guide across the
@@ -16,7 +17,7 @@
 
 use super::filament::Bundle;
 use super::flaws::Flaws;
-use crate::bend::{Bend, Meets, Stretch};
+use crate::bend::{Bend, Meets, Stage, Stretch};
 use crate::quadrature::places;
 use crate::yarn::{Laid, Yarn};
 use std::f64::consts::PI;
@@ -99,6 +100,8 @@ pub fn history(flaws: &Flaws, bends: &[&Bend], yarn: &Yarn, laid: &Laid) -> Vec<
         .map(|bend| {
             let sorted = sharpest_first(bend);
             let in_cloth = matches!(bend.meets, Meets::TimesPerMetre(_));
+            let on_tool = bend.stage == Stage::Draping;
+            let part = if on_tool { 0.5 } else { 1.0 };
             let mut step = Step {
                 alone_per_m: 0.0,
                 new_least_per_m: 0.0,
@@ -122,7 +125,18 @@ pub fn history(flaws: &Flaws, bends: &[&Bend], yarn: &Yarn, laid: &Laid) -> Vec<
                     }
                 };
                 let before = length.broken;
-                step.alone_per_m += length.share * alone;
+                step.alone_per_m += part * length.share * alone;
+                if on_tool {
+                    let more = |met: &Met, before: f64| {
+                        let mut met = met.clone();
+                        raise(&mut met, &loaded);
+                        part * length.share * (broken(&met) - before)
+                    };
+                    step.new_least_per_m += more(&length.way, before.0);
+                    step.new_most_per_m += more(&length.cloth, before.1);
+                    last = Some((index, loaded, alone));
+                    continue;
+                }
                 if raise(&mut length.way, &loaded) {
                     length.broken.0 = broken(&length.way);
                 }
@@ -155,6 +169,12 @@ fn sharpest_first(bend: &Bend) -> Vec<(usize, f64)> {
             .into_iter()
             .collect(),
         Meets::TimesPerMetre(times) => {
+            // Told apart over all crowns, of either face.
+            let times = if bend.stage == Stage::Draping {
+                2.0 * times
+            } else {
+                times
+            };
             let mut until = 0.0;
             order
                 .into_iter()
@@ -264,6 +284,29 @@ mod tests {
         near(steps[2].new_least_per_m, alone[2] - alone[0]);
         let most: f64 = steps.iter().map(|step| step.new_most_per_m).sum();
         near(most, alone.iter().sum());
+    }
+
+    /// A corner is met by the crowns of one face: alone it is counted as its bend says, and two corners do not add up.
+    #[test]
+    fn corners_stand_alone() {
+        let crown = |radius: f64, stage: Stage, times: f64| Bend {
+            stage,
+            meets: Meets::TimesPerMetre(times),
+            ..bend(radius, 0.2)
+        };
+        let (steps, alone) = steps(&[
+            crown(1.0, Stage::Rest, 400.0),
+            crown(0.5, Stage::Draping, 200.0),
+            crown(0.5, Stage::Draping, 200.0),
+        ]);
+        for corner in [1, 2] {
+            near(steps[corner].alone_per_m, alone[corner]);
+            near(
+                steps[corner].new_least_per_m,
+                alone[corner] - 0.5 * alone[0],
+            );
+            near(steps[corner].new_most_per_m, steps[corner].new_least_per_m);
+        }
     }
 
     /// Crowns on the loom and at rest load the same side: the rest adds nothing where it is the milder, in both bounds.
