@@ -46,6 +46,26 @@ fn complaint(spec: &str) -> String {
     text
 }
 
+/// Wire yields before it breaks, and of an own fibre nobody has told the scatter: a number of breaks is an error then, no pass.
+#[test]
+fn filaments_that_cannot_be_counted_are_an_error() {
+    let counted = GOOD.replace("reserve = 2.0", "broken_filaments = \"5 /m\"");
+    assert_eq!(lissom(&["check", "-"], &counted).status.code(), Some(0));
+    let wire = counted.replace("like = \"alumina\"", "like = \"stainless\"");
+    insta::assert_snapshot!("problem-wire-is-not-counted", complaint(&wire));
+    let own = counted.replace(
+        "like = \"alumina\"",
+        "kind = \"brittle\"\nmodulus = \"380 GPa\"\nstrength = \"3 GPa\"\ndensity = \"3.9 g/cm3\"",
+    );
+    insta::assert_snapshot!("problem-own-fibre-is-not-counted", complaint(&own));
+    let scattered = own.replace(
+        "\ndensity =",
+        "\nweibull_modulus = 5\ngauge_length = \"25 mm\"\nflaws = \"volume\"\ndensity =",
+    );
+    // Told, it is counted: the crowns shed.
+    assert_eq!(lissom(&["check", "-"], &scattered).status.code(), Some(1));
+}
+
 #[test]
 fn the_good_spec_is_good() {
     assert_eq!(lissom(&["check", "-"], GOOD).status.code(), Some(0));
@@ -54,6 +74,26 @@ fn the_good_spec_is_good() {
 /// Name of the case, what is replaced, by what.
 const CASES: &[(&str, &str, &str)] = &[
     ("wrong designation", "\"68 tex\"", "\"ECX 75 1/0\""),
+    (
+        "a Weibull modulus without its gauge",
+        "like = \"alumina\"",
+        "kind = \"brittle\"\nmodulus = \"380 GPa\"\nstrength = \"2 GPa\"\ndensity = \"3.9 g/cm3\"\nweibull_modulus = 5",
+    ),
+    (
+        "a passage with the place of the shed",
+        "name = \"heald eye\"",
+        "name = \"Open shed\"",
+    ),
+    (
+        "two tools of one name",
+        "[require]",
+        "[[tool]]\nname = \"rib\"\nradius = \"3 mm\"\n[[tool]]\nname = \"rib\"\nradius = \"5 mm\"\n[require]",
+    ),
+    (
+        "a station overridden twice",
+        "name = \"Good\"\n",
+        "name = \"Good\"\nroute = \"rapier-weaving\"\n[[passage]]\nyarn = \"warp\"\nname = \"Heald eye\"\nradius = \"1 mm\"\n",
+    ),
     ("wrong ISO code", "\"plain\"", "\"30-07 01-01-02\""),
     ("bare number", "\"200 tex\"", "200"),
     ("bare real number", "\"0.5 mm\"", "0.5"),

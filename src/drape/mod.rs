@@ -13,7 +13,7 @@
 //! side. Both faces are judged, at rest's pull. Left out: sliding of the yarns over the corner, the pull of laying, and
 //! that the layers press on one another.
 
-use crate::bend::{Bend, Meets, Stage, SystemName};
+use crate::bend::{Bend, Easing, Meets, Stage, Stretch, SystemName};
 use crate::spec::{Corner, Spec, Tool};
 use crate::weave::{Cloth, ClothError, crowns};
 use std::f64::consts::FRAC_PI_2;
@@ -77,6 +77,18 @@ fn corner(tool: &Tool, radius_mm: f64, crown: &Bend, (face, sense): (&str, f64))
         (Some(axis), SystemName::Weft) => FRAC_PI_2 - axis,
     };
     let mut bend = crown.clone();
+    // The straight pieces between the crowns of a taut yarn are bent by the corner too.
+    if let Meets::TimesPerMetre(times) = bend.meets {
+        let crowned: f64 = bend.profile.iter().map(|stretch| stretch.length_mm).sum();
+        let straight_mm = 1e3 / times - crowned;
+        if straight_mm > 1e-6 * crowned {
+            bend.profile.push(Stretch {
+                length_mm: straight_mm,
+                lies_on_mm: None,
+                easing: Easing::Held,
+            });
+        }
+    }
     bend.place = format!("{}, {face} {} crown", tool.name, crown.system.word()).into();
     bend.stage = Stage::Draping;
     bend.added_per_mm = sense * normal_curvature_per_mm(radius_mm, angle);

@@ -131,6 +131,12 @@ impl Fibre {
         }
     }
 
+    /// Whether broken filaments can be counted: their scatter is known, and they break before they yield.
+    #[must_use]
+    pub fn breaks_are_countable(&self) -> bool {
+        self.weibull.is_some() && self.kind() != Kind::Ductile
+    }
+
     /// Where a number comes from; `None` where the fibre has no such number.
     #[must_use]
     pub fn origin(&self, name: FigureName) -> Option<&Origin> {

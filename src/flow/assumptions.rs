@@ -3,10 +3,11 @@
 use super::Outcome;
 use crate::bend::Stage;
 use crate::fibre::FigureName;
-use crate::passage::{reed_strokes, shed_pull_n, shed_strain, sheddings};
+use crate::passage::{reed_strokes, sheddings};
 use crate::quantity::{plain, significant};
 use crate::spec::{DEFAULT_TENSION_N_TEX, Passage, PathModel, SettAt, Spec, System};
 use crate::weave::{Closure, Cloth, ClothYarn, SharedBy};
+use crate::weave::{shed_pull_n, shed_strain};
 use crate::yarn::{Basis, DEFAULT_PACKING, DEFAULT_WIDTH_SHARE, Followed, Yarn};
 
 /// Every default and simplification behind this outcome, in a stable order.

@@ -3,6 +3,7 @@
 use super::Outcome;
 use crate::bend::{Bend, Stage, SystemName};
 use crate::judge::{Flaws, Step, history};
+use crate::quantity::significant;
 use crate::spec::{Spec, System};
 use crate::weave::ClothYarn;
 use std::borrow::Cow;
@@ -32,6 +33,26 @@ pub fn broken(spec: &Spec, outcome: &Outcome) -> Vec<Broken> {
     .into_iter()
     .filter_map(|(name, system, woven)| of_yarn(name, system, woven, &outcome.bends))
     .collect()
+}
+
+/// Where single bends pass the number the spec allows and the whole way does not.
+pub fn over_the_whole_way(spec: &Spec, broken: &[Broken]) -> Vec<String> {
+    let allowed = spec.require.broken_per_m;
+    broken
+        .iter()
+        .filter_map(|way| {
+            let (allowed, (least, _)) = (allowed?, way.per_m);
+            let alone = way.steps.iter().map(|(.., step)| step.alone_per_m);
+            (least > allowed && alone.fold(0.0, f64::max) <= allowed).then(|| {
+                format!(
+                    "every bend of the {} breaks fewer filaments than the {} /m allowed, its whole way at least {} /m",
+                    way.system.word(),
+                    significant(allowed, 3),
+                    significant(least, 3)
+                )
+            })
+        })
+        .collect()
 }
 
 fn of_yarn(name: SystemName, system: &System, woven: &ClothYarn, bends: &[Bend]) -> Option<Broken> {

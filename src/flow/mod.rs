@@ -9,7 +9,7 @@ mod warnings;
 
 pub use crate::weave::{RigidityBound, Varied};
 pub use assumptions::assumptions;
-pub use broken::{Broken, broken};
+pub use broken::{Broken, broken, over_the_whole_way};
 pub use warnings::warnings;
 
 use crate::bend::{Bend, SystemName};

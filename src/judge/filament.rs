@@ -23,9 +23,10 @@
 
 use super::easing::{Free, free_curvature_per_mm};
 use crate::bend::{Bend, Stretch};
-use crate::path::{bent_helix_peak_per_mm, helix_curvature_per_mm};
+use crate::path::{bent_helix_curvature_per_mm, bent_helix_peak_per_mm, helix_curvature_per_mm};
 use crate::quadrature::places;
 use crate::yarn::{Laid, Yarn};
+use std::f64::consts::PI;
 
 /// Which filament of the yarn.
 #[derive(Debug, Clone, Copy, PartialEq, Eq)]
@@ -81,6 +82,8 @@ pub struct Filament {
     pub free_per_mm: Option<f64>,
     /// Axial stress from pull and binding, MPa.
     pub axial_stress_mpa: f64,
+    /// Whether a larger bend turns it to the other side.
+    pub reversed: bool,
 }
 
 impl Filament {
@@ -92,6 +95,7 @@ impl Filament {
             lying_per_mm: 0.0,
             free_per_mm: None,
             axial_stress_mpa,
+            reversed: false,
         }
     }
 }
@@ -176,9 +180,11 @@ impl<'a> Bundle<'a> {
     fn filament(&self, position: Position, y: f64, lying: f64, eased: f64) -> Filament {
         let added = self.added_per_mm;
         let strain = self.yarn.binding * y * self.centre_per_mm;
+        let curvature = lying.min(eased) + added;
         Filament {
             position,
-            curvature_per_mm: (lying.min(eased) + added).abs(),
+            curvature_per_mm: curvature.abs(),
+            reversed: curvature < 0.0,
             lying_per_mm: (lying + added).abs(),
             free_per_mm: self.free_per_mm.map(|free| (free + added).abs()),
             axial_stress_mpa: self.pull_mpa + self.yarn.fibre.modulus_mpa * strain,
@@ -239,17 +245,46 @@ impl<'a> Bundle<'a> {
         })
     }
 
+    /// Filaments of a twisted yarn at four radii that hold a quarter of them each, at four places of their turn.
+    fn wound(&self) -> Vec<(f64, Filament)> {
+        const PARTS: usize = 4;
+        let twist = self.yarn.twist_per_mm;
+        let surface = (0.5 * (self.thickness_mm - self.yarn.count.filament_diameter_mm)).max(0.0);
+        let middle = |part: usize| (part as f64 + 0.5) / PARTS as f64;
+        let mut layers = Vec::with_capacity(PARTS * PARTS);
+        for (radius, place) in (0..PARTS).flat_map(|r| (0..PARTS).map(move |f| (r, f))) {
+            let r = surface * middle(radius).sqrt();
+            let phase = PI * middle(place);
+            let y = r * phase.cos();
+            let straight = helix_curvature_per_mm(r, twist);
+            let bent = |bend_mm: f64| {
+                if bend_mm > r {
+                    bent_helix_curvature_per_mm(r, twist, bend_mm, phase)
+                } else {
+                    f64::INFINITY
+                }
+            };
+            let lying = self
+                .lies_on_mm
+                .map_or(straight, |on| bent(on + 0.5 * self.thickness_mm));
+            let mut found = self.filament(Position::Any, y, lying, straight + self.eased(y));
+            if self.centre_per_mm < 0.0 {
+                found.curvature_per_mm = bent(-1.0 / self.centre_per_mm);
+                found.reversed = true;
+            }
+            layers.push((1.0 / (PARTS * PARTS) as f64, found));
+        }
+        layers
+    }
+
     /// All filaments by their share, from the inside to the outside: through the thickness by the outline's width there;
-    /// of a twisted yarn all as those on the surface are, which is the most.
+    /// of a twisted yarn by radius and place of their turn.
     pub(super) fn layers(&self, laid: &Laid) -> Vec<(f64, Filament)> {
         if self.yarn.is_monofilament() {
             return vec![(1.0, self.at(Position::Single, self.ends_mm().0))];
         }
         if self.yarn.twist_per_mm > 0.0 {
-            return self
-                .on_the_surface()
-                .map(|filament| (0.5, filament))
-                .to_vec();
+            return self.wound();
         }
         let (inside, outside) = self.ends_mm();
         let middle = 0.5 * self.thickness_mm;

@@ -218,6 +218,8 @@ fn loaded(
     let mut met = Vec::with_capacity(layers.len() * round.len());
     for (_, filament) in &layers {
         let (axial, bending) = Flaws::borne(yarn, filament);
+        // A bend to the other side loads the other side.
+        let bending = if filament.reversed { -bending } else { bending };
         met.extend(
             round
                 .iter()
@@ -284,6 +286,24 @@ mod tests {
         near(steps[2].new_least_per_m, alone[2] - alone[0]);
         let most: f64 = steps.iter().map(|step| step.new_most_per_m).sum();
         near(most, alone.iter().sum());
+    }
+
+    /// A corner that turns a crown to the other side loads the other side: what the crown broke before does not spare it.
+    #[test]
+    fn a_reversed_bend_loads_the_other_side() {
+        let crown = |radius: f64, stage: Stage, times: f64, added: f64| Bend {
+            stage,
+            meets: Meets::TimesPerMetre(times),
+            added_per_mm: added,
+            ..bend(radius, 0.2)
+        };
+        // 1/(3 + e) mm less 1.5/mm: bent to the other side everywhere.
+        let (steps, alone) = steps(&[
+            crown(3.0, Stage::Rest, 400.0, 0.0),
+            crown(3.0, Stage::Draping, 200.0, -1.5),
+        ]);
+        near(steps[1].new_least_per_m, alone[1]);
+        near(steps[1].new_most_per_m, alone[1]);
     }
 
     /// A corner is met by the crowns of one face: alone it is counted as its bend says, and two corners do not add up.

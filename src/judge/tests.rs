@@ -324,6 +324,22 @@ fn past_yield_a_wire_is_bent_more_than_its_elastic_path() {
     assert!(elastic < 1.01e-4, "{elastic}");
 }
 
+/// A filament of a straight twisted yarn is counted at its own radius: less than all on the surface, more than none.
+#[test]
+fn twisted_filaments_are_counted_at_their_own_radius() {
+    let flaws = Flaws::of(&fibre("e-glass")).unwrap();
+    let counted = |twist: f64| {
+        let mut yarn = yarn("e-glass", 400, 9.0);
+        yarn.twist_per_mm = twist;
+        let laid = yarn.laid_at(2.0, Vary::default()).unwrap();
+        broken_per_m(&flaws, &bend(0.5, 0.5), &yarn, &laid)
+    };
+    let (straight, mild, hard) = (counted(0.0), counted(1e-5), counted(0.6));
+    // Without turns all filaments of the round model lie as far from the middle as those of the flat yarn, up to the shape.
+    assert!((mild / straight - 1.0).abs() < 0.5, "{mild} {straight}");
+    assert!(hard > mild, "{hard} {mild}");
+}
+
 #[test]
 fn twist_winds_the_surface_filament() {
     let mut twisted = yarn("e-glass", 1000, 9.0);

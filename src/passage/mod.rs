@@ -12,12 +12,12 @@
 
 mod shed;
 
-pub use shed::{OPEN_SHED, open_shed, reed_strokes, shed_pull_n, shed_strain, sheddings};
+pub use shed::{open_shed, reed_strokes, sheddings};
 
 use crate::bend::{Bend, Easing, Meets, Stage, Stretch, SystemName};
 use crate::path::tension_after;
 use crate::spec::{Passage, Spec, Weave};
-use crate::weave::Cloth;
+use crate::weave::{Cloth, shed_pull_n};
 
 /// Mean pull behind each of the stations of one yarn, N, in order: they share a stage.
 ///

@@ -133,6 +133,7 @@ pub(super) const UNITS: &[Unit] = {
         unit("kg/m3", &["kg/m^3"], Density, 1e-3),
         unit("/m", &["1/m"], Number, 1.0),
         unit("/km", &["1/km"], Number, 1e-3),
+        unit("/cm", &["1/cm"], Number, 100.0),
         unit("/in", &["1/in"], Number, 1e3 / INCH_MM),
     ]
 };

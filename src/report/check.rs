@@ -6,7 +6,9 @@
 use super::bend::BendRow;
 use super::broken::BrokenReport;
 use super::cautions::cautions;
-use crate::flow::{Broken, Outcome, RigidityBound, Variation, assumptions, warnings};
+use crate::flow::{
+    Broken, Outcome, RigidityBound, Variation, assumptions, over_the_whole_way, warnings,
+};
 use crate::passage::{reed_strokes, sheddings};
 use crate::quantity::rounded;
 use crate::spec::Spec;
@@ -224,7 +226,7 @@ impl CheckReport {
                 .collect(),
             sensitivity,
             rigidity: rigidity.iter().map(RigidityRow::new).collect(),
-            warnings: warnings(spec, outcome),
+            warnings: [warnings(spec, outcome), over_the_whole_way(spec, broken)].concat(),
             advice,
             assumptions: assumptions(spec, outcome),
             cautions: cautions(&fibres),

@@ -5,8 +5,8 @@ use super::keys::FIBRE;
 use super::problem::{Problem, nearest_of};
 use super::reader::Table;
 use crate::fibre::{
-    CompressionBasis, Fibre, FibreOverrides, FibreProblem, FindError, Hazard, Kind, StrengthBasis,
-    library,
+    CompressionBasis, Fibre, FibreOverrides, FibreProblem, FindError, FlawKind, Hazard, Kind,
+    StrengthBasis, library,
 };
 use crate::quantity::Dimension;
 
@@ -143,6 +143,10 @@ fn read_one(name: &Placed<String>, table: &Table<'_>) -> Option<Fibre> {
         .iter()
         .map(|hazard| (hazard.word(), *hazard))
         .collect();
+    let flaws: Vec<(&'static str, FlawKind)> = FlawKind::ALL
+        .iter()
+        .map(|flaws| (flaws.word(), *flaws))
+        .collect();
     let given = FibreOverrides {
         id: Some(name.value.clone()),
         kind: table.word("kind", &kinds).value(),
@@ -151,6 +155,11 @@ fn read_one(name: &Placed<String>, table: &Table<'_>) -> Option<Fibre> {
         modulus_mpa: stress("modulus"),
         strength_mpa: stress("strength"),
         strength_basis: table.word("strength_basis", &bases).value(),
+        strength_gauge_mm: measure("gauge_length", Dimension::Length, Bound::Positive),
+        weibull_modulus: table
+            .number("weibull_modulus", Bound::Within(1.0, 200.0))
+            .value(),
+        flaws: table.word("flaws", &flaws).value(),
         compressive_strength_mpa: stress("compressive_strength"),
         compression_basis: table.word("compression_basis", &tests).value(),
         yield_mpa: stress("yield_stress"),
@@ -159,7 +168,6 @@ fn read_one(name: &Placed<String>, table: &Table<'_>) -> Option<Fibre> {
         kink_strength_loss: share("kink_strength_loss"),
         max_temp_c: measure("max_temperature", Dimension::Temperature, Bound::Any),
         friction_on_guide: table.number("friction", Bound::Within(0.0, 2.0)).value(),
-        ..FibreOverrides::default()
     };
     match like {
         Field::Given(like) => from_library(table, &like, &given, |_| None),

@@ -117,6 +117,24 @@ pub const FIBRE: &[Key] = &[
         "what the strength was measured on",
     ),
     key(
+        "weibull_modulus",
+        "number, 1 to 200",
+        "from `like`, else unknown",
+        "scatter of the strength: Weibull modulus",
+    ),
+    key(
+        "gauge_length",
+        "length, \"25 mm\"",
+        "from `like`",
+        "gauge length of the strength; needed with a Weibull modulus",
+    ),
+    key(
+        "flaws",
+        "\"surface\", \"volume\", \"both\" or \"none\"",
+        "from `like`, else surface",
+        "where the flaws lie; all but volume count as surface",
+    ),
+    key(
         "density",
         "density, \"3.9 g/cm3\"",
         "from `like`",
@@ -462,7 +480,7 @@ pub const REQUIRE: &[Key] = &[
         "broken_filaments",
         "number per length, \"5 /m\"",
         "counted, not judged",
-        "broken filaments allowed per metre of one yarn",
+        "broken filaments allowed per metre of one yarn, at each bend",
     ),
     key(
         "kinks",

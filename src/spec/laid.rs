@@ -48,6 +48,21 @@ pub fn lay(own: &[Table<'_>], routes: &Routes, weave: Option<&Weave>) -> Vec<Lai
         if taken[index] {
             continue;
         }
+        if let Some(station) = routes.stations().find(|station| is_of(table, station)) {
+            let span = table
+                .peek_text("name")
+                .map_or(table.span(), |name| name.span);
+            let name = &station.station.name;
+            table.push(
+                Problem::at(
+                    span,
+                    format!("station `{name}` of the route is overridden twice"),
+                    "there already",
+                )
+                .help("put all of its keys into one `[[passage]]`"),
+            );
+            continue;
+        }
         // Of a route that is wrong nobody knows which station was meant.
         if !known && routes.incomplete {
             continue;
@@ -69,7 +84,11 @@ pub fn lay(own: &[Table<'_>], routes: &Routes, weave: Option<&Weave>) -> Vec<Lai
 }
 
 fn is_of(table: &Table<'_>, station: &RouteStation) -> bool {
-    let is = |key: &str, word: &str| table.peek_text(key).is_some_and(|text| text.value == word);
+    // Letter case aside, as in the names of routes and weaves.
+    let is = |key: &str, word: &str| {
+        let text = table.peek_text(key);
+        text.is_some_and(|text| text.value.trim().eq_ignore_ascii_case(word))
+    };
     is("yarn", station.system.word()) && is("name", &station.station.name)
 }
 
@@ -107,7 +126,7 @@ fn lay_one(of: &RouteStation, over: Option<(usize, &Table<'_>)>, weave: Option<&
     };
     for (key, value) in table.values().iter() {
         // Unknown keys have been reported where they stand.
-        if PASSAGE.iter().any(|known| known.name == key.value) {
+        if key.value != "name" && PASSAGE.iter().any(|known| known.name == key.value) {
             values.lay_over(key, value);
         }
     }

@@ -22,15 +22,16 @@ mod yarn;
 pub use document::{Document, KeyPath, NewValue, SetError};
 pub use problem::Problem;
 pub use shed::Shed;
-pub use way::{Corner, Passage, Tool};
+pub use way::{Corner, OPEN_SHED, Passage, Tool};
 pub use weave::{
     DEFAULT_PATH, DEFAULT_PEAK, DEFAULT_REST, DEFAULT_TENSION_N_TEX, PathModel, SettAt, System,
     Weave,
 };
 
+use crate::fibre::{Fibre, Kind};
 use crate::pattern::Weaves;
 use crate::quantity::Dimension;
-use crate::span::SourceText;
+use crate::span::{SourceText, Span};
 use fibre::Fibres;
 use field::Bound;
 use reader::Table;
@@ -89,7 +90,7 @@ fn read_parts(table: &Table<'_>, source: &Arc<SourceText>, weaves: &Weaves) -> O
     let weave = weave::read_weave(table, &yarns, weaves);
     let passages = way::read_passages(table, weave.as_ref());
     let tools = way::read_tools(table);
-    let require = read_require(table);
+    let require = read_require(table, weave.as_ref());
     Some(Spec {
         source: Arc::clone(source),
         name: name?.value,
@@ -101,7 +102,7 @@ fn read_parts(table: &Table<'_>, source: &Arc<SourceText>, weaves: &Weaves) -> O
     })
 }
 
-fn read_require(spec: &Table<'_>) -> Require {
+fn read_require(spec: &Table<'_>, weave: Option<&Weave>) -> Require {
     let table = spec.table("require", "[require]", keys::REQUIRE).value();
     let reserve = table.as_ref().and_then(|table| {
         table
@@ -109,9 +110,17 @@ fn read_require(spec: &Table<'_>) -> Require {
             .value()
     });
     let broken = table.as_ref().and_then(|table| {
-        table
+        let broken = table
             .measure("broken_filaments", Dimension::Number, Bound::Positive)
-            .value()
+            .given()?;
+        // What cannot be counted is never a pass.
+        for system in weave.iter().flat_map(|weave| [&weave.warp, &weave.weft]) {
+            if let Some(problem) = uncountable(&system.yarn.fibre, &broken.span) {
+                table.push(problem);
+                break;
+            }
+        }
+        Some(broken.value)
     });
     let kinks = [("allow", false), ("refuse", true)];
     Require {
@@ -122,6 +131,28 @@ fn read_require(spec: &Table<'_>) -> Require {
             .and_then(|table| table.word("kinks", &kinks).value())
             .unwrap_or(false),
     }
+}
+
+/// Why the broken filaments of a fibre cannot be counted.
+fn uncountable(fibre: &Fibre, at: &Span) -> Option<Problem> {
+    if fibre.breaks_are_countable() {
+        return None;
+    }
+    let (why, help) = match fibre.kind() {
+        Kind::Ductile => (
+            "it yields long before it breaks",
+            "leave `broken_filaments` out",
+        ),
+        _ => (
+            "how its strength scatters is not known",
+            "give `weibull_modulus` and `gauge_length` under the fibre, or leave `broken_filaments` out",
+        ),
+    };
+    let message = format!(
+        "broken filaments of fibre `{}` cannot be counted: {why}",
+        fibre.id
+    );
+    Some(Problem::at(at.clone(), message, "cannot be judged").help(help))
 }
 
 #[cfg(test)]

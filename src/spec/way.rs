@@ -14,6 +14,9 @@ use crate::span::Span;
 /// Friction where neither spec nor fibre has one (common practice, no source).
 pub const DEFAULT_FRICTION: f64 = 0.25;
 
+/// The place at which the open shed is judged.
+pub const OPEN_SHED: &str = "open shed";
+
 /// More stations than any way has.
 const MOST_PASSAGES: usize = 500;
 
@@ -196,6 +199,14 @@ fn read_passage(table: &Table<'_>, weave: Option<&Weave>, laid: &Laid) -> Option
     }
     let tension_n = read_tension(table, yarn.map(|yarn| Some(&**yarn)));
     let (system, name, radius, turn) = (system?, name?, radius?, turn?);
+    // Reports find a bend by its place.
+    if name.value.eq_ignore_ascii_case(OPEN_SHED) {
+        table.push(
+            Problem::at(name.span, format!("`{OPEN_SHED}` is no passage"), "taken")
+                .help("give `shed` under [weave] instead, or another name"),
+        );
+        return None;
+    }
     // More than a few full wraps is a slip of the unit: e to the power of friction times turn explodes.
     if turn.value > 20.0 * std::f64::consts::PI {
         table.push(
@@ -242,6 +253,16 @@ pub fn read_tools(spec: &Table<'_>) -> Vec<Tool> {
         let corner = table.word("corner", &corners).value();
         let layer = table.count("layer").value();
         if let (Some(name), Some(radius)) = (name, radius) {
+            if tools.iter().any(|tool: &Tool| tool.name == name.value) {
+                table.push(
+                    Problem::at(
+                        name.span.clone(),
+                        format!("two tools are named `{}`", name.value),
+                        "there already",
+                    )
+                    .help("give each its own name, \"frame corner, layer 2\""),
+                );
+            }
             tools.push(Tool {
                 corner: corner.unwrap_or(Corner::Outside),
                 layer: layer.unwrap_or(1),

@@ -5,7 +5,7 @@ use super::margin::Target;
 use crate::bend::{Stage, SystemName};
 use crate::drape::is_at;
 use crate::flow::Outcome;
-use crate::passage::OPEN_SHED;
+use crate::spec::OPEN_SHED;
 use crate::spec::{KeyPath, Spec, System};
 use crate::yarn::{Basis, Followed};
 

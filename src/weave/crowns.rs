@@ -5,6 +5,7 @@
 //! friction and set keep. Brittle fibres are worse off with the pull, fibres weak in compression without.
 
 use super::cloth::{Cloth, ClothYarn, StiffSystem, YarnPath};
+use super::shed::warp_peak_n;
 use super::wave::Wave;
 use crate::bend::{Bend, Crown, Easing, Meets, Shoulder, Stage, Stretch, SystemName};
 use crate::path::Passing;
@@ -17,7 +18,11 @@ pub fn crowns(weave: &Weave, cloth: &Cloth, on_loom: &Cloth) -> Vec<Bend> {
         (SystemName::Warp, &weave.warp),
         (SystemName::Weft, &weave.weft),
     ] {
-        let loom = (Stage::Loom, weave.peak * system.tension_n, on_loom);
+        let peak_n = match name {
+            SystemName::Warp => warp_peak_n(weave),
+            SystemName::Weft => weave.peak * system.tension_n,
+        };
+        let loom = (Stage::Loom, peak_n, on_loom);
         let rest = (Stage::Rest, weave.rest * system.tension_n, cloth);
         for (stage, pull_n, cloth) in [loom, rest] {
             let (yarn, crossed) = match name {
@@ -178,6 +183,25 @@ mod tests {
             let pull = if bend.stage == Stage::Loom { 1.5 } else { 0.1 };
             assert!((bend.pull_n - pull).abs() < 1e-12, "{bend:?}");
         }
+    }
+
+    /// The end that is woven in is under the open shed's pull up to the fell: 20.563 N by hand (`shed`) and the mean.
+    #[test]
+    fn an_open_shed_pulls_the_crowns_on_the_loom() {
+        let text = "name = \"t\"\n[yarn.y]\nfibre = \"e-glass\"\nlinear_density = \"68 tex\"\n[weave]\npattern = \"plain\"\n\
+                    shed = { depth = \"40 mm\", front = \"150 mm\", back = \"500 mm\" }\n\
+                    warp = { yarn = \"y\", sett = \"12 /cm\", tension = \"50 cN\" }\nweft = { yarn = \"y\", sett = \"8 /cm\", tension = \"50 cN\" }\n";
+        let spec = Spec::read(SourceText::new("t", text), &Weaves::builtin()).unwrap();
+        let cloth = Cloth::build(&spec.weave, 1.0).unwrap();
+        let pulls: Vec<f64> = crowns(&spec.weave, &cloth, &cloth)
+            .iter()
+            .map(|bend| bend.pull_n)
+            .collect();
+        assert!((pulls[0] - 0.5 - 20.563).abs() < 0.005, "{pulls:?}");
+        assert!(
+            (pulls[2] - 1.0).abs() < 1e-12,
+            "the weft knows no shed: {pulls:?}"
+        );
     }
 
     /// The warp crosses the picks: its inflection is half a pick spacing (0.625 mm) away, half its wave down.

@@ -13,6 +13,7 @@
 //! | `build` | from a weave to its cloth: measured thickness met, yarns that give way in dense cloth |
 //! | `cloth` | the cloth and its numbers: crimp, thickness, mass, cover, fibre volume |
 //! | `jam` | the largest sett that fits where the yarns asked for cannot interlace |
+//! | `shed` | what the open shed adds to the warp's pull |
 //! | `crowns` | the bends of the cloth's yarns |
 
 mod build;
@@ -25,6 +26,7 @@ mod jam;
 mod lengths;
 mod pulled;
 mod share;
+mod shed;
 mod states;
 mod wave;
 
@@ -32,5 +34,6 @@ pub use cloth::{Cloth, ClothError, ClothYarn, StiffSystem, YarnPath, areal_mass_
 pub use crowns::crowns;
 pub use jam::{Fits, Jammed};
 pub use share::{Closed, Closure, Share, SharedBy, share};
+pub use shed::{shed_pull_n, shed_strain, warp_peak_n};
 pub use states::{RigidityBound, States, Varied};
 pub use wave::{Piece, Wave};
