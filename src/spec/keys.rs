@@ -376,7 +376,7 @@ pub const SHED: &[Key] = &[
     ),
     key(
         "let_off",
-        "number 0 to 1",
+        "share, \"90 %\", or number 0 to 1",
         "0",
         "share of the lengthening that an easing backrest or the let-off takes up",
     ),

@@ -31,7 +31,12 @@ pub fn read_shed(weave: &Table<'_>) -> Option<Shed> {
     let depth = length("depth", Bound::NotNegative, "\"40 mm\"");
     let front = length("front", Bound::Positive, "\"150 mm\"");
     let back = length("back", Bound::Positive, "\"500 mm\"");
-    let let_off = table.number("let_off", Bound::Within(0.0, 1.0)).value();
+    // A share, with its sign or as a number.
+    let let_off = match table.peek_text("let_off") {
+        Some(_) => table.measure("let_off", Dimension::Share, Bound::Within(0.0, 1.0)),
+        None => table.number("let_off", Bound::Within(0.0, 1.0)),
+    }
+    .value();
     let (depth, front, back) = (depth?, front?, back?);
     Some(Shed {
         depth_mm: depth.value,
