@@ -44,6 +44,14 @@ pub enum BraidError {
         /// Gaps round the braid.
         gaps: u32,
     },
+    /// The axials are too far apart to work out.
+    #[error("axials {crossings} crossings of a braider apart are too far; give at most {most}")]
+    AxialsApart {
+        /// Crossings from axial to axial.
+        crossings: u64,
+        /// The most that are worked out.
+        most: u64,
+    },
     /// A number that is no size.
     #[error("the {what} is {found} {unit}; give a number above 0")]
     Size {

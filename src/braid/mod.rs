@@ -14,7 +14,8 @@
 //! | `jam` | where yarns of a set lie side by side |
 //! | `cover` | share of the surface covered, by formula and drawn |
 //! | `wall` | thickness, mass, fibre volume |
-//! | `path` | crimp and bends of the braiders: taut and stiff |
+//! | `path` | crimp and bends of the braiders: taut |
+//! | `stiff`, `over_axials` | the same of stiff yarns; over axials |
 //! | `thread` | a tight thread over sections of more than one kind: braiders over axials |
 //! | `sleeve` | a braid without mandrel |
 //! | `mandrel` | a mandrel whose diameter changes: a table along it |
@@ -39,11 +40,13 @@ mod jam;
 mod laid;
 mod lattice;
 mod mandrel;
+mod over_axials;
 mod parts;
 mod path;
 mod section;
 mod setup;
 mod sleeve;
+mod stiff;
 mod thread;
 mod wall;
 
@@ -54,8 +57,9 @@ pub use laid::Braid;
 pub use lattice::Lattice;
 pub use mandrel::{AlongMandrel, Row, Station, TakeUp};
 pub use parts::{Axials, Parts};
-pub use path::{BraiderPath, StiffPull};
+pub use path::BraiderPath;
 pub use section::met_obliquely;
 pub use setup::Setup;
 pub use sleeve::Sleeve;
+pub use stiff::StiffPull;
 pub use wall::{Strand, Wall};

@@ -11,6 +11,9 @@ use super::lattice::Lattice;
 use super::setup::Setup;
 use crate::yarn::Outline;
 
+/// The most crossings of a braider from axial to axial: far beyond any braider built, and still worked out at once.
+const FARTHEST: u64 = 400;
+
 /// Axials between the sets.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Axials {
@@ -71,19 +74,28 @@ impl Parts {
     /// A setup with the outline of one end on its carriers, and axials or none.
     ///
     /// # Errors
-    /// Where the axials do not close round the braid.
+    /// Where the axials do not close round the braid, or stand too far apart.
     pub fn new(setup: Setup, braider: Outline, axials: Option<Axials>) -> Result<Self, BraidError> {
-        match axials {
-            Some(axials) if setup.gaps() % axials.every != 0 => Err(BraidError::Axials {
-                every: axials.every,
-                gaps: setup.gaps(),
-            }),
-            _ => Ok(Self {
-                setup,
-                braider,
-                axials,
-            }),
+        if let Some(axials) = axials {
+            if !setup.gaps().is_multiple_of(axials.every) {
+                return Err(BraidError::Axials {
+                    every: axials.every,
+                    gaps: setup.gaps(),
+                });
+            }
+            let crossings = u64::from(axials.every) * u64::from(setup.over());
+            if crossings > FARTHEST {
+                return Err(BraidError::AxialsApart {
+                    crossings,
+                    most: FARTHEST,
+                });
+            }
         }
+        Ok(Self {
+            setup,
+            braider,
+            axials,
+        })
     }
 
     /// The setup.

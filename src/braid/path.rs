@@ -8,29 +8,17 @@
 //! spacing p = s/sin 2a,  section w/sin 2a by t,  wave height t,  crimp (1/k)(l/p - 1)
 //! ```
 //!
-//! taut by `path::Crest` (Peirce 1937 and after), stiff by `path::StiffYarn`. With one end per carrier at 45 degrees it is
-//! the plain cloth, or the even twill, of the same yarns and spacing (tested).
+//! taut by `path::Crest` (Peirce 1937 and after), stiff in `stiff`, over axials in `over_axials`. At 45 degrees, with one end
+//! on a carrier, it is the plain cloth, or the even twill, of the same yarns and spacing (tested).
 //!
-//! Over axials, taut: the axial, met at the braid angle (wa/sin a wide), stands in the middle of its gap at the middle of the
-//! wall; the braider passes over it and over the k yarns that cross in that gap, under the next, by the shortest way
-//! (`thread`). Where there is no axial the path is that of the two sets alone.
-//!
-//! Left out over axials: rigidity; axials that give way, tilt or crimp (they are pushed from both sides alike); the yarns
-//! of the other set that the axial keeps off are taken as if they stood where they would without it, on the safe side.
-//! In all: the helix adds its curvature only to bends (`helix_per_mm`), not to the crimp; a band's ends cross as one width.
+//! Left out: what the helix adds to the crimp (its curvature is told, `helix_per_mm`, for the bends); the ends of one carrier
+//! cross as one band.
 
 use super::error::BraidError;
 use super::jam::JamState;
 use super::laid::Braid;
-use super::thread::{Contact, Crossed, Thread, thread};
 use crate::bend::{Crown, Easing, Flanks, Shoulder, Stretch};
-use crate::path::{Crest, NoPath, Passing, StiffYarn, Strand};
-use crate::yarn::Outline;
-
-/// Crimp and largest curvature of stiff paths, relative.
-const ACCURACY: f64 = 1e-3;
-/// Samples of a free piece of stiff yarn.
-const PARTS: usize = 8;
+use crate::path::{Crest, Passing};
 
 /// The path of the braiders; all of them run alike.
 #[derive(Debug, Clone, PartialEq)]
@@ -52,15 +40,6 @@ pub struct BraiderPath {
     pub helix_per_mm: f64,
 }
 
-/// What makes a braider stiff, one end of a carrier.
-#[derive(Debug, Clone, Copy, PartialEq)]
-pub struct StiffPull {
-    /// Pull, N.
-    pub pull_n: f64,
-    /// Bending rigidity, N mm2.
-    pub rigidity_n_mm2: f64,
-}
-
 impl Braid {
     /// The braiders as tight threads.
     ///
@@ -68,9 +47,9 @@ impl Braid {
     /// Where the braid is jammed.
     pub fn taut(&self) -> Result<BraiderPath, BraidError> {
         self.fits()?;
-        match self.crossed_axial() {
-            Some(axial) => self.taut_over_axials(axial),
-            None => self.taut_alone(),
+        match (self.parts().axials(), self.crossed_axial()) {
+            (Some(axials), Some(section)) => self.taut_over_axials(axials, section),
+            _ => self.taut_alone(),
         }
     }
 
@@ -102,148 +81,8 @@ impl Braid {
         })
     }
 
-    /// The braiders as stiff yarns of least energy under a pull.
-    ///
-    /// # Errors
-    /// Where the braid is jammed, has axials, or no path was found.
-    pub fn stiff(&self, of: StiffPull) -> Result<BraiderPath, BraidError> {
-        let StiffPull {
-            pull_n,
-            rigidity_n_mm2,
-        } = of;
-        super::error::not_negative("pull", pull_n, " N")?;
-        super::error::not_negative("bending rigidity", rigidity_n_mm2, " N mm2")?;
-        if pull_n + rigidity_n_mm2 == 0.0 {
-            return Err(BraidError::Limp);
-        }
-        if self.crossed_axial().is_some() {
-            return Err(BraidError::StiffOverAxials);
-        }
-        // A stiff yarn passes where a thread does.
-        self.taut()?;
-        let thickness_mm = self.parts().braider().thickness_mm();
-        let strand = Strand {
-            half_thickness_mm: 0.5 * thickness_mm,
-            pull_n,
-            rigidity_n_mm2,
-        };
-        let yarn = StiffYarn::new(&strand, self.crossed(), ACCURACY);
-        let over_count = self.parts().setup().over() as usize;
-        let over: Vec<bool> = (0..2 * over_count)
-            .map(|crossing| crossing < over_count)
-            .collect();
-        let heights: Vec<f64> = over
-            .iter()
-            .map(|over| {
-                if *over {
-                    -0.5 * thickness_mm
-                } else {
-                    0.5 * thickness_mm
-                }
-            })
-            .collect();
-        let spacing_mm = self.lattice().crossing_spacing_mm();
-        let path = yarn
-            .path(spacing_mm, &over, &heights, None, true)
-            .map_err(|why| match why {
-                NoPath::Jammed(_) => self.no_way(),
-                NoPath::Lost(crossing) => BraidError::NoPath {
-                    crossing: crossing + 1,
-                },
-            })?;
-        let (length_mm, _) = yarn.length_and_energy(&path);
-        let crimp = length_mm / (spacing_mm * over.len() as f64) - 1.0;
-        let (peak, wave_height_mm) = (yarn.peak_per_mm(&path), yarn.wave_mm(&path));
-        let crown = Crown {
-            drop_mm: 0.5 * wave_height_mm,
-            arm_mm: 0.5 * spacing_mm,
-            flanks: self.flanks(),
-        };
-        let mut samples = yarn.samples(&path, PARTS);
-        samples.sort_by(|a, b| {
-            a.curvature_per_mm
-                .abs()
-                .total_cmp(&b.curvature_per_mm.abs())
-        });
-        let half_crown = samples
-            .iter()
-            .filter(|sample| sample.length_mm > 0.0)
-            .map(|sample| Stretch {
-                // Two changes in a repeat: four half crowns.
-                length_mm: sample.length_mm / 4.0,
-                lies_on_mm: (sample.curvature_per_mm != 0.0)
-                    .then(|| 1.0 / sample.curvature_per_mm.abs() - strand.half_thickness_mm),
-                easing: Easing::Path {
-                    turn_rad: sample.turn_rad,
-                    crown,
-                    section_mm: yarn.section_radius_mm(),
-                },
-            })
-            .collect();
-        Ok(BraiderPath {
-            crimp,
-            wave_height_mm,
-            slope_rad: yarn.slope_and_range(&path).0,
-            min_radius_mm: (peak > 0.0).then(|| 1.0 / peak),
-            half_crown,
-            half_crowns_per_mm: self.half_crowns_per_mm(crimp),
-            helix_per_mm: self.lattice().helix_curvature_per_mm(),
-        })
-    }
-
-    /// From one axial to the next: crest to trough, or over an even number of gaps to the next crest.
-    fn taut_over_axials(&self, axial: &Outline) -> Result<BraiderPath, BraidError> {
-        let Some(axials) = self.parts().axials() else {
-            return self.taut_alone();
-        };
-        let (over, every) = (self.parts().setup().over(), axials.every());
-        let spacing_mm = self.lattice().crossing_spacing_mm();
-        let gap_mm = f64::from(over) * spacing_mm;
-        let thickness_mm = self.parts().braider().thickness_mm();
-        let stands = |gap: u32| Crossed {
-            at_mm: f64::from(gap) * gap_mm,
-            height_mm: 0.0,
-            section: *axial,
-            over: gap % 2 == 0,
-        };
-        let mut crossed = vec![stands(0)];
-        for gap in 0..=every {
-            let lies_over = gap % 2 == 0;
-            crossed.extend((0..over).map(|index| Crossed {
-                at_mm: f64::from(gap) * gap_mm
-                    + (f64::from(index) - 0.5 * f64::from(over - 1)) * spacing_mm,
-                height_mm: if lies_over {
-                    -0.5 * thickness_mm
-                } else {
-                    0.5 * thickness_mm
-                },
-                section: *self.crossed(),
-                over: lies_over,
-            }));
-        }
-        crossed.push(stands(every));
-        let found = thread(&crossed, 0.5 * thickness_mm).ok_or_else(|| self.no_way())?;
-        let crimp = found.length_mm / (f64::from(every) * gap_mm) - 1.0;
-        let least = found
-            .contacts
-            .iter()
-            .filter(|contact| contact.bent_mm > 0.0)
-            .map(|c| c.radius_mm);
-        Ok(BraiderPath {
-            crimp,
-            wave_height_mm: found.wave_mm,
-            slope_rad: found.slope_rad,
-            min_radius_mm: least
-                .reduce(f64::min)
-                .map(|radius| radius + 0.5 * thickness_mm),
-            half_crown: half_crown_of(&found, gap_mm, 2.0 * f64::from(every), self.flanks()),
-            half_crowns_per_mm: self.half_crowns_per_mm(crimp),
-            helix_per_mm: self.lattice().helix_curvature_per_mm(),
-        })
-    }
-
     /// Whether the yarns of one set fit side by side.
-    fn fits(&self) -> Result<(), BraidError> {
+    pub(super) fn fits(&self) -> Result<(), BraidError> {
         match self.jam() {
             JamState::Jammed { .. } => Err(BraidError::SideBySide {
                 width_mm: self.parts().band_width_mm(),
@@ -262,7 +101,8 @@ impl Braid {
         }
     }
 
-    fn no_way(&self) -> BraidError {
+    /// What is said where the yarns leave no way between.
+    pub(super) fn no_way(&self) -> BraidError {
         let axials = self.crossed_axial().zip(self.axial_spacing_mm());
         let (section, spacing_mm) = match axials {
             Some((axial, apart_mm)) if axial.width_mm() > self.crossed().width_mm() => {
@@ -282,11 +122,13 @@ impl Braid {
         1.0 / f64::from(self.parts().setup().over())
     }
 
-    fn half_crowns_per_mm(&self, crimp: f64) -> f64 {
+    /// Half crowns per mm of yarn with this crimp.
+    pub(super) fn half_crowns_per_mm(&self, crimp: f64) -> f64 {
         2.0 * self.changes_per_crossing() / (self.lattice().crossing_spacing_mm() * (1.0 + crimp))
     }
 
-    fn flanks(&self) -> Flanks {
+    /// Which sides of its sharpest crowns fall away.
+    pub(super) fn flanks(&self) -> Flanks {
         if self.parts().setup().over() == 1 {
             Flanks::Both
         } else {
@@ -330,68 +172,11 @@ fn half_crown(crest: &Crest, passing: &Passing, wave_mm: f64, flanks: Flanks) ->
     stretches
 }
 
-/// The contacts of a thread, as much of them as one of `halves` half crowns has on average. A contact where the thread runs
-/// level is a crown; any other is a shoulder, its straight arm half of the piece that leads to it or away, the shorter.
-fn half_crown_of(found: &Thread, gap_mm: f64, halves: f64, flanks: Flanks) -> Vec<Stretch> {
-    let crown = Crown {
-        drop_mm: 0.5 * found.wave_mm,
-        arm_mm: 0.5 * gap_mm,
-        flanks,
-    };
-    let mut stretches = Vec::with_capacity(found.contacts.len() + 1);
-    let before = |index: usize| {
-        index
-            .checked_sub(1)
-            .map_or(0.0, |before| found.contacts[before].straight_mm)
-    };
-    let easing = |index: usize, contact: &Contact| {
-        let (into, out) = (contact.into_rad.abs(), contact.out_rad.abs());
-        if contact.into_rad * contact.out_rad <= 0.0 {
-            return Easing::Crown(crown);
-        }
-        let arms = [contact.straight_mm, before(index)];
-        let straight_mm = arms
-            .into_iter()
-            .filter(|arm| *arm > 0.0)
-            .fold(f64::INFINITY, f64::min);
-        let half_straight_mm = if straight_mm.is_finite() {
-            0.5 * straight_mm
-        } else {
-            0.0
-        };
-        let slope_rad = into.max(out);
-        let back_mm = (crown.arm_mm - half_straight_mm * slope_rad.cos()).max(0.0);
-        Easing::Shoulder(Shoulder {
-            back_mm,
-            start_rad: into.min(out),
-            slope_rad,
-            half_straight_mm,
-        })
-    };
-    for (index, contact) in found.contacts.iter().enumerate() {
-        if contact.flat_mm > 0.0 {
-            stretches.push(Stretch {
-                length_mm: contact.flat_mm / halves,
-                lies_on_mm: None,
-                easing: Easing::Held,
-            });
-        }
-        if contact.bent_mm > 0.0 {
-            stretches.push(Stretch {
-                length_mm: contact.bent_mm / halves,
-                lies_on_mm: Some(contact.radius_mm),
-                easing: easing(index, contact),
-            });
-        }
-    }
-    stretches
-}
-
 #[cfg(test)]
 mod tests {
-    use super::super::{Axials, BraidAngle, Parts, Setup};
+    use super::super::{Axials, BraidAngle, Parts, Setup, StiffPull};
     use super::*;
-    use crate::yarn::Shape;
+    use crate::yarn::{Outline, Shape};
     use proptest::prelude::*;
 
     fn lens(width: f64, thickness: f64) -> Outline {
@@ -452,7 +237,7 @@ mod tests {
 
     #[test]
     fn a_jammed_braid_has_no_paths_and_says_what_fits() {
-        let jammed = braid(1, None, 70.0);
+        let jammed = braid(1, None, 75.0);
         let said = jammed.taut().unwrap_err();
         assert!(
             matches!(

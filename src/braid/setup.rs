@@ -27,13 +27,13 @@ impl Setup {
     /// Where the carriers make no two sets, or the interlacing does not close.
     pub fn new(carriers: u32, over: u32, ends_per_carrier: u32) -> Result<Self, BraidError> {
         let most = (MAX_REPEAT / 2) as u32;
-        if carriers < 4 || carriers % 2 != 0 {
+        if carriers < 4 || !carriers.is_multiple_of(2) {
             return Err(BraidError::Carriers { carriers });
         }
         if over == 0 || over > most {
             return Err(BraidError::Over { over, most });
         }
-        if carriers % (2 * over) != 0 {
+        if !carriers.is_multiple_of(2 * over) {
             return Err(BraidError::Interlacing { over, carriers });
         }
         if ends_per_carrier == 0 {

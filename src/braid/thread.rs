@@ -134,18 +134,22 @@ fn passes(outlines: &[Vec<Point>]) -> bool {
         let (a, b) = (outline.get(right.checked_sub(1)?)?, outline.get(right)?);
         Some(a.z + (b.z - a.z) * (x - a.x) / (b.x - a.x).max(f64::MIN_POSITIVE))
     };
-    let over = |outline: &Vec<Point>| outline.first().is_some_and(|point| point.over);
-    outlines
+    let range = |outline: &[Point]| Some((outline.first()?.x, outline.last()?.x));
+    let meet = |a: &[Point], b: &[Point]| match (range(a), range(b)) {
+        (Some(a), Some(b)) => a.0 <= b.1 && b.0 <= a.1,
+        _ => false,
+    };
+    let (floors, ceilings): (Vec<&Vec<Point>>, Vec<&Vec<Point>>) = outlines
         .iter()
-        .filter(|outline| over(outline))
-        .flatten()
-        .all(|floor| {
-            outlines
-                .iter()
-                .filter(|outline| !over(outline))
-                .filter_map(|outline| height_at(outline, floor.x))
-                .all(|ceiling| floor.z <= ceiling + 1e-9)
+        .partition(|outline| outline.first().is_some_and(|point| point.over));
+    floors.iter().all(|floor| {
+        let near = ceilings.iter().filter(|ceiling| meet(floor, ceiling));
+        near.into_iter().all(|ceiling| {
+            let below =
+                |point: &Point| height_at(ceiling, point.x).is_none_or(|z| point.z <= z + 1e-9);
+            floor.iter().all(below)
         })
+    })
 }
 
 /// The points at which the shortest line bends, both ends among them.
