@@ -276,7 +276,7 @@ fn on_an_endless_mandrel_it_is_the_cloth() {
 /// Stiff: the weave finds its heights by least energy over the repeat, the braid knows them by symmetry.
 #[test]
 fn on_an_endless_mandrel_it_is_the_stiff_cloth() {
-    for shape in ["lens", "round"] {
+    for shape in ["lens", "round", "ellipse", "racetrack"] {
         for (pattern, over) in [("plain", 1), ("twill 2/2", 2), ("twill 3/3", 3)] {
             let (spec, _, braid) = cloth_and_braid(pattern, over, shape, "stiff");
             let states = States::build(&spec.weave, Varied::default()).unwrap();

@@ -134,6 +134,11 @@ pub enum BraidError {
         /// Whether the braid has axials.
         in_braid: bool,
     },
+    /// A yarn whose outline and spacing do not settle.
+    #[error(
+        "the yarn's outline and its spacing on the mandrel do not settle; give the yarn's width and thickness"
+    )]
+    Unsettled,
     /// A mandrel without stations.
     #[error("a mandrel needs at least one station; give its diameter there")]
     NoStation,

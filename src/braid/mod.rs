@@ -10,6 +10,7 @@
 //! | `lattice` | spacings of the unrolled braid |
 //! | `section` | a yarn's outline as an oblique yarn meets it |
 //! | `parts` | what is braided: setup, outlines, axials |
+//! | `settle` | the outline of a yarn that hangs on its own spacing |
 //! | `laid` | the braid on its mandrel: mean diameter, spacings, sections |
 //! | `jam` | where yarns of a set lie side by side |
 //! | `cover` | share of the surface covered, by formula and drawn |
@@ -44,6 +45,7 @@ mod over_axials;
 mod parts;
 mod path;
 mod section;
+mod settle;
 mod setup;
 mod sleeve;
 mod stiff;
@@ -59,6 +61,7 @@ pub use mandrel::{AlongMandrel, Row, Station, TakeUp};
 pub use parts::{Axials, Parts};
 pub use path::BraiderPath;
 pub use section::met_obliquely;
+pub use settle::Bed;
 pub use setup::Setup;
 pub use sleeve::Sleeve;
 pub use stiff::StiffPull;
