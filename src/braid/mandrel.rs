@@ -117,7 +117,7 @@ mod tests {
 
     fn cone() -> Vec<Station> {
         (0..6)
-            .map(|step| f64::from(step))
+            .map(f64::from)
             .map(|step| Station {
                 at_mm: 50.0 * step,
                 diameter_mm: 25.0 + 6.0 * step,
