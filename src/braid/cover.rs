@@ -147,6 +147,21 @@ mod tests {
         }
     }
 
+    /// The axial stands in the middle of the crossings at which one set stays on top, as the pattern has them.
+    #[test]
+    fn an_axial_stands_in_the_middle_of_its_gap() {
+        for over in [1, 2, 3, 4] {
+            let braid = braid(over, 0.5, Some((1, 0.3)), 40.0, 45.0);
+            let pattern = braid.parts().setup().pattern().unwrap();
+            let columns: Vec<f64> = (0..2 * over as usize)
+                .filter(|column| pattern.warp_up(*column, 0))
+                .map(|column| 0.5 * column as f64 * braid.lattice().pitch_mm())
+                .collect();
+            let middle = columns.iter().sum::<f64>() / columns.len() as f64;
+            assert!((braid.axial_at_mm() - middle).abs() < 1e-12, "{over}");
+        }
+    }
+
     proptest! {
         #![proptest_config(ProptestConfig { cases: 64, failure_persistence: None, ..ProptestConfig::default() })]
 
