@@ -2,6 +2,7 @@
 //! Bends of technical cloth, held against what its fibres stand.
 
 pub mod bend;
+pub mod braid;
 pub mod drape;
 pub mod fibre;
 pub mod flow;
