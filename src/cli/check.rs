@@ -95,8 +95,8 @@ impl Check {
         streams: &Streams,
     ) -> Result<CheckReport, Status> {
         let (document, spec, outcome) = read_checked(path, weaves, streams)?;
-        let variations = sensitivity(&spec, &outcome.cloth);
-        let stiffer = rigidity(&spec);
+        let (variations, stiffer) =
+            rayon::join(|| sensitivity(&spec, &outcome.cloth), || rigidity(&spec));
         let proposals = advice(&document, weaves, &spec, &outcome)
             .into_iter()
             .map(|proposal| Advice {

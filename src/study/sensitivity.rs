@@ -9,6 +9,7 @@ use crate::flow::{Outcome, RigidityBound, Variation, Varied, run_varied};
 use crate::spec::{PathModel, Spec};
 use crate::weave::Cloth;
 use crate::yarn::Basis;
+use rayon::prelude::*;
 
 /// The factors on the assumed flatness.
 pub const FLATNESS_FACTORS: [f64; 2] = [0.7, 1.4];
@@ -22,8 +23,8 @@ pub fn sensitivity(spec: &Spec, cloth: &Cloth) -> Vec<Variation> {
         return Vec::new();
     }
     FLATNESS_FACTORS
-        .iter()
-        .flat_map(|factor| toward(spec, *factor))
+        .par_iter()
+        .flat_map_iter(|factor| toward(spec, *factor))
         .collect()
 }
 
@@ -36,7 +37,7 @@ pub fn rigidity(spec: &Spec) -> Vec<Variation> {
         return Vec::new();
     }
     [RigidityBound::Free, RigidityBound::Bonded]
-        .into_iter()
+        .into_par_iter()
         .map(|rigidity| {
             worst_of(
                 spec,
