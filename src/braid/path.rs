@@ -17,8 +17,8 @@
 use super::error::BraidError;
 use super::jam::JamState;
 use super::laid::Braid;
-use crate::bend::{Crown, Easing, Flanks, Shoulder, Stretch};
-use crate::path::{Crest, Passing};
+use crate::bend::{Flanks, Stretch};
+use crate::path::{Crest, half_crown};
 
 /// The path of the braiders; all of them run alike.
 #[derive(Debug, Clone, PartialEq)]
@@ -135,41 +135,6 @@ impl Braid {
             Flanks::One
         }
     }
-}
-
-/// The half crown from the crest to the straight piece, every rest with the way in which it may ease.
-fn half_crown(crest: &Crest, passing: &Passing, wave_mm: f64, flanks: Flanks) -> Vec<Stretch> {
-    let crown = Crown {
-        drop_mm: 0.5 * wave_mm,
-        arm_mm: 0.5 * crest.spacing_mm,
-        flanks,
-    };
-    let half_straight_mm = 0.5 * passing.straight_mm;
-    let back_mm = crown.arm_mm - half_straight_mm * passing.slope_rad.cos();
-    let rolls = crest.section.arcs().is_none();
-    let mut start_rad = 0.0;
-    let mut stretches = Vec::with_capacity(passing.rests.len());
-    for (index, rest) in passing.rests.iter().enumerate() {
-        let shoulder = Shoulder {
-            back_mm,
-            start_rad,
-            slope_rad: passing.slope_rad,
-            half_straight_mm,
-        };
-        start_rad += rest.turn_rad;
-        let easing = match rest.outline_radius_mm {
-            None => Easing::Held,
-            Some(_) if index == 0 => Easing::Crown(crown),
-            Some(_) if rolls => Easing::Rounded(crown, shoulder),
-            Some(_) => Easing::Shoulder(shoulder),
-        };
-        stretches.push(Stretch {
-            length_mm: rest.length_mm,
-            lies_on_mm: rest.outline_radius_mm,
-            easing,
-        });
-    }
-    stretches
 }
 
 #[cfg(test)]

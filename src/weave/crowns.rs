@@ -6,9 +6,8 @@
 
 use super::cloth::{Cloth, ClothYarn, StiffSystem, YarnPath};
 use super::shed::warp_peak_n;
-use super::wave::Wave;
-use crate::bend::{Bend, Crown, Easing, Meets, Shoulder, Stage, Stretch, SystemName};
-use crate::path::Passing;
+use crate::bend::{Bend, Crown, Easing, Meets, Stage, Stretch, SystemName};
+use crate::path::half_crown;
 use crate::spec::{System, Weave};
 
 /// One crown bend for each system and state, warp first; `on_loom` is the same cloth where paths have one state.
@@ -74,7 +73,9 @@ fn crown(
 /// What a half crown is made of.
 fn profile(yarn: &ClothYarn, crossed_spacing_mm: f64) -> Vec<Stretch> {
     match &yarn.path {
-        YarnPath::Taut { wave, passing } => taut_profile(yarn, wave, passing, crossed_spacing_mm),
+        YarnPath::Taut { wave, passing } => {
+            half_crown(wave.crest(), passing, yarn.wave_height_mm, wave.flanks())
+        }
         YarnPath::Stiff(system) => stiff_profile(yarn, system, crossed_spacing_mm),
     }
 }
@@ -101,49 +102,6 @@ fn stiff_profile(yarn: &ClothYarn, system: &StiffSystem, crossed_spacing_mm: f64
             },
         })
         .collect()
-}
-
-/// The half crown from the crest to the straight piece; every rest with the way in which it may ease.
-fn taut_profile(
-    yarn: &ClothYarn,
-    wave: &Wave,
-    passing: &Passing,
-    crossed_spacing_mm: f64,
-) -> Vec<Stretch> {
-    let crown = Crown {
-        drop_mm: 0.5 * yarn.wave_height_mm,
-        arm_mm: 0.5 * crossed_spacing_mm,
-        flanks: wave.flanks(),
-    };
-    let half_straight_mm = 0.5 * passing.straight_mm;
-    let slope_rad = passing.slope_rad;
-    let back_mm = crown.arm_mm - half_straight_mm * slope_rad.cos();
-    let rolls = wave.crest().section.arcs().is_none();
-    let mut start_rad = 0.0;
-    let mut from_crest = true;
-    let mut stretches = Vec::with_capacity(passing.rests.len());
-    for rest in &passing.rests {
-        let shoulder = Shoulder {
-            back_mm,
-            start_rad,
-            slope_rad,
-            half_straight_mm,
-        };
-        let easing = match (rest.outline_radius_mm, from_crest) {
-            (None, _) => Easing::Held,
-            (Some(_), true) => Easing::Crown(crown),
-            (Some(_), false) if rolls => Easing::Rounded(crown, shoulder),
-            (Some(_), false) => Easing::Shoulder(shoulder),
-        };
-        from_crest = false;
-        start_rad += rest.turn_rad;
-        stretches.push(Stretch {
-            length_mm: rest.length_mm,
-            lies_on_mm: rest.outline_radius_mm,
-            easing,
-        });
-    }
-    stretches
 }
 
 #[cfg(test)]
